@@ -1,0 +1,121 @@
+"""The one contract every equation of state fulfils.
+
+Molar SI throughout: T in K, v in m3/mol, rho in mol/m3, p in Pa. Arrays in, arrays of the broadcast
+shape out. The residual part and the ideal-gas part are separate objects that add.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import NamedTuple, Protocol, TypeAlias
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array: TypeAlias = NDArray[np.float64]
+
+R_CODATA = 8.314462618
+"""Molar gas constant, J/(mol K). CODATA 2018 (Tiesinga et al., Rev. Mod. Phys. 93 (2021) 025010); exact."""
+
+P_STANDARD = 1.0e5
+"""Standard-state pressure of the ideal gas, Pa (IUPAC 1982)."""
+
+T_STANDARD = 298.15
+"""Reference temperature of the ideal-gas enthalpy and entropy, K."""
+
+
+class Reduced(NamedTuple):
+    """Scaled derivatives of the reduced residual Helmholtz energy alpha(y, rho) = a_res/(R T), y = 1/T.
+
+    ``dij`` is y^i rho^j (d^{i+j} alpha / dy^i drho^j). Scaled derivatives do not depend on the reducing
+    constants of an equation, and stay finite at zero density.
+    """
+
+    d00: Array
+    d01: Array
+    d02: Array
+    d10: Array
+    d11: Array
+    d20: Array
+
+
+class PressureTerms(NamedTuple):
+    """p(T, v) and its derivatives: (dp/dT)_v, (dp/dv)_T, (d2p/dT2)_v."""
+
+    p: Array
+    p_T: Array
+    p_v: Array
+    p_TT: Array
+
+
+class Residual(Protocol):
+    """The residual part of an equation of state."""
+
+    def reduced(self, T: Array, rho: Array) -> Reduced:
+        """Scaled derivatives at temperature ``T`` (K) and molar density ``rho`` (mol/m3)."""
+        ...
+
+    def pressure(self, T: Array, v: Array) -> PressureTerms:
+        """Total pressure and its derivatives at ``T`` (K), ``v`` (m3/mol), written from p(T, v) itself."""
+        ...
+
+    def volume_roots(self, T: Array, p: Array) -> Array:
+        """All mechanically stable volumes (m3/mol), shape (2, n), ascending, NaN where there is none.
+
+        Row 0 is the liquid-like root, row 1 the vapour-like one. Where only one root exists it stands in
+        row 1 if it is larger than the critical volume, else in row 0.
+        """
+        ...
+
+    def v_min(self, T: Array) -> Array:
+        """The smallest volume at which the equation may be evaluated, m3/mol."""
+        ...
+
+
+class IdealPart(Protocol):
+    """Ideal-gas heat capacity and its integrals, divided by R."""
+
+    T_min: float
+    T_max: float
+
+    def cp0_R(self, T: Array) -> Array:
+        """c_p0/R."""
+        ...
+
+    def h0_R(self, T: Array) -> Array:
+        """(h0(T) - h0(298.15 K))/R, K."""
+        ...
+
+    def s0_R(self, T: Array) -> Array:
+        """(s0(T, 1 bar) - s0(298.15 K, 1 bar))/R."""
+        ...
+
+
+@dataclass(frozen=True)
+class Model:
+    """A substance with an equation of state: what the rooms above compute with.
+
+    Critical constants are those of the equation itself (``v_c`` in m3/mol). ``T_range`` is the stated range
+    of validity (beyond it: a warning), ``T_limits`` the range in which anything is computed at all (beyond
+    it: an error). ``h_offset`` (J/mol) and ``s_offset`` (J/(mol K)) are added to enthalpy and entropy to set
+    the datum. ``has_dome`` is False where the equation has no vapour-liquid coexistence (ideal gas, virial).
+    """
+
+    name: str
+    equation: str
+    M: float
+    ideal: IdealPart
+    residual: Residual
+    T_c: float
+    p_c: float
+    v_c: float
+    T_triple: float
+    omega: float
+    T_range: tuple[float, float]
+    T_limits: tuple[float, float]
+    p_max: float
+    has_dome: bool
+    R: float = R_CODATA
+    h_offset: float = 0.0
+    s_offset: float = 0.0
+    notes: tuple[str, ...] = field(default=())
