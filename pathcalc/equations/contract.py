@@ -59,6 +59,10 @@ class Residual(Protocol):
         """Total pressure and its derivatives at ``T`` (K), ``v`` (m3/mol), written from p(T, v) itself."""
         ...
 
+    def pressure_curvature(self, T: Array, v: Array) -> Array:
+        """(d2p/dT2)_v alone, Pa/K2: the integrand of c_v along an isotherm, cheap to call."""
+        ...
+
     def volume_roots(self, T: Array, p: Array) -> Array:
         """All mechanically stable volumes (m3/mol), shape (2, n), ascending, NaN where there is none.
 
@@ -69,6 +73,10 @@ class Residual(Protocol):
 
     def v_min(self, T: Array) -> Array:
         """The smallest volume at which the equation may be evaluated, m3/mol."""
+        ...
+
+    def saturation_start(self, T: Array) -> Array:
+        """A start for the saturation pressure (Pa) at ``T`` below critical; NaN where there is no dome."""
         ...
 
 
@@ -89,6 +97,31 @@ class IdealPart(Protocol):
     def s0_R(self, T: Array) -> Array:
         """(s0(T, 1 bar) - s0(298.15 K, 1 bar))/R."""
         ...
+
+    def terms(self, T: Array) -> tuple[Array, Array, Array]:
+        """The three above at once, in that order."""
+        ...
+
+
+class Parameter(NamedTuple):
+    """One constant of an equation as the report shows it; ``symbol`` is LaTeX, ``value`` SI."""
+
+    symbol: str
+    value: float
+    unit: str
+    source: str
+
+
+@dataclass(frozen=True)
+class EquationInfo:
+    """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words."""
+
+    name: str
+    title: str
+    formula: str
+    parameters: tuple[Parameter, ...]
+    source: str
+    range_text: str
 
 
 @dataclass(frozen=True)
@@ -119,3 +152,4 @@ class Model:
     h_offset: float = 0.0
     s_offset: float = 0.0
     notes: tuple[str, ...] = field(default=())
+    info: EquationInfo | None = field(default=None, compare=False)

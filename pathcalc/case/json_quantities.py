@@ -1,0 +1,113 @@
+"""JSON Schema of quantities and targets: a text of number and unit, or a mapping with its uncertainty."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Collection
+from typing import Any
+
+from pathcalc.quantities.parse import difference_of
+from pathcalc.quantities.units import spellings
+
+NUMBER = r"[-+]?([0-9]+(\.[0-9]*)?|\.[0-9]+)([eE][-+]?[0-9]+)?"
+
+
+_SEPARATOR = "--"
+_PREFIX = "quantity--"
+
+
+def quantity_name(dimensions: Collection[str]) -> str:
+    """Name of the definition of a quantity of these dimensions."""
+    return _PREFIX + _SEPARATOR.join(dimensions)
+
+
+def dimensions_of(name: str) -> list[str] | None:
+    """Dimensions of a definition's name; None for another definition."""
+    return name.removeprefix(_PREFIX).split(_SEPARATOR) if name.startswith(_PREFIX) else None
+
+
+MARKER = "$quantity"
+
+
+def quantity_schema(dimensions: Collection[str]) -> dict[str, Any]:
+    """Stands for a reference to the definition, which the schema library could not follow: see ``refer``."""
+    return {MARKER: quantity_name(dimensions)}
+
+
+def refer(schema: dict[str, Any]) -> dict[str, Any]:
+    """The schema with the marker turned into a reference."""
+    if MARKER not in schema:
+        return schema
+    return {"$ref": f"#/$defs/{schema[MARKER]}"} | {k: v for k, v in schema.items() if k != MARKER}
+
+
+def target_schema(dimensions: Collection[str], ratio: bool) -> dict[str, Any]:
+    """A quantity, or one of ratio, rise, drop, same_as."""
+    step = quantity_schema([difference_of(d) for d in dimensions])
+    kinds: dict[str, Any] = {"rise": step, "drop": step, "same_as": {"type": "string"}}
+    if ratio:
+        kinds = {"ratio": quantity_schema(("fraction",))} | kinds
+    relative = {
+        "type": "object",
+        "properties": kinds,
+        "additionalProperties": False,
+        "minProperties": 1,
+        "maxProperties": 1,
+    }
+    return {"anyOf": [quantity_schema(dimensions), relative]}
+
+
+def definitions(name: str) -> dict[str, dict[str, Any]]:
+    """Definition of a quantity by its name, and those it refers to: texts of numbers and units."""
+    dimensions = dimensions_of(name)
+    if dimensions is None:
+        return {}
+    spread = [difference_of(d) for d in dimensions]
+    mapping = {
+        "type": "object",
+        "properties": {
+            "value": _text_ref(dimensions),
+            "u": {"description": "Standard uncertainty.", **_text_ref(spread)},
+            "U": {"description": "Expanded uncertainty; k goes with it.", **_text_ref(spread)},
+            "k": {"description": "Coverage factor of U.", "type": ["number", "string"]},
+            "half_width": {
+                "description": "Half the width of the interval of all values; shape goes with it.",
+                **_text_ref(spread),
+            },
+            "shape": {"enum": ["rectangular", "triangular"]},
+            "source": {"description": "Id of a source in record.sources.", "type": ["string", "number"]},
+            "note": {"type": ["string", "number", "boolean"]},
+        },
+        "patternProperties": {"^x-": {}},
+        "required": ["value"],
+        "additionalProperties": False,
+    }
+    return {
+        name: {"anyOf": [_text_ref(dimensions), mapping]},
+        _text_name(dimensions): _text(dimensions),
+        _text_name(spread): _text(spread),
+    }
+
+
+def _text_name(dimensions: Collection[str]) -> str:
+    return "text--" + _SEPARATOR.join(dimensions)
+
+
+def _text_ref(dimensions: Collection[str]) -> dict[str, Any]:
+    return {"$ref": f"#/$defs/{_text_name(dimensions)}"}
+
+
+def _text(dimensions: Collection[str]) -> dict[str, Any]:
+    """Number, space and unit; a bare number too where the quantity may be one."""
+    if len(dimensions) > _MANY:
+        return {"type": ["number", "string"]}
+    units = "|".join(re.escape(u).replace("\\ ", " ") for d in dimensions for u in spellings(d))
+    with_unit = {"type": "string", "pattern": rf"^{NUMBER} +({units})$"}
+    if "fraction" not in dimensions:
+        return with_unit
+    return {
+        "anyOf": [{"type": "number"}, {"type": "string", "pattern": rf"^{NUMBER}( *(%|ppm))?$"}, with_unit]
+    }
+
+
+_MANY = 6

@@ -1,0 +1,113 @@
+"""States on or beside the saturation line: a quality, a superheat or a subcooling, with one more quantity."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+from numpy.typing import NDArray
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium import quantity, reasons
+from pathcalc.equilibrium.given_pressure import flash_Tp
+from pathcalc.equilibrium.iterate import scanned
+from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
+from pathcalc.equilibrium.saturation import NEAR_CRITICAL, saturation_at_p, saturation_at_T
+
+_NODES = 80
+
+
+def flash_x(model: Model, x: Array, key: str, given: Array) -> Points:
+    """The state of quality ``x`` where ``key`` (T, p, v, h, s or u) has the value ``given``; shape (n,)."""
+    draft = Draft(x.size)
+    wrong = ~((x >= 0.0) & (x <= 1.0))
+    if key in ("T", "p"):
+        sat = saturation_at_T(model, given) if key == "T" else saturation_at_p(model, given)
+        draft.put_mixed(np.arange(x.size), sat, x)
+    else:
+        _scan(model, draft, key, given, x, lambda T, x: _mixture(model, key, T, x), _settle_quality)
+    draft.reason[wrong] = reasons.QUALITY_OUT_OF_RANGE
+    return draft.finish(model)
+
+
+def flash_beside(model: Model, offset: Array, key: str, given: Array) -> Points:
+    """Superheated by ``offset`` > 0 (K) above, or subcooled by −``offset`` below, the saturation temperature at p.
+
+    An offset of zero is saturated vapour; for saturated liquid ask for x = 0. ``key`` is T, p, v, h, s or u.
+    """
+    draft = Draft(offset.size)
+    if key in ("T", "p"):
+        sat = saturation_at_T(model, given - offset) if key == "T" else saturation_at_p(model, given)
+        _settle_beside(model, draft, np.arange(offset.size), sat, offset)
+    else:
+        _scan(model, draft, key, given, offset, lambda T, d: _neighbour(model, key, T, d), _settle_beside)
+    draft.reason[~np.isfinite(offset)] = reasons.NOT_A_STATE
+    return draft.finish(model)
+
+
+def _mixture(model: Model, key: str, T: Array, x: Array) -> Array:
+    sat = saturation_at_T(model, T)
+    if key == "v":
+        return mix(x, sat.v_liquid, sat.v_vapour)
+    liquid = quantity.value(model, key, sat.T, sat.v_liquid)
+    return mix(x, liquid, quantity.value(model, key, sat.T, sat.v_vapour))
+
+
+def _neighbour(model: Model, key: str, T: Array, offset: Array) -> Array:
+    sat = saturation_at_T(model, T)
+    with np.errstate(all="ignore"):
+        roots = model.residual.volume_roots(T + offset, sat.p)
+        light = np.where(np.isnan(roots[1]), roots[0], roots[1])
+        dense = np.where(np.isnan(roots[0]), roots[1], roots[0])
+        v = np.where(offset >= 0.0, light, dense)
+    outside = (T + offset < model.T_limits[0]) | (T + offset > model.T_limits[1])
+    return np.where(outside, np.nan, quantity.value(model, key, T + offset, v))
+
+
+def _settle_quality(model: Model, draft: Draft, at: NDArray[np.intp], sat: Saturation, x: Array) -> None:
+    draft.put_mixed(at, sat, x)
+
+
+def _settle_beside(model: Model, draft: Draft, at: NDArray[np.intp], sat: Saturation, offset: Array) -> None:
+    where = at
+    draft.put_mixed(where, sat, np.ones(where.size))
+    off = (offset != 0.0) & (sat.reason == 0)
+    if off.any():
+        points = flash_Tp(model, sat.T[off] + offset[off], sat.p[off])
+        draft.take(where[off], points)
+
+
+def _scan(
+    model: Model,
+    draft: Draft,
+    key: str,
+    given: Array,
+    parameter: Array,
+    along: Callable[[Array, Array], Array],
+    settle: Callable[[Model, Draft, NDArray[np.intp], Saturation, Array], None],
+) -> None:
+    """All saturation temperatures where the quantity has the value given; more than one is a reason of its own."""
+    n = given.size
+    if not model.has_dome:
+        draft.reason[:] = reasons.NO_COEXISTENCE
+        return
+    top = 1.0 - 1.5 * NEAR_CRITICAL
+    bottom = model.T_limits[0] / model.T_c
+    # nodes crowd towards the critical point, where volumes and entropies turn
+    share = np.linspace(0.0, 1.0, _NODES)
+    nodes = model.T_c * (top - (top - bottom) * (1.0 - share) ** 3)
+    nodes[0] = model.T_limits[0]
+
+    def fun(T: Array, parameter: Array, given: Array) -> Array:
+        return along(T, parameter) - given
+
+    first, second, count = scanned(fun, nodes[:, None] + np.zeros(n), (parameter, given))
+    found = np.flatnonzero(first.ok & (count == 1))
+    if found.size:
+        settle(model, draft, found, saturation_at_T(model, first.x[found]), parameter[found])
+    twice = np.flatnonzero(count >= 2)
+    if twice.size:
+        a, b = saturation_at_T(model, first.x[twice]), saturation_at_T(model, second.x[twice])
+        draft.T[twice], draft.p[twice], draft.T_other[twice], draft.p_other[twice] = a.T, a.p, b.T, b.p
+        draft.reason[twice] = reasons.TWO_SOLUTIONS
+    draft.reason[count == 0] = reasons.TARGET_NOT_REACHED

@@ -1,0 +1,112 @@
+"""States given by two of h, s, u.
+
+Along an isentrope dh = v dp and du = −p dv, so h and u rise with p: one state has the (h, s) or (u, s)
+asked for. With h and u the product p v = h − u is known; along that line u is scanned, as it need not be monotone.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equations.properties import thermal
+from pathcalc.equilibrium import quantity, reasons
+from pathcalc.equilibrium.given_pressure import flash_p
+from pathcalc.equilibrium.given_volume import mixed
+from pathcalc.equilibrium.iterate import guarded_newton, scanned
+from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
+
+_P_LEAST = 1e-3
+_P_MOST = 1e10
+_NODES = 200
+_FIELDS = tuple(Saturation.__dataclass_fields__)
+
+
+def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
+    """The state of entropy ``s`` (J/(mol K)) where ``key`` (h or u, J/mol) has the value ``target``."""
+    n = s.size
+
+    def fun(x: Array, s: Array, wanted: Array) -> tuple[Array, Array]:
+        p = np.exp(x)
+        points = flash_p(model, p, "s", s)
+        X, compliance = _on_isentrope(model, points, key)
+        f = X - wanted
+        too_high = (points.reason == reasons.ABOVE_RANGE) | (points.reason == reasons.NO_ROOT)
+        failed = points.reason != 0
+        f = np.where(failed, np.where(too_high, 1.0, -1.0), f)
+        slope = p * points.v if key == "h" else -p * p * compliance
+        return f, np.where(failed, np.nan, slope)
+
+    usable = np.isfinite(s) & np.isfinite(target)
+    draft = Draft(n)
+    draft.reason[~usable] = reasons.NOT_A_STATE
+    at = np.flatnonzero(usable)
+    if at.size == 0:
+        return draft.finish(model)
+    low, high = np.full(at.size, np.log(_P_LEAST)), np.full(at.size, np.log(_P_MOST))
+    start = np.full(at.size, np.log(1e5))
+    root = guarded_newton(fun, start, low, high, (s[at], target[at]), unit=1.0, tolerance=3e-9)
+    points = flash_p(model, np.exp(root.x), "s", s[at])
+    reached = root.ok & points.ok
+    draft.take(at, points)
+    missed = at[~reached]
+    draft.reason[missed] = np.where(
+        points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached]
+    )
+    return draft.finish(model)
+
+
+def _on_isentrope(model: Model, points: Points, key: str) -> tuple[Array, Array]:
+    """X and (∂v/∂p)_s; in two phases the latter is −(ds/dT)_v/(dp_sat/dT)²."""
+    X, compliance = np.full(points.T.size, np.nan), np.full(points.T.size, np.nan)
+    two = points.x == points.x
+    with np.errstate(all="ignore"):
+        one = np.flatnonzero(~two)
+        if one.size:
+            T, v = points.T[one], points.v[one]
+            t = thermal(model, T, v)
+            X[one] = quantity.of(key, t, T, v)[0]
+            compliance[one] = t.cv / t.cp(T) / t.p_v
+        at = np.flatnonzero(two)
+        if at.size:
+            T, x, v_l, v_v = points.T[at], points.x[at], points.v_liquid[at], points.v_vapour[at]
+            X_l, X_v = quantity.value(model, key, T, v_l), quantity.value(model, key, T, v_v)
+            X[at] = mix(x, X_l, X_v)
+            ds = quantity.value(model, "s", T, v_v) - quantity.value(model, "s", T, v_l)
+            sat = Saturation(T, points.p[at], v_l, v_v, ds / (v_v - v_l), points.reason[at])
+            compliance[at] = -mixed(model, "s", sat, x)[1] / (sat.dp_dT * sat.dp_dT)
+    return X, compliance
+
+
+def flash_uh(model: Model, u: Array, h: Array) -> Points:
+    """The state of energy ``u`` and enthalpy ``h`` (J/mol): p v = h − u is known, u is scanned along it."""
+    n = u.size
+    draft = Draft(n)
+    if quantity.is_ideal(model):
+        draft.reason[:] = reasons.PAIR_NOT_INDEPENDENT
+        return draft.finish(model)
+    pv = h - u
+    usable = np.isfinite(pv) & (pv > 0.0)
+    draft.reason[~usable] = np.where(np.isfinite(pv[~usable]), reasons.TARGET_NOT_REACHED, reasons.NOT_A_STATE)
+    at = np.flatnonzero(usable)
+    if at.size == 0:
+        return draft.finish(model)
+
+    def fun(x: Array, pv: Array, wanted: Array) -> Array:
+        p = np.exp(x)
+        points = flash_p(model, p, "v", pv / p)
+        return _on_isentrope(model, points, "u")[0] - wanted
+
+    top = min(model.p_max, _P_MOST)
+    nodes = np.linspace(np.log(1.0), np.log(top), _NODES)[:, None] + np.zeros(at.size)
+    first, second, count = scanned(fun, nodes, (pv[at], u[at]), unit=1.0)
+    with np.errstate(all="ignore"):
+        p = np.exp(first.x)
+        draft.take(at, flash_p(model, p, "v", pv[at] / p))
+        q = np.exp(second.x)
+        other = flash_p(model, q, "v", pv[at] / q)
+    draft.reason[at] = np.where(count == 0, reasons.TARGET_NOT_REACHED, draft.reason[at])
+    twice = count >= 2
+    draft.reason[at[twice]] = reasons.TWO_SOLUTIONS
+    draft.T_other[at[twice]], draft.p_other[at[twice]] = other.T[twice], other.p[twice]
+    return draft.finish(model)

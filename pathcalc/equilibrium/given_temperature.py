@@ -1,0 +1,162 @@
+"""States of given temperature: with one of v, s, u, h.
+
+On an isotherm p falls and s rises with v, u too as long as molecules attract; each fixes one state. h need not
+be monotone (its slope changes sign where the Joule–Thomson coefficient does), so it is scanned, and two states are
+told apart from one.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equations.properties import thermal
+from pathcalc.equilibrium import quantity, reasons
+from pathcalc.equilibrium.given_pressure import range_reason
+from pathcalc.equilibrium.iterate import guarded_newton, scanned
+from pathcalc.equilibrium.points import Draft, Points, Saturation
+from pathcalc.equilibrium.saturation import saturation_at_T
+
+_NODES = 64
+_P_INVERSE_MOST = 1e-15
+"""1/Pa: no free volume below that of an ideal gas at 10^15 Pa is looked at."""
+
+
+def flash_T(model: Model, T: Array, key: str, target: Array) -> Points:
+    """The state at ``T`` (K) where ``key`` (v, s, u or h, per mole) has the value ``target``."""
+    draft = Draft(T.size)
+    reason = range_reason(model, T)
+    bad = ~np.isfinite(target) | ((target <= 0.0) if key == "v" else False)
+    reason[bad] = reasons.NOT_A_STATE
+    if key in ("u", "h") and quantity.is_ideal(model):
+        reason[reason == 0] = reasons.PAIR_NOT_INDEPENDENT
+    draft.reason[:] = np.where(reason == 0, reasons.NOT_CONVERGED, reason)
+    go = np.flatnonzero(reason == 0)
+    if go.size == 0:
+        return draft.finish(model)
+    cold = go[T[go] < model.T_c] if model.has_dome else go[:0]
+    rest = go[T[go] >= model.T_c] if model.has_dome else go
+    if cold.size:
+        rest = np.concatenate([rest, _with_dome(model, cold, T, key, target, draft)])
+    if rest.size:
+        floor = model.residual.v_min(T[rest])
+        _on_branch(model, rest, T, key, target, draft, floor, quantity.volume_ceiling(model, T[rest]))
+    return draft.finish(model)
+
+
+def _with_dome(
+    model: Model, at: NDArray[np.intp], T: Array, key: str, target: Array, draft: Draft
+) -> NDArray[np.intp]:
+    """Settles lanes below T_c; returns those so close to T_c that they are treated as if there were no dome."""
+    sat = saturation_at_T(model, T[at])
+    wanted = target[at]
+    known = sat.reason == 0
+    with np.errstate(all="ignore"):
+        if key == "v":
+            liquid, vapour = sat.v_liquid, sat.v_vapour
+        else:
+            liquid = quantity.value(model, key, sat.T, sat.v_liquid)
+            vapour = quantity.value(model, key, sat.T, sat.v_vapour)
+        x = (wanted - liquid) / (vapour - liquid)
+        end = 4e-15 * np.maximum(np.abs(liquid), np.abs(vapour)) / (vapour - liquid)
+        x = np.where(np.abs(x) <= end, 0.0, np.where(np.abs(x - 1.0) <= end, 1.0, x))
+        inside = known & (x >= 0.0) & (x <= 1.0)
+        liquid_side, vapour_side = known & (x < 0.0), known & (x > 1.0)
+    if key == "h":
+        # h is not monotone along the liquid: states inside the dome and on both branches are looked for
+        liquid_side = vapour_side = known
+    ceiling = quantity.volume_ceiling(model, T[at])
+    floor = model.residual.v_min(T[at])
+    if inside.any():
+        part = Saturation(*(getattr(sat, name)[inside] for name in Saturation.__dataclass_fields__))
+        draft.put_mixed(at[inside], part, x[inside])
+    for mask, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
+        if mask.any():
+            _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask])
+    return at[~known]
+
+
+def _on_branch(
+    model: Model,
+    at: NDArray[np.intp],
+    T: Array,
+    key: str,
+    target: Array,
+    draft: Draft,
+    low: Array,
+    high: Array,
+) -> None:
+    """A single-phase state between the volumes ``low`` and ``high``."""
+    t, wanted = T[at], target[at]
+    if key == "v":
+        v = wanted.copy()
+        reason = np.where((v > low) | (v > model.residual.v_min(t)), 0, reasons.NO_ROOT)
+        with np.errstate(all="ignore"):
+            state = thermal(model, t, v)
+        reason[(reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))] = reasons.NO_ROOT
+        draft.put(at, t, state.p, v, reason.astype(np.int16))
+        return
+    floor = model.residual.v_min(t)
+    with np.errstate(all="ignore"):
+        lowest = np.log(np.where(low > floor, low - floor, model.R * t * _P_INVERSE_MOST))
+        highest = np.log(high - floor)
+    if key == "h":
+        _scan_enthalpy(model, at, t, wanted, draft, floor, lowest, highest)
+        return
+
+    def fun(x: Array, T: Array, wanted: Array, floor: Array) -> tuple[Array, Array]:
+        free = np.exp(x)
+        v = floor + free
+        X, _, X_v = quantity.of(key, thermal(model, T, v), T, v)
+        return X - wanted, X_v * free
+
+    start = highest if key == "s" else 0.5 * (lowest + highest)
+    with np.errstate(all="ignore"):
+        at_end, slope = fun(highest, t, wanted, floor)
+        start = np.clip(highest - at_end / slope, lowest, highest) if key == "s" else start
+        root = guarded_newton(fun, start, lowest, highest, (t, wanted, floor), unit=1.0)
+        v = floor + np.exp(root.x)
+        p = thermal(model, t, v).p
+    reason = np.where(root.ok & (p > 0.0), 0, reasons.TARGET_NOT_REACHED)
+    draft.put(at, t, p, v, reason.astype(np.int16))
+
+
+def _scan_enthalpy(
+    model: Model,
+    at: NDArray[np.intp],
+    T: Array,
+    wanted: Array,
+    draft: Draft,
+    floor: Array,
+    lowest: Array,
+    highest: Array,
+) -> None:
+    """h at given T: all states with p up to the limit of the equation; two of them are a reason of their own."""
+
+    def fun(x: Array, T: Array, wanted: Array, floor: Array) -> Array:
+        v = floor + np.exp(x)
+        t = thermal(model, T, v)
+        return np.where(t.p <= model.p_max, t.h - wanted, np.nan)
+
+    share = np.linspace(0.0, 1.0, _NODES)[:, None]
+    nodes = lowest + share * (highest - lowest)
+    nodes[-1] = highest
+    first, second, count = scanned(fun, nodes, (T, wanted, floor), unit=1.0)
+    with np.errstate(all="ignore"):
+        v = floor + np.exp(first.x)
+        p = thermal(model, T, v).p
+        p_second = thermal(model, T, floor + np.exp(second.x)).p
+    already = draft.reason[at] == 0
+    new = (count >= 1) & ~already
+    reason = np.where(count >= 2, reasons.TWO_SOLUTIONS, 0)
+    fresh = at[new]
+    draft.put(fresh, T[new], p[new], v[new], reason[new].astype(np.int16))
+    draft.p_other[fresh] = np.where(count[new] >= 2, p_second[new], np.nan)
+    draft.T_other[fresh] = np.where(count[new] >= 2, T[new], np.nan)
+    again = (count >= 1) & already
+    both = at[again]
+    draft.reason[both] = reasons.TWO_SOLUTIONS
+    draft.T_other[both], draft.p_other[both] = T[again], p[again]
+    none = at[(count == 0) & (draft.reason[at] == reasons.NOT_CONVERGED)]
+    draft.reason[none] = reasons.TARGET_NOT_REACHED

@@ -1,0 +1,234 @@
+"""Adiabatic curves of constant polytropic (small-stage) efficiency: dh = c v dp.
+
+c is 1/eta_p in compression and eta_p in expansion. With k = c - 1 and y = ln p, in one phase
+
+    dT/dy = p [k v (dp/dv)_T - T (dp/dT)_v]/D      dv/dy = p [c_v - k v (dp/dT)_v]/D
+    D = c_v (dp/dv)_T - T (dp/dT)_v^2
+
+(from dh = T ds + v dp and T ds = c_v dT + T (dp/dT)_v dv), and dh/dy = c p v inside the dome. Both are solved
+by collocation at the nodes of the 15-point Kronrod rule on equal panels of ln p.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from functools import lru_cache
+
+import numpy as np
+from numpy.polynomial import legendre
+from numpy.typing import NDArray
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equations.properties import thermal
+from pathcalc.equilibrium.saturation import saturation_at_p
+from pathcalc.legs.integration.families import Coordinate, Ends, Lanes, Nodes
+from pathcalc.legs.integration.quadrature import GAUSS_WEIGHTS, KRONROD_WEIGHTS, NODES, over_nodes
+from pathcalc.legs.integration.saturation_line import Side, side_of
+
+PANELS = 4
+ITERATIONS = 60
+TOLERANCE = 2e-13
+
+Slopes = Callable[[Array, Array], Array]
+"""From y = ln p (nodes, n) and unknowns (m, nodes, n) to their slopes by y, (m, nodes, n)."""
+
+
+@lru_cache(maxsize=1)
+def _integration_matrix() -> tuple[Array, Array]:
+    """Integrals of the Lagrange polynomials of the nodes from 0 to each node, and barycentric weights."""
+    z = 2.0 * NODES - 1.0
+    size = z.size
+    vandermonde = legendre.legvander(z, size - 1)
+    integrals = np.empty((size, size))
+    for k in range(size):
+        unit = np.zeros(size)
+        unit[k] = 1.0
+        integrals[:, k] = legendre.legval(z, legendre.legint(unit, lbnd=-1)) / 2.0
+    matrix = np.linalg.solve(vandermonde.T, integrals.T).T
+    gaps = z[:, None] - z[None, :]
+    np.fill_diagonal(gaps, 1.0)
+    return matrix, 1.0 / gaps.prod(axis=1)
+
+
+def _accumulate(matrix: Array, values: Array) -> Array:
+    """``matrix`` applied to the nodes of ``values`` (nodes, n), one term after the other in every lane."""
+    total = matrix[:, :1] * values[0]
+    for j in range(1, values.shape[0]):
+        total = total + matrix[:, j : j + 1] * values[j]
+    return total
+
+
+@dataclass(frozen=True)
+class Solution:
+    """Values of m unknowns along y = ln p from ``y_a`` to ``y_b`` (n,): nodes (m, PANELS, 15, n), ends (m, n).
+
+    ``error`` (m, n) is the estimate of the end values; ``converged`` (n,).
+    """
+
+    y_a: Array
+    y_b: Array
+    values: Array
+    last: Array
+    error: Array
+    converged: NDArray[np.bool_]
+
+    def at(self, y: Array, lanes: Lanes) -> Array:
+        """Unknowns (m, nodes, k) at ``y`` (nodes, k) of ``lanes`` (k,), by barycentric interpolation."""
+        span = (self.y_b - self.y_a)[lanes]
+        with np.errstate(divide="ignore", invalid="ignore"):
+            x = np.where(span != 0.0, (y - self.y_a[lanes]) / span, 0.0) * PANELS
+        panel = np.clip(np.floor(x), 0, PANELS - 1).astype(np.intp)
+        local = x - panel
+        weights = _integration_matrix()[1]
+        top = np.zeros((self.values.shape[0], *y.shape))
+        bottom = np.zeros(y.shape)
+        for j in range(NODES.size):
+            gap = local - NODES[j]
+            gap = np.where(gap == 0.0, 1e-300, gap)
+            share = weights[j] / gap
+            top = top + share * self.values[:, panel, j, lanes]
+            bottom = bottom + share
+        result: Array = top / bottom
+        return result
+
+
+def solve(slopes: Slopes, y_a: Array, y_b: Array, start: Array) -> Solution:
+    """Solve du/dy = slopes(y, u) from ``start`` (m, n) at ``y_a`` to ``y_b`` (n,), lane by lane."""
+    matrix, _ = _integration_matrix()
+    unknowns, lanes = start.shape
+    width = (y_b - y_a) / PANELS
+    values = np.empty((unknowns, PANELS, NODES.size, lanes))
+    error = np.zeros_like(start)
+    converged = np.ones(lanes, dtype=bool)
+    here = start
+    rate = slopes(y_a[None, :], here[:, None, :])
+    for panel in range(PANELS):
+        y = y_a + width * (panel + NODES[:, None])
+        guess = here[:, None, :] + rate[:, -1:, :] * width * NODES[:, None]
+        done = np.zeros(lanes, dtype=bool)
+        for _ in range(ITERATIONS):
+            rate = slopes(y, guess)
+            better = here[:, None, :] + np.stack([_accumulate(matrix, r) for r in rate]) * width
+            size = np.abs(here)[:, None, :]
+            change = (np.abs(better - guess) > TOLERANCE * size).any(axis=(0, 1))
+            guess = np.where(done, guess, better)
+            done |= ~change
+            if done.all():
+                break
+        converged &= done & np.isfinite(guess).all(axis=(0, 1))
+        rate = slopes(y, guess)
+        values[:, panel] = guess
+        end = np.stack([over_nodes(KRONROD_WEIGHTS[:, None] * r) for r in rate]) * width
+        low = np.stack([over_nodes(GAUSS_WEIGHTS[:, None] * r) for r in rate]) * width
+        size = np.maximum(np.abs(end), 1e-300)
+        error += size * np.minimum(1.0, (200.0 * np.abs(end - low) / size) ** 1.5)
+        here = here + end
+    return Solution(y_a, y_b, values, here, error, converged)
+
+
+def one_phase_slopes(model: Model, factor: Array) -> Slopes:
+    """Slopes of (T, v) in one phase; ``factor`` c (n,)."""
+    k = factor - 1.0
+
+    def slopes(y: Array, unknown: Array) -> Array:
+        T, v = unknown
+        with np.errstate(invalid="ignore", over="ignore", divide="ignore"):
+            t = thermal(model, T, v)
+            p = np.exp(y)
+            D = t.cv * t.p_v - T * t.p_T * t.p_T
+            dT = p * (k * v * t.p_v - T * t.p_T) / D
+            dv = p * (t.cv - k * v * t.p_T) / D
+        return np.stack([dT, dv])
+
+    return slopes
+
+
+def dome_slopes(model: Model, factor: Array) -> Slopes:
+    """Slope of h inside the dome; ``factor`` c (n,). The saturated states of one set of nodes are kept."""
+    kept: list[tuple[Array, Side, Side]] = []
+
+    def slopes(y: Array, unknown: Array) -> Array:
+        if not kept or kept[0][0] is not y:
+            sat = saturation_at_p(model, np.exp(y).reshape(-1))
+            sides = (side_of(model, sat, vapour) for vapour in (False, True))
+            liquid, vapour = (Side(*(a.reshape(y.shape) for a in side)) for side in sides)
+            kept[:] = [(y, liquid, vapour)]
+        _, liquid, vapour = kept[0]
+        quality = (unknown[0] - liquid.h) / (vapour.h - liquid.h)
+        v = liquid.v + quality * (vapour.v - liquid.v)
+        return (factor * np.exp(y) * v)[None]
+
+    return slopes
+
+
+@dataclass(frozen=True)
+class OnePhaseCurve:
+    """The one-phase stretch of such a curve, ln p linear in x; ``solution`` holds T and v, ``factor`` c."""
+
+    solution: Solution
+    factor: Array
+
+    @property
+    def coordinate(self) -> Coordinate:
+        """See :class:`Family`."""
+        return "p"
+
+    @property
+    def level_in_dome(self) -> bool:
+        """See :class:`Family`."""
+        return False
+
+    def nodes(self, model: Model, ends: Ends, x: Array, lanes: Lanes) -> Nodes:
+        """See :class:`Family`."""
+        y_a, y_b = self.solution.y_a[lanes], self.solution.y_b[lanes]
+        y = y_a + x * (y_b - y_a)
+        T, v = self.solution.at(y, lanes)
+        dT, dv = one_phase_slopes(model, self.factor[lanes])(y, np.stack([T, v]))
+        return Nodes(T, v, dT * (y_b - y_a), dv * (y_b - y_a))
+
+    def mismatch(self, side: Side, lanes: Lanes | None) -> Array:
+        """See :class:`Family`; the curve is cut while it is solved, not afterwards."""
+        return np.ones_like(side.T)
+
+    def dome_volume(self, liquid: Side, vapour: Side, lanes: Lanes) -> Array:
+        """See :class:`Family`."""
+        raise AssertionError("this stretch lies in one phase")
+
+    def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
+        """See :class:`Family`."""
+        return {"T": ends.T_a, "v": ends.v_a}
+
+
+@dataclass(frozen=True)
+class DomeCurve:
+    """The stretch of such a curve inside the dome; ``solution`` holds h."""
+
+    solution: Solution
+
+    @property
+    def coordinate(self) -> Coordinate:
+        """See :class:`Family`."""
+        return "p"
+
+    @property
+    def level_in_dome(self) -> bool:
+        """See :class:`Family`."""
+        return False
+
+    def nodes(self, model: Model, ends: Ends, x: Array, lanes: Lanes) -> Nodes:
+        """See :class:`Family`."""
+        raise AssertionError("this stretch lies in the dome")
+
+    def mismatch(self, side: Side, lanes: Lanes | None) -> Array:
+        """See :class:`Family`."""
+        return np.ones_like(side.T)
+
+    def dome_volume(self, liquid: Side, vapour: Side, lanes: Lanes) -> Array:
+        """See :class:`Family`."""
+        (h,) = self.solution.at(np.log(liquid.p), lanes)
+        return liquid.v + (h - liquid.h) / (vapour.h - liquid.h) * (vapour.v - liquid.v)
+
+    def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
+        """See :class:`Family`."""
+        return {"T": ends.T_a, "v": ends.v_a}

@@ -1,0 +1,210 @@
+"""A stretch of one family of curves between two states, cut at phase boundaries and integrated piece by piece."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+from pathcalc.equilibrium.flash import flash
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium.points import Points
+from pathcalc.legs.integration.differentials import QUANTITIES, differentials
+from pathcalc.legs.integration.families import Ends, Family, Lanes
+from pathcalc.legs.integration.quadrature import Quadrature, integrate
+from pathcalc.legs.integration.saturation_line import Cuts, SaturationLine, Side
+from pathcalc.legs.integration.two_phase import level_piece, sloping_piece
+
+COUNT = len(QUANTITIES)
+
+
+@dataclass(frozen=True)
+class Piece:
+    """One piece of a segment in the lanes that have it: its curve, its ends, where it lies, its integrals.
+
+    ``lanes`` are lanes of the leg, ``local`` the same lanes as the segment's family counts them.
+    """
+
+    family: Family
+    lanes: Lanes
+    local: Lanes
+    own: bool
+    ends: Ends
+    in_dome: bool
+    integrals: Quadrature
+
+
+@dataclass(frozen=True)
+class Segment:
+    """From ``a`` to ``b`` along ``family`` in some lanes of the leg (all of them where ``lanes`` is None).
+
+    ``own`` is False where the fluid's true way is not known (an irreversible leg) and the segment is part of an
+    equivalent reversible way between the same states. ``region`` says that the whole segment is known to lie in
+    one phase or in the dome; else it is cut where it meets the boundary.
+    """
+
+    family: Family
+    a: Points
+    b: Points
+    own: bool = True
+    lanes: Lanes | None = None
+    region: Literal["unknown", "one-phase", "dome"] = "unknown"
+
+
+@dataclass(frozen=True)
+class Integrals:
+    """Sums over the pieces of a leg, arrays (7, n) in the order of QUANTITIES, and the pieces themselves."""
+
+    value: Array
+    error: Array
+    magnitude: Array
+    converged: NDArray[np.bool_]
+    pieces: tuple[Piece, ...]
+
+    def __getitem__(self, name: str) -> Array:
+        """One integral by its name, (n,)."""
+        row: Array = self.value[QUANTITIES.index(name)]
+        return row
+
+
+class BoundaryOf:
+    """The saturation line of a model, worked out on first use."""
+
+    def __init__(self, model: Model) -> None:
+        self._model = model
+        self._line: SaturationLine | None = None
+
+    def line(self) -> SaturationLine:
+        """The table; computed once."""
+        if self._line is None:
+            self._line = SaturationLine(self._model)
+        return self._line
+
+
+def integrate_segments(model: Model, boundary: BoundaryOf, segments: list[Segment], lanes: int) -> Integrals:
+    """Route 1 over the segments of a leg: every segment cut at the dome, every piece by quadrature."""
+    pieces: list[Piece] = []
+    for segment in segments:
+        pieces.extend(_pieces(model, boundary, segment))
+    shape = (COUNT, lanes)
+    value, error, magnitude = np.zeros(shape), np.zeros(shape), np.zeros(shape)
+    converged = np.ones(lanes, dtype=bool)
+    for piece in pieces:
+        value[:, piece.lanes] += piece.integrals.value
+        error[:, piece.lanes] += piece.integrals.error
+        magnitude[:, piece.lanes] += piece.integrals.magnitude
+        converged[piece.lanes] &= piece.integrals.converged
+    return Integrals(value, error, magnitude, converged, tuple(pieces))
+
+
+def _ends_of(segment: Segment) -> Ends:
+    return Ends(segment.a.T, segment.a.v, segment.b.T, segment.b.v)
+
+
+def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]:
+    ends = _ends_of(segment)
+    lanes = np.arange(ends.T_a.size, dtype=np.intp)
+    at_risk = _may_meet_dome(model, segment)
+    if segment.region != "unknown" or not at_risk.any():
+        return [_piece(model, segment, ends, lanes, segment.region == "dome")]
+    cuts = _cuts(boundary.line(), segment, ends)
+    inside = _starts_inside(model, segment, ends, cuts, at_risk)
+    pieces: list[Piece] = []
+    for j in range(int(cuts.count.max(initial=0)) + 1):
+        here = lanes[cuts.count >= j]
+        part = _part(ends, cuts, j, here)
+        in_dome = inside[here] ^ (j % 2 == 1)
+        for dome in (False, True):
+            chosen = np.flatnonzero(in_dome == dome)
+            if chosen.size:
+                pieces.append(_piece(model, segment, part.take(chosen), here[chosen], dome))
+    return pieces
+
+
+def _may_meet_dome(model: Model, segment: Segment) -> NDArray[np.bool_]:
+    """Lanes of which at least a part lies below the critical temperature."""
+    if not model.has_dome:
+        return np.zeros(segment.a.T.shape, dtype=bool)
+    return np.minimum(segment.a.T, segment.b.T) < model.T_c
+
+
+def _cuts(line: SaturationLine, segment: Segment, ends: Ends) -> Cuts:
+    family = segment.family
+
+    def progress(side: Side, lane: Lanes) -> Array:
+        a, b, here = _coordinates(segment, side)
+        start, stop = a[lane], b[lane]
+        with np.errstate(divide="ignore", invalid="ignore"):
+            along: Array = (here - start) / (stop - start)
+        return along
+
+    return line.cuts(ends.T_a.size, family.mismatch, progress)
+
+
+def _coordinates(segment: Segment, side: Side) -> tuple[Array, Array, Array]:
+    if segment.family.coordinate == "T":
+        return segment.a.T, segment.b.T, side.T
+    if segment.family.coordinate == "p":
+        return segment.a.p, segment.b.p, side.p
+    return np.log(segment.a.v), np.log(segment.b.v), np.log(side.v)
+
+
+def _starts_inside(
+    model: Model, segment: Segment, ends: Ends, cuts: Cuts, at_risk: NDArray[np.bool_]
+) -> NDArray[np.bool_]:
+    """Whether the first piece of each lane lies in the dome."""
+
+    def strictly_inside(points: Points) -> NDArray[np.bool_]:
+        return (points.x > 0.0) & (points.x < 1.0)
+
+    odd = cuts.count % 2 == 1
+    outside_a, outside_b = np.isnan(segment.a.x), np.isnan(segment.b.x)
+    inside = strictly_inside(segment.a)
+    from_b = ~outside_a & ~inside & (strictly_inside(segment.b) | outside_b)
+    inside = np.where(from_b, strictly_inside(segment.b) ^ odd, inside)
+    unknown = ~outside_a & ~strictly_inside(segment.a) & ~from_b & at_risk
+    if unknown.any():
+        lanes = np.flatnonzero(unknown).astype(np.intp)
+        first = _part(ends, cuts, 0, lanes)
+        middle = flash(model, segment.family.middle(model, first, lanes))
+        inside[lanes] = ~np.isnan(middle.x)
+    result: NDArray[np.bool_] = inside & at_risk
+    return result
+
+
+def _part(ends: Ends, cuts: Cuts, j: int, lanes: Lanes) -> Ends:
+    """The ends of piece ``j`` of the given lanes."""
+    T_a, v_a = ends.T_a[lanes], ends.v_a[lanes]
+    T_b, v_b = ends.T_b[lanes], ends.v_b[lanes]
+    if j > 0:
+        T_a, v_a = cuts.T[j - 1, lanes], cuts.v[j - 1, lanes]
+    if j < cuts.T.shape[0]:
+        more = cuts.count[lanes] > j
+        T_b = np.where(more, cuts.T[j, lanes], T_b)
+        v_b = np.where(more, cuts.v[j, lanes], v_b)
+    return Ends(T_a, v_a, T_b, v_b)
+
+
+def _floors(model: Model, ends: Ends) -> Array:
+    """Below these magnitudes an integral counts as zero: 1e-6 of R, of R T."""
+    energy = 1e-6 * model.R * ends.T_a
+    entropy = np.full_like(energy, 1e-6 * model.R)
+    return np.stack([entropy, energy, energy, energy, energy, energy, entropy])
+
+
+def _piece(model: Model, segment: Segment, ends: Ends, local: Lanes, in_dome: bool) -> Piece:
+    family = segment.family
+
+    def integrand(x: Array, k: NDArray[np.intp]) -> tuple[Array, Array, Array]:
+        return differentials(model, family.nodes(model, ends.take(k), x, local[k]))
+
+    if not in_dome:
+        total = integrate(integrand, COUNT, local.size, _floors(model, ends))
+    elif family.level_in_dome:
+        total = level_piece(model, ends)
+    else:
+        total = sloping_piece(model, family, ends, local, _floors(model, ends))
+    lanes = local if segment.lanes is None else segment.lanes[local]
+    return Piece(family, lanes, local, segment.own, ends, in_dome, total)

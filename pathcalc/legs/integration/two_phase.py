@@ -1,0 +1,107 @@
+"""Pieces of a path inside the dome.
+
+State changes go from the first end by vaporisation or condensation at constant temperature to the boundary,
+along the boundary, and back into the dome at the temperature of the second end. The two ends of that way obey
+Clapeyron's relation (ds = (dp_sat/dT) dv), the boundary the differentials of a single phase. The integrals of
+p dv and v dp are those of the leg's own curve.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.legs.integration.differentials import QUANTITIES, differentials
+from pathcalc.legs.integration.families import Ends, Family, Lanes, Nodes
+from pathcalc.legs.integration.quadrature import Quadrature, integrate
+from pathcalc.legs.integration.saturation_line import Side, side_of
+
+DomeVolume = Callable[[Side, Side, Lanes], Array]
+
+
+@dataclass(frozen=True)
+class _Crossing:
+    """Change of phase at constant temperature from volume ``v_from`` to ``v_to``; all (k,)."""
+
+    ds: Array
+    du: Array
+    dh: Array
+
+    @classmethod
+    def of(cls, T: Array, p: Array, dp_dT: Array, v_from: Array, v_to: Array) -> _Crossing:
+        """Clapeyron: ds = (dp_sat/dT) dv, dh = T ds, du = dh - p dv."""
+        change = v_to - v_from
+        ds = dp_dT * change
+        return cls(ds, T * ds - p * change, T * ds)
+
+
+def level_piece(model: Model, ends: Ends) -> Quadrature:
+    """A piece at constant temperature and pressure inside the dome; arrays (7, k)."""
+    sat = saturation_at_T(model, ends.T_a)
+    crossing = _Crossing.of(ends.T_a, sat.p, sat.dp_dT, ends.v_a, ends.v_b)
+    p_dv = sat.p * (ends.v_b - ends.v_a)
+    zero = np.zeros_like(p_dv)
+    value = np.stack([crossing.ds, crossing.du, crossing.dh, p_dv, zero, crossing.dh, crossing.ds])
+    size = np.abs(value)
+    error = np.broadcast_to(saturation_error(size), value.shape)
+    one = np.ones(p_dv.shape, dtype=np.intp)
+    return Quadrature(value, error, size, sat.reason == 0, one)
+
+
+def saturation_error(size: Array) -> Array:
+    """What the vapour pressure's own convergence (relative 1e-13) leaves in a change of phase."""
+    return 4.0e-13 * size
+
+
+def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors: Array) -> Quadrature:
+    """A piece inside the dome along which the temperature changes; arrays (7, k)."""
+    first, last = saturation_at_T(model, ends.T_a), saturation_at_T(model, ends.T_b)
+    quality = (ends.v_a - first.v_liquid) / (first.v_vapour - first.v_liquid)
+    vapour = quality > 0.5
+    near_a = np.where(vapour, first.v_vapour, first.v_liquid)
+    near_b = np.where(vapour, last.v_vapour, last.v_liquid)
+    out = _Crossing.of(ends.T_a, first.p, first.dp_dT, ends.v_a, near_a)
+    back = _Crossing.of(ends.T_b, last.p, last.dp_dT, near_b, ends.v_b)
+    span = ends.T_b - ends.T_a
+
+    def integrand(x: Array, k: NDArray[np.intp]) -> tuple[Array, Array, Array]:
+        T = ends.T_a[k] + x * span[k]
+        sat = saturation_at_T(model, T.reshape(-1))
+        liquid, gas = (_shaped(side_of(model, sat, is_gas), T) for is_gas in (False, True))
+        use = np.broadcast_to(vapour[k], T.shape)
+        v = np.where(use, gas.v, liquid.v)
+        terms = model.residual.pressure(T, v)
+        dT = np.broadcast_to(span[k], T.shape)
+        dv = (liquid.dp_dT - terms.p_T) / terms.p_v * dT
+        values, sizes, inherited = differentials(model, Nodes(T, v, dT, dv))
+        push = family.dome_volume(liquid, gas, lanes[k]) * liquid.dp_dT * dT
+        values[4], sizes[4], inherited[4] = push, np.abs(push), 0.0
+        values[6], sizes[6], inherited[6] = push / T, np.abs(push) / T, 0.0
+        return values, sizes, inherited
+
+    along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10)
+    value = along.value.copy()
+    size = along.magnitude.copy()
+    for row, name in enumerate(("ds", "du", "dh")):
+        parts = getattr(out, name), getattr(back, name)
+        value[row] += parts[0] + parts[1]
+        size[row] += np.abs(parts[0]) + np.abs(parts[1])
+    v_dp, push_over_T = along.value[4], along.value[6]
+    p_dv = last.p * ends.v_b - first.p * ends.v_a - v_dp
+    value[3], value[5], value[6] = p_dv, value[1] + p_dv, value[0] + push_over_T
+    size[3] = np.abs(last.p * ends.v_b) + np.abs(first.p * ends.v_a) + size[4]
+    size[5], size[6] = size[1] + size[3], size[0] + along.magnitude[6]
+    error = along.error + saturation_error(size)
+    error[3] += along.error[4]
+    error[5], error[6] = error[1] + error[3], error[0] + along.error[6]
+    good = along.converged & (first.reason == 0) & (last.reason == 0)
+    return Quadrature(value, error, size, good, along.panels)
+
+
+def _shaped(side: Side, like: Array) -> Side:
+    return Side(*(a.reshape(like.shape) for a in side))

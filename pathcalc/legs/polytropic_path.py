@@ -1,0 +1,266 @@
+"""A machine of constant polytropic efficiency, followed from the inlet to its end pressure through all phases.
+
+Each stretch in one phase is solved as if there were no dome; where it meets the saturation line it is cut, and
+the next stretch begins there. Lanes are cut at their own places.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+from pathcalc.equilibrium.flash import flash
+
+from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium.points import Points
+from pathcalc.equilibrium.saturation import saturation_at_p
+from pathcalc.legs.integration.bracket import bracketed_root
+from pathcalc.legs.integration.families import Lanes
+from pathcalc.legs.integration.pick import replace_points, take_points
+from pathcalc.legs.integration.polytropic_efficiency import (
+    DomeCurve,
+    OnePhaseCurve,
+    Solution,
+    dome_slopes,
+    one_phase_slopes,
+    solve,
+)
+from pathcalc.legs.integration.quadrature import NODES
+from pathcalc.legs.integration.saturation_line import side_of
+from pathcalc.legs.integration.segments import Segment
+from pathcalc.legs.run import LegRun, Place
+
+MAX_STRETCHES = 6
+MAX_HALVINGS = 40
+
+
+@dataclass(frozen=True)
+class Course:
+    """Where the machine ends and the stretches on the way."""
+
+    end: Place
+    segments: list[Segment]
+
+
+@dataclass
+class _Front:
+    """Where each lane has got to."""
+
+    y: Array
+    T: Array
+    v: Array
+    h: Array
+    x: Array
+    open: NDArray[np.bool_]
+    into_dome: NDArray[np.bool_]
+
+
+def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> Course:
+    """Follow dh = c v dp from the inlet to pressure ``p`` (n,). Lanes that cannot be followed are marked
+
+    (not when ``quiet``: then their end is NaN).
+    """
+    model, a = run.model, run.inlet
+    factor = np.where(p >= a.p, 1.0 / efficiency, efficiency)
+    goal = np.log(p)
+    x = a.points.x
+    front = _Front(
+        np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p)
+    )
+    segments: list[Segment] = []
+    start = a.points
+    for _ in range(MAX_STRETCHES):
+        if not front.open.any():
+            break
+        for dome in (False, True):
+            lanes = np.flatnonzero(front.open & (front.into_dome == dome)).astype(np.intp)
+            if lanes.size:
+                stretch = _in_dome if dome else _in_one_phase
+                segments.append(stretch(model, front, goal, factor, lanes, start))
+        start = _points_at(model, front)
+    trouble = ~np.isfinite(front.h) | (front.open & np.isfinite(goal * a.T))
+    h = np.where(trouble, np.nan, front.h)
+    if quiet:
+        return Course(run.place(flash(model, {"p": p, "h": h})), segments)
+    run.fail(
+        trouble & np.isfinite(goal * a.T),
+        "path-not-followed",
+        "the path of constant polytropic efficiency could not be followed to its end pressure",
+        "split the leg in two, or look whether it leaves the range of the equation",
+    )
+    end = run.reach(p=np.where(trouble, np.nan, p), h=h)
+    return Course(end, _with_end(segments, front, end))
+
+
+def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
+    """Whether the first stretch of each lane lies in the dome."""
+    a = run.inlet
+    x = a.points.x
+    inside = (x > 0.0) & (x < 1.0)
+    edge = (x == 0.0) | (x == 1.0)
+    if edge.any():
+        lanes = np.flatnonzero(edge)
+        nudge = np.where(p[lanes] > a.p[lanes], 1.0, -1.0) * 1e-6
+        near_p = a.p[lanes] * (1.0 + nudge)
+        near = flash(run.model, {"p": near_p, "h": a.h[lanes] + a.v[lanes] * (near_p - a.p[lanes])})
+        inside[lanes] = ~np.isnan(near.x)
+    return inside
+
+
+def _in_one_phase(
+    model: Model, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points
+) -> Segment:
+    y_a, y_b = front.y[lanes], goal[lanes].copy()
+    initial = np.stack([front.T[lanes], front.v[lanes]])
+    slopes = one_phase_slopes(model, factor[lanes])
+    solution = solve(slopes, y_a, y_b, initial)
+    meets = np.zeros(lanes.size, dtype=bool)
+    if model.has_dome:
+        liquid = front.v[lanes] < model.v_c
+        for _ in range(MAX_HALVINGS):
+            low, high, lost = _first_sign_change(model, solution, liquid)
+            if not lost.any():
+                break
+            y_b = np.where(lost, 0.5 * (y_a + y_b), y_b)
+            solution = solve(slopes, y_a, y_b, initial)
+        meets = np.isfinite(low)
+        if meets.any():
+            root = bracketed_root(
+                lambda y: _above_saturation(model, solution, y, np.arange(lanes.size)),
+                np.where(meets, low, y_a),
+                np.where(meets, high, y_a),
+            )
+            y_b = np.where(meets, root, y_b)
+            solution = solve(slopes, y_a, y_b, initial)
+        short = ~meets & (np.abs(y_b - goal[lanes]) > 1e-12)
+    else:
+        short = np.zeros(lanes.size, dtype=bool)
+    T, v = solution.last
+    bad = ~solution.converged | ~np.isfinite(T + v)
+    h = _enthalpy(model, T, v)
+    front.y[lanes], front.T[lanes], front.v[lanes] = y_b, T, v
+    front.h[lanes] = np.where(bad, np.nan, h)
+    front.x[lanes] = np.where(meets, np.where(front.v[lanes] < model.v_c, 0.0, 1.0), np.nan)
+    front.open[lanes] = (meets | short) & ~bad
+    front.into_dome[lanes] = meets
+    return Segment(
+        OnePhaseCurve(solution, factor[lanes]),
+        take_points(start, lanes),
+        take_points(start, lanes),
+        own=True,
+        lanes=lanes,
+        region="one-phase",
+    )
+
+
+def _enthalpy(model: Model, T: Array, v: Array) -> Array:
+    from pathcalc.equations.properties import thermal
+
+    with np.errstate(invalid="ignore", divide="ignore", over="ignore"):
+        h: Array = thermal(model, T, v).h
+    return h
+
+
+def _above_saturation(model: Model, solution: Solution, y: Array, lanes: Lanes) -> Array:
+    """T minus the saturation temperature at the same pressure; NaN above the critical pressure."""
+    T = solution.at(y[None, :], lanes)[0, 0]
+    sat = saturation_at_p(model, np.exp(y))
+    return np.where(sat.reason == 0, T - sat.T, np.nan)
+
+
+def _first_sign_change(
+    model: Model, solution: Solution, liquid: NDArray[np.bool_]
+) -> tuple[Array, Array, NDArray[np.bool_]]:
+    """Bracket of ln p in which each lane enters the dome (NaN: it does not), and lanes lost before any."""
+    panels, lanes = solution.values.shape[1], liquid.size
+    width = (solution.y_b - solution.y_a) / panels
+    y = (solution.y_a + width * (np.arange(panels)[:, None, None] + NODES[:, None])).reshape(-1, lanes)
+    T = solution.values[0].reshape(-1, lanes)
+    p = np.exp(y)
+    near = (p < model.p_c) & (model.T_c * 1.2 > T)
+    gap = np.full(y.shape, np.nan)
+    if near.any():
+        sat = saturation_at_p(model, p[near])
+        gap[near] = np.where(sat.reason == 0, T[near] - sat.T, np.nan)
+    wrong = np.where(liquid, gap > 0.0, gap < 0.0)
+    broken = ~np.isfinite(T)
+    first_wrong = np.where(wrong.any(axis=0), wrong.argmax(axis=0), y.shape[0])
+    first_broken = np.where(broken.any(axis=0), broken.argmax(axis=0), y.shape[0])
+    lost = (first_broken <= first_wrong) & (first_broken < y.shape[0])
+    lost |= ~solution.converged & (first_wrong == y.shape[0])
+    meets = (first_wrong < first_broken) & (first_wrong < y.shape[0])
+    column = np.arange(lanes)
+    high = np.where(meets, y[np.minimum(first_wrong, y.shape[0] - 1), column], np.nan)
+    before = np.where(first_wrong > 0, y[np.maximum(first_wrong - 1, 0), column], solution.y_a)
+    return np.where(meets, before, np.nan), high, lost
+
+
+def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points) -> Segment:
+    y_a, y_b = front.y[lanes], goal[lanes].copy()
+    ceiling = np.log(model.p_c * (1.0 - 1e-6))
+    y_b = np.minimum(y_b, np.maximum(ceiling, y_a))
+    initial = front.h[lanes][None]
+    slopes = dome_slopes(model, factor[lanes])
+    solution = solve(slopes, y_a, y_b, initial)
+
+    def quality(y: Array) -> Array:
+        sat = saturation_at_p(model, np.exp(y).reshape(-1))
+        liquid, vapour = (side_of(model, sat, gas).h.reshape(y.shape) for gas in (False, True))
+        h = solution.at(y, np.arange(lanes.size))[0]
+        return np.asarray((h - liquid) / (vapour - liquid))
+
+    y = y_a + (y_b - y_a) * np.linspace(0.0, 1.0, 41)[1:, None]
+    x = quality(y)
+    outside = (x < 0.0) | (x > 1.0)
+    leaves = outside.any(axis=0)
+    dry = np.zeros(lanes.size, dtype=bool)
+    if leaves.any():
+        first = np.where(leaves, outside.argmax(axis=0), 0)
+        column = np.arange(lanes.size)
+        dry = x[first, column] > 1.0
+        limit = np.where(dry, 1.0, 0.0)
+        before = np.where(first > 0, y[np.maximum(first - 1, 0), column], y_a + 1e-9 * (y_b - y_a))
+        root = bracketed_root(
+            lambda at: quality(at[None, :])[0] - limit,
+            np.where(leaves, before, y_a),
+            np.where(leaves, y[first, column], y_a),
+        )
+        y_b = np.where(leaves, root, y_b)
+        solution = solve(slopes, y_a, y_b, initial)
+    h = solution.last[0]
+    bad = ~solution.converged | ~np.isfinite(h)
+    end = flash(model, {"p": np.exp(y_b), "h": h})
+    front.y[lanes], front.h[lanes] = y_b, np.where(bad, np.nan, h)
+    front.T[lanes] = end.T
+    front.v[lanes] = end.v
+    front.x[lanes] = np.where(leaves, np.where(dry, 1.0, 0.0), end.x)
+    front.open[lanes] = leaves & ~bad
+    front.into_dome[lanes] = False
+    return Segment(DomeCurve(solution), take_points(start, lanes), take_points(start, lanes), lanes=lanes, region="dome")
+
+
+def _points_at(model: Model, front: _Front) -> Points:
+    """The points at which the next stretches begin; saturated where a lane has met the boundary."""
+    p = np.exp(front.y)
+    edge = (front.x == 0.0) | (front.x == 1.0)
+    points = flash(model, {"p": p, "h": front.h})
+    if edge.any():
+        lanes = np.flatnonzero(edge)
+        points = replace_points(points, lanes, flash(model, {"p": p[lanes], "x": front.x[lanes]}))
+    front.T[edge], front.v[edge] = points.T[edge], points.v[edge]
+    return points
+
+
+def _with_end(segments: list[Segment], front: _Front, end: Place) -> list[Segment]:
+    """Give every stretch its end: the start of the next stretch in the same lanes, or the end of the leg."""
+    finished: list[Segment] = []
+    following = end.points
+    for segment in reversed(segments):
+        assert segment.lanes is not None
+        b = take_points(following, segment.lanes)
+        finished.append(
+            Segment(segment.family, segment.a, b, own=True, lanes=segment.lanes, region=segment.region)
+        )
+        following = replace_points(following, segment.lanes, segment.a)
+    return finished[::-1]

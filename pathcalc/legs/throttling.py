@@ -1,0 +1,57 @@
+"""A leg at constant enthalpy through a restriction, flow only."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, ClassVar, Literal
+
+from pydantic import Field
+
+from pathcalc.case.fields import TargetP, TargetT
+from pathcalc.case.leg_model import LegModel, OneOf
+
+if TYPE_CHECKING:
+    from pathcalc.legs.run import LegRun, Outcome
+
+
+class ThrottlingTo(OneOf):
+    """Where the leg ends."""
+
+    p: TargetP | None = Field(
+        default=None,
+        description="Pressure at the end; absolute unless the unit says gauge.",
+        examples=["4.5 barg", {"ratio": 3.1}],
+    )
+    T: TargetT | None = Field(
+        default=None,
+        description="Temperature at the end.",
+        examples=["35 degC", {"rise": "40 K"}],
+    )
+
+
+class Throttling(LegModel):
+    """A leg at constant enthalpy through a restriction, flow only."""
+
+    boundaries: ClassVar[frozenset[str]] = frozenset({"flow"})
+
+    path: Literal["throttling"] = Field(
+        description="Kind of the leg: a leg at constant enthalpy through a restriction, flow only."
+    )
+    to: ThrottlingTo = Field(description="Where the leg ends.")
+
+
+MODEL = Throttling
+
+
+def solve(leg: Throttling, run: LegRun) -> Outcome:
+    """End state from the enthalpy and the target; the state change is integrated along the isenthalp."""
+    from pathcalc.legs.run import Outcome, nothing
+    from pathcalc.legs.ways import constant
+
+    a = run.inlet
+    b = run.reach(h=a.h, **run.targets(leg.to))
+    run.wrong_side(
+        b.p > a.p * (1.0 + 1e-12),
+        "a throttling leg cannot raise the pressure",
+        "give a target at a lower pressure, or use an adiabatic leg with work",
+    )
+    return Outcome(b, [constant("h", a, b, own=False)], nothing, reversible=False)

@@ -1,0 +1,265 @@
+"""A solved case as users and reports read it."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from functools import cached_property
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from pathcalc.case.model import Case
+from pathcalc.errors import NoSolutionError, UsageError
+from pathcalc.legs.run import Place
+from pathcalc.path.solver import SolvedPath, solve_path
+from pathcalc.path.values import (
+    DELTA_KEYS,
+    EXCHANGE_KEYS,
+    EXTENSIVE,
+    Record,
+    Value,
+    dead_state,
+    leg_values,
+    piece_values,
+    state_values,
+)
+
+if TYPE_CHECKING:
+    from pathcalc.path.steps import Basis, Curve, Dome, Step
+
+
+class Solution:
+    """States, legs and totals of a solved path, SI per kilogram.
+
+    Values are plain numbers where the case was solved without lanes, else arrays over the lanes; NaN in lanes that
+    have no solution. ``ok`` and ``reasons`` tell which, and why.
+    """
+
+    def __init__(self, path: SolvedPath, *, lanes: bool) -> None:
+        self.path = path
+        self._lanes = lanes
+
+    @property
+    def case(self) -> Case:
+        """The case that was solved."""
+        return self.path.case
+
+    @property
+    def n_lanes(self) -> int:
+        """Number of lanes; 1 for an ordinary solve."""
+        return self.path.setting.n
+
+    @property
+    def ok(self) -> Value:
+        """Which lanes have a solution, booleans (n,)."""
+        return self.path.setting.status.ok
+
+    @cached_property
+    def reasons(self) -> list[str | None]:
+        """For every lane None, or why it has no solution: place, reason and remedy."""
+        status = self.path.setting.status
+        texts = [str(t) for t in status.troubles]
+        return [None if k < 0 else texts[k] for k in status.reason]
+
+    @cached_property
+    def dead(self) -> Place:
+        """The dead state of exergy, molar SI."""
+        return dead_state(self.path)
+
+    @cached_property
+    def _state_arrays(self) -> dict[str, dict[str, Any]]:
+        places = {"start": self.path.start, **{leg.leg.name: leg.end for leg in self.path.legs}}
+        return {name: state_values(self.path, name, place, self.dead) for name, place in places.items()}
+
+    @cached_property
+    def _leg_arrays(self) -> dict[str, dict[str, Any]]:
+        return {leg.leg.name: leg_values(self.path, leg) for leg in self.path.legs}
+
+    def _out(self, value: Any) -> Any:
+        if isinstance(value, dict):
+            return Record({k: self._out(v) for k, v in value.items()})
+        if isinstance(value, np.ndarray) and not self._lanes:
+            return value[0] if value.dtype == object else float(value[0])
+        return value
+
+    @cached_property
+    def states(self) -> dict[str, Record]:
+        """States by name, in the order of the path: ``solution.states["start"].T``."""
+        return {name: self._out(values) for name, values in self._state_arrays.items()}
+
+    @cached_property
+    def legs(self) -> dict[str, Record]:
+        """Legs by name, in the order of the path: ``solution.legs["first stage"].work``."""
+        return {name: self._out(values) for name, values in self._leg_arrays.items()}
+
+    @cached_property
+    def _total_arrays(self) -> dict[str, Any]:
+        setting, M = self.path.setting, self.path.model.M
+        if setting.moles is None:
+            nothing: dict[str, Any] = dict.fromkeys(EXCHANGE_KEYS)
+            return {**nothing, "delta": dict.fromkeys(DELTA_KEYS)}
+        mass = setting.moles * M
+        totals: dict[str, Any] = {}
+        for key in EXCHANGE_KEYS:
+            total = np.zeros(setting.n)
+            for leg in self._leg_arrays.values():
+                total = total + leg[key] * mass
+            totals[key] = total
+        delta: dict[str, Any] = {}
+        for key in DELTA_KEYS:
+            change = np.zeros(setting.n)
+            for leg in self._leg_arrays.values():
+                change = change + leg["delta"][key] * (mass if key in EXTENSIVE else 1.0)
+            delta[key] = change
+        return {**totals, "delta": delta}
+
+    @cached_property
+    def totals(self) -> Record:
+        """Sums over the legs in J or W, J/K or W/K; None where the case gives no amount."""
+        found: Record = self._out(self._total_arrays)
+        return found
+
+    @cached_property
+    def cycle(self) -> Record | None:
+        """Thermal efficiency or coefficients of performance of a cycle, else None."""
+        if not self.case.cycle:
+            return None
+        with np.errstate(invalid="ignore", divide="ignore"):
+            heats = np.stack([leg["heat"] for leg in self._leg_arrays.values()])
+            work = np.stack([leg["work"] for leg in self._leg_arrays.values()]).sum(axis=0)
+            taken, given = np.maximum(heats, 0.0).sum(axis=0), np.maximum(-heats, 0.0).sum(axis=0)
+            gives = work < 0.0
+            values = {
+                "thermal_efficiency": np.where(gives & (taken > 0.0), -work / taken, np.nan),
+                "cop_cooling": np.where(work > 0.0, taken / work, np.nan),
+                "cop_heating": np.where(work > 0.0, given / work, np.nan),
+            }
+        found: Record = self._out(values)
+        return found
+
+    def quantity(self, address: str) -> Value:
+        """A result by its address, such as ``first stage.T`` or ``totals.work``. UsageError if there is none."""
+        name, _, key = address.rpartition(".")
+        if name.endswith(".delta"):
+            name, key = name[: -len(".delta")], f"delta.{key}"
+        places: list[Mapping[str, Any]] = []
+        if name == "totals":
+            places = [self.totals]
+        else:
+            places = [where[name] for where in (self.states, self.legs) if name in where]
+        for place in places:
+            if key.startswith("delta.") and "delta" in place and key[6:] in place["delta"]:
+                return place["delta"][key[6:]]
+            if key in place and key not in ("name", "path", "from", "to", "delta", "maxwell", "total"):
+                return place[key]
+        raise UsageError(f"no result {address!r}; {self._nearest(address)}")
+
+    def _nearest(self, address: str) -> str:
+        import difflib
+
+        known = [f"{name}.{key}" for name, state in self.states.items() for key in state]
+        known += [f"{name}.{key}" for name in self.legs for key in EXCHANGE_KEYS]
+        known += [f"{name}.delta.{key}" for name in self.legs for key in DELTA_KEYS]
+        known += [f"totals.{key}" for key in EXCHANGE_KEYS]
+        near = difflib.get_close_matches(address, known, 1)
+        return f"did you mean {near[0]!r}?" if near else "write <state or leg>.<key> or totals.<key>"
+
+    def pieces(self, leg: str, lane: int = 0) -> list[dict[str, Any]]:
+        """Phase, ds and dh of the pieces of a leg in one lane."""
+        solved = next(item for item in self.path.legs if item.leg.name == leg)
+        return piece_values(self.path, solved, lane)
+
+    @cached_property
+    def checks(self) -> list[dict[str, Any]]:
+        """Self-checks of an ordinary solve: name, at, passed, value, tolerance."""
+        from pathcalc.path.checks import all_checks
+
+        return all_checks(self)
+
+    @cached_property
+    def limits(self) -> list[dict[str, Any]]:
+        """Acceptance limits with their margins (SI)."""
+        from pathcalc.path.limits import evaluated_limits
+
+        return evaluated_limits(self)
+
+    @cached_property
+    def warnings(self) -> list[dict[str, str]]:
+        """What a reader must know beside the numbers: code, at, text."""
+        from pathcalc.path.warnings import all_warnings
+
+        return all_warnings(self)
+
+    @cached_property
+    def comparison(self) -> list[dict[str, Any]]:
+        """The same path with other equations, where the case asks for it."""
+        from pathcalc.path.comparison import compared
+
+        return compared(self)
+
+    @property
+    def passed(self) -> bool:
+        """True if every check and every limit is met."""
+        return all(row["passed"] for row in (*self.checks, *self.limits))
+
+    @cached_property
+    def explanations(self) -> dict[str, list[Step]]:
+        """How results came about, by address."""
+        from pathcalc.path.explanations import explain_all
+
+        return explain_all(self)
+
+    @cached_property
+    def curves(self) -> list[Curve]:
+        """The ways of the legs through the state surface, for diagrams."""
+        from pathcalc.path.curves import curves_of
+
+        return curves_of(self)
+
+    @cached_property
+    def dome(self) -> Dome | None:
+        """The boundary of the two-phase region, if the equation has one."""
+        from pathcalc.path.curves import dome_of
+
+        return dome_of(self)
+
+    @cached_property
+    def basis(self) -> Basis:
+        """The fluid's constants, equation and heat capacity with their sources."""
+        from pathcalc.path.basis import basis_of
+
+        return basis_of(self)
+
+    def to_dict(self) -> dict[str, Any]:
+        """The results of an ordinary solve as one JSON object, SI, keys in a fixed order."""
+        from pathcalc.path.results import as_dict
+
+        if self._lanes:
+            raise UsageError("a result object is of one solve; read states, legs and totals of a solve with lanes")
+        return as_dict(self)
+
+    def report(self, form: str = "html") -> str:
+        """The calculation report as text: ``html`` or ``md``."""
+        from pathcalc import report
+
+        if form == "html":
+            return report.render_html(self)
+        if form in ("md", "markdown"):
+            return report.render_markdown(self)[0]
+        raise UsageError(f"unknown report format {form!r}; known: html, md")
+
+
+def solve(case: Case, lanes: Mapping[str, Any] | None = None) -> Solution:
+    """Solve a case.
+
+    ``lanes`` maps addresses (``start.T``, ``first stage.efficiency``, ``first stage.p``, ``surroundings.T``,
+    ``amount``) to one-dimensional arrays of one length, in SI and per kilogram, pressures absolute, relative targets
+    as the number that stands in the case (a ratio, a rise). Then the values of the Solution are arrays, and a lane
+    that has no solution is marked; without lanes NoSolutionError is raised.
+    """
+    path = solve_path(case, lanes)
+    if not lanes:
+        trouble = path.setting.status.trouble_of(0)
+        if trouble is not None:
+            raise NoSolutionError(trouble)
+    return Solution(path, lanes=bool(lanes))

@@ -1,0 +1,103 @@
+"""What a solved path tells its readers beside the numbers: worked steps, curves, the basis of the fluid.
+
+Plain frozen records. Arrays are one-dimensional, SI, per kilogram (T K, p Pa, v m3/kg, s J/(kg K), h and u
+J/kg); the arrays of one record have one length.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+
+@dataclass(frozen=True)
+class Step:
+    """One step of a worked calculation: the symbols, then the numbers, then the result.
+
+    ``formula`` and ``numbers`` are LaTeX without dollar signs (``numbers`` is the formula with the case's
+    numbers put in). ``result`` is LaTeX when it holds a backslash, ``^``, ``_`` or a brace, plain text
+    otherwise. An empty string leaves that line out.
+    """
+
+    title: str
+    formula: str = ""
+    numbers: str = ""
+    result: str = ""
+    source: str = ""
+    note: str = ""
+
+
+@dataclass(frozen=True, eq=False)
+class CurvePiece:
+    """A stretch of a leg within one phase region, in the order the path runs."""
+
+    phase: str
+    T: NDArray[np.float64]
+    p: NDArray[np.float64]
+    v: NDArray[np.float64]
+    s: NDArray[np.float64]
+    h: NDArray[np.float64]
+    u: NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Curve:
+    """The way of one leg through the state surface, for diagrams."""
+
+    leg: str
+    pieces: tuple[CurvePiece, ...]
+
+
+@dataclass(frozen=True, eq=False)
+class Dome:
+    """The boundary of the two-phase region, ascending in T, and the critical point."""
+
+    T: NDArray[np.float64]
+    p: NDArray[np.float64]
+    v_l: NDArray[np.float64]
+    v_v: NDArray[np.float64]
+    s_l: NDArray[np.float64]
+    s_v: NDArray[np.float64]
+    h_l: NDArray[np.float64]
+    h_v: NDArray[np.float64]
+    T_c: float
+    p_c: float
+    v_c: float
+    s_c: float
+    h_c: float
+
+
+class Constant(NamedTuple):
+    """One constant of the fluid. ``symbol`` is LaTeX, ``text`` says what it is, ``value`` is in ``unit``."""
+
+    symbol: str
+    text: str
+    value: float
+    unit: str
+    source: str
+
+
+@dataclass(frozen=True)
+class Basis:
+    """What the fluid was taken to be: its constants, its equation of state, its ideal-gas heat capacity.
+
+    ``parameters`` are further rows of the same form as ``constants`` (the equation's own coefficients where
+    there are few enough to print). ``hazards`` are the card's keywords: flammable, toxic, asphyxiant,
+    oxidiser, cryogenic and so on.
+    """
+
+    substance: str
+    formula: str
+    hazards: tuple[str, ...]
+    constants: tuple[Constant, ...]
+    equation_title: str
+    equation_formula: str
+    parameters: tuple[Constant, ...]
+    equation_source: str
+    range_text: str
+    ideal_gas_text: str
+    ideal_gas_source: str
+    ideal_gas_range: str

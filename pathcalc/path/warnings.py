@@ -1,0 +1,110 @@
+"""What a reader must know beside the numbers: ranges left, phases, shortcomings of the equation.
+
+Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic, virial-dense,
+quantum-gas, datum-dependent, no-dead-state, check-failed, comparison-failed, unsourced-inputs.
+"""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from pathcalc.legs.run import Place
+    from pathcalc.path.solution import Solution
+
+Warning_ = dict[str, str]
+
+CUBICS = frozenset({"van-der-waals", "redlich-kwong", "soave", "peng-robinson"})
+NEAR_CRITICAL = 0.05
+"""Relative distance in T within which the fluctuations that no classical equation has begin to matter
+
+(common practice, no source)."""
+
+
+def _warning(code: str, at: str, text: str) -> Warning_:
+    return {"code": code, "at": at, "text": text}
+
+
+def all_warnings(solution: Solution) -> list[Warning_]:
+    """Warnings of the states in the order of the path, then of the equation, then of the record."""
+    rows: list[Warning_] = []
+    places = {"start": solution.path.start, **{leg.leg.name: leg.end for leg in solution.path.legs}}
+    for name, place in places.items():
+        rows.extend(_of_state(solution, name, place))
+    rows.extend(_of_equation(solution))
+    rows.extend(_of_legs(solution))
+    for row in solution.checks:
+        if not row["passed"]:
+            text = f"the check {row['name']!r} failed: {row['value']:.3g} against {row['tolerance']:.3g}"
+            rows.append(_warning("check-failed", row["at"], text))
+    return rows
+
+
+def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
+    model = solution.path.model
+    T, p, v = float(place.T[0]), float(place.p[0]), float(place.v[0])
+    rows: list[Warning_] = []
+    low, high = model.T_range
+    if not low <= T <= high:
+        text = f"T = {T:.6g} K lies outside the stated range of {low:.6g} K to {high:.6g} K; treat it as extrapolated"
+        rows.append(_warning("outside-range", name, text))
+    ideal = model.ideal
+    if not ideal.T_min <= T <= ideal.T_max:
+        text = (
+            f"T = {T:.6g} K lies outside the range of the ideal-gas heat capacity, "
+            f"{ideal.T_min:.6g} K to {ideal.T_max:.6g} K"
+        )
+        rows.append(_warning("heat-capacity-extrapolated", name, text))
+    if p > model.p_max:
+        text = f"p = {p:.6g} Pa lies above the {model.p_max:.6g} Pa up to which the equation is meant to be used"
+        rows.append(_warning("above-pressure-range", name, text))
+    if model.has_dome and abs(T / model.T_c - 1.0) < NEAR_CRITICAL and 0.4 < model.v_c / v < 2.0:
+        text = (
+            "the state is close to the critical point, where this equation is at its least accurate in "
+            "density and heat capacity"
+        )
+        rows.append(_warning("near-critical", name, text))
+    if model.equation in CUBICS and v < model.v_c / 1.5:
+        text = (
+            "a dense fluid: densities of a cubic equation are commonly off by 5 % to 20 % here, and heat "
+            "capacities and compressibilities by more (common experience, no source)"
+        )
+        rows.append(_warning("dense-cubic", name, text))
+    if model.equation == "virial" and v < 2.0 * model.v_c:
+        text = "denser than half the critical density: a virial series cut after C is not to be trusted here"
+        rows.append(_warning("virial-dense", name, text))
+    return rows
+
+
+def _of_equation(solution: Solution) -> list[Warning_]:
+    model, rows = solution.path.model, []
+    if model.equation in CUBICS and model.T_c < 50.0:
+        text = (
+            "a quantum gas (hydrogen, helium, neon): constants fitted at the critical point serve a cubic "
+            "equation badly at low temperature"
+        )
+        rows.append(_warning("quantum-gas", "fluid", text))
+    if np.isnan(solution.dead.h[0]):
+        text = (
+            "the fluid has no state at the temperature and pressure of the surroundings with this equation; "
+            "exergies of states are left out"
+        )
+        rows.append(_warning("no-dead-state", "surroundings", text))
+    return rows
+
+
+def _of_legs(solution: Solution) -> list[Warning_]:
+    rows: list[Warning_] = []
+    for solved in solution.path.legs:
+        if any(piece.in_dome for piece in solved.integrals.pieces):
+            text = "the leg passes through the two-phase region; it is integrated piece by piece, in equilibrium"
+            rows.append(_warning("two-phase", solved.leg.name, text))
+    for equation in solution.case.report.compare_with:
+        from pathcalc.path.comparison import solved_with
+
+        other = solved_with(solution, equation)
+        if isinstance(other, str):
+            rows.append(_warning("comparison-failed", "comparison", f"{equation}: {other}"))
+    return rows

@@ -1,0 +1,121 @@
+"""The program's checks on itself, the integrals along the legs, and other equations on the same path."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+from pathcalc.report import numbers
+from pathcalc.report.context import Context, phase_words
+from pathcalc.report.units import kind_of
+from pathcalc.report.view import Block, Cell, Column, Heading, Paragraph, Section, Table
+from pathcalc.report.words import say
+
+
+def section(ctx: Context) -> Section:
+    """Checks and Maxwell integrals."""
+    blocks: list[Block] = [Paragraph(say("checks.lead")), _checks(ctx), Heading(say("checks.maxwell"))]
+    blocks += [Paragraph(say("checks.error")), _integrals(ctx)]
+    if any(len(leg["pieces"]) > 1 for leg in ctx.legs):
+        blocks.append(_pieces(ctx))
+    return Section("checks", say("checks.title"), tuple(blocks))
+
+
+def _small(value: float | None) -> Cell:
+    text = numbers.scientific(value)
+    return Cell(text, "absent" if text == numbers.ABSENT else "number")
+
+
+def _checks(ctx: Context) -> Table | Paragraph:
+    if not ctx.result["checks"]:
+        return Paragraph(say("checks.none"), blank=True)
+    columns = [Column(say("col.check")), Column(say("col.at"))]
+    columns += [Column(say("col.value"), numeric=True), Column(say("col.tolerance"), numeric=True)]
+    columns.append(Column(say("col.outcome")))
+    rows = [
+        (
+            Cell(str(c["name"])),
+            Cell(str(c["at"] or numbers.ABSENT)),
+            _small(c["value"]),
+            _small(c["tolerance"]),
+            Cell(say("checks.passed"), "good") if c["passed"] else Cell(say("checks.failed"), "bad"),
+        )
+        for c in ctx.result["checks"]
+    ]
+    return ctx.table(say("checks.caption"), columns, rows)
+
+
+def _integrals(ctx: Context) -> Table:
+    columns = [
+        Column(say("col.leg")),
+        ctx.column("d.s", "∫ds", "s"),
+        ctx.column("d.u", "∫du", "e"),
+        ctx.column("d.h", "∫dh", "e"),
+        Column(say("col.error"), numeric=True),
+        Column(say("col.closure"), numeric=True),
+        Column(say("col.phase")),
+    ]
+    rows = []
+    for leg in ctx.legs:
+        m = leg["maxwell"] or {}
+        phases = ", ".join(phase_words(p["phase"]) for p in leg["pieces"]) or numbers.ABSENT
+        rows.append(
+            [
+                Cell(str(leg["name"])),
+                ctx.cell("s", m.get("ds")),
+                ctx.cell("e", m.get("du")),
+                ctx.cell("e", m.get("dh")),
+                _small(m.get("error")),
+                _small(m.get("closure")),
+                Cell(phases),
+            ]
+        )
+    return ctx.table(say("checks.caption.maxwell"), columns, rows)
+
+
+def _pieces(ctx: Context) -> Table:
+    columns = [Column(say("col.leg")), Column(say("col.piece"), numeric=True), Column(say("col.phase"))]
+    columns += [ctx.column("d.s", "∫ds", "s"), ctx.column("d.h", "∫dh", "e")]
+    rows = [
+        (
+            Cell(str(leg["name"])),
+            Cell(str(i), "number"),
+            Cell(phase_words(piece["phase"])),
+            ctx.cell("s", piece["ds"]),
+            ctx.cell("e", piece["dh"]),
+        )
+        for leg in ctx.legs
+        for i, piece in enumerate(leg["pieces"], 1)
+    ]
+    return ctx.table(say("checks.caption.pieces"), columns, rows)
+
+
+def comparison(ctx: Context) -> Section | None:
+    """The same path by other equations; left out where the case asks for none."""
+    others: Sequence[Mapping[str, Any]] = ctx.result["comparison"]
+    if not others:
+        return None
+    addresses = list(dict.fromkeys(a for o in others for a in (o["quantities"] or {})))
+    columns = [Column(say("col.quantity")), Column(say("col.unit"))]
+    columns.append(Column(str(ctx.result["fluid"]["equation"]), numeric=True))
+    for other in others:
+        columns.append(Column(str(other["equation"]), numeric=True))
+        columns.append(Column(say("comparison.difference"), numeric=True))
+    rows = []
+    for address in addresses:
+        kind = kind_of(address)
+        own = ctx.value(address)
+        row = [Cell(address, "code"), Cell(ctx.units[kind].unit), ctx.cell(kind, own)]
+        for other in others:
+            value = (other["quantities"] or {}).get(address)
+            gap = None if value is None or own is None else value - own
+            row.append(
+                ctx.cell(kind, value) if value is not None else Cell(say("comparison.absent"), "absent")
+            )
+            row.append(ctx.cell(ctx.margin(kind), gap))
+        rows.append(row)
+    blocks = (
+        Paragraph(say("comparison.lead")),
+        ctx.table(say("comparison.caption"), columns, rows),
+    )
+    return Section("comparison", say("comparison.title"), blocks)

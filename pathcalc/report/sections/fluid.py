@@ -1,0 +1,98 @@
+"""What the fluid was taken to be, and how the legs were worked out."""
+
+from __future__ import annotations
+
+from pathcalc.path.steps import Constant
+from pathcalc.report import numbers
+from pathcalc.report.context import Context
+from pathcalc.report.units import pretty
+from pathcalc.report.view import Block, Cell, Column, Formulas, Paragraph, Section, Symbols
+from pathcalc.report.words import WORDS, say
+
+_D = r"\mathrm{d}"
+_ROUTE_1 = (
+    (
+        rf"{_D}s = \frac{{c_v}}{{T}}\,{_D}T + \left(\frac{{\partial p}}{{\partial T}}\right)_v {_D}v",
+        "method.dsT",
+    ),
+    (
+        rf"{_D}s = \frac{{c_p}}{{T}}\,{_D}T - \left(\frac{{\partial v}}{{\partial T}}\right)_p {_D}p",
+        "method.dsp",
+    ),
+    (
+        rf"{_D}u = c_v\,{_D}T + \left[T\left(\frac{{\partial p}}{{\partial T}}\right)_v - p\right]{_D}v",
+        "method.duT",
+    ),
+    (
+        rf"{_D}h = c_p\,{_D}T + \left[v - T\left(\frac{{\partial v}}{{\partial T}}\right)_p\right]{_D}p",
+        "method.dhp",
+    ),
+    (
+        r"c_v(T,v) = c_v^{0}(T) + "
+        rf"T\int_{{\infty}}^{{v}}\left(\frac{{\partial^2 p}}{{\partial T^2}}\right)_v {_D}v",
+        "method.cv",
+    ),
+    (rf"\Delta s = \frac{{{_D}p_{{\mathrm{{sat}}}}}}{{{_D}T}}\,\Delta v", "method.clapeyron"),
+)
+_EXERGY = {
+    "flow": r"e_x = (h - h_0) - T_0\,(s - s_0)",
+    "closed": r"e_x = (u - u_0) + p_0\,(v - v_0) - T_0\,(s - s_0)",
+}
+_GENERATED = r"s_{\mathrm{gen}} = \Delta s - \int \frac{\delta q}{T_b}"
+
+
+def section(ctx: Context) -> Section:
+    """Fluid, equation of state, constants, ranges and sources."""
+    basis = ctx.solution.basis
+    result = ctx.result["fluid"]
+    datum = str(result["datum"])
+    blocks: list[Block] = [
+        Paragraph(
+            say(
+                "fluid.lead",
+                substance=basis.substance,
+                formula=basis.formula,
+                molar_mass=numbers.short(result["molar_mass"] * 1e3, 8),
+                equation=basis.equation_title,
+            )
+        )
+    ]
+    if basis.equation_formula:
+        blocks.append(Formulas(((basis.equation_formula, ""),)))
+    columns = [Column(say(f"col.{c}")) for c in ("item", "model", "range", "source")]
+    models = (
+        ("fluid.equation", basis.equation_title, basis.range_text, basis.equation_source),
+        ("fluid.ideal", basis.ideal_gas_text, basis.ideal_gas_range, basis.ideal_gas_source),
+    )
+    rows = [(Cell(say(words)), *(Cell(t or numbers.ABSENT) for t in texts)) for words, *texts in models]
+    blocks.append(ctx.table(say("fluid.caption.models"), columns, rows))
+    blocks.append(Paragraph(say("fluid.datum", datum=WORDS.get(f"fluid.datum.{datum}", datum))))
+    if basis.constants:
+        blocks.append(_symbols(ctx, "fluid.caption.constants", basis.constants))
+    if basis.parameters:
+        blocks.append(_symbols(ctx, "fluid.caption.parameters", basis.parameters))
+    return Section("fluid", say("fluid.title"), tuple(blocks))
+
+
+def _symbols(ctx: Context, caption: str, constants: tuple[Constant, ...]) -> Symbols:
+    texts = numbers.align(numbers.short(c.value, 12) for c in constants)
+    rows = tuple(
+        (c.symbol, c.text, Cell(n.text, "number", n.pad), pretty(c.unit), c.source)
+        for c, n in zip(constants, texts, strict=True)
+    )
+    heads = tuple(say(f"col.{c}") for c in ("symbol", "meaning", "value", "unit", "source"))
+    return Symbols(say(caption), heads, rows, ctx.number_table())
+
+
+def method(ctx: Context) -> Section:
+    """The two routes, their differentials, and the definitions used."""
+    mode = "flow" if ctx.flow else "closed"
+    blocks: tuple[Block, ...] = (
+        Paragraph(say("method.route1")),
+        Formulas(tuple((latex, say(words)) for latex, words in _ROUTE_1)),
+        Paragraph(say("method.route2")),
+        Paragraph(say("method.closure")),
+        Formulas(((_EXERGY[mode], say(f"method.exergy.{mode}")), (_GENERATED, say("method.generated")))),
+        Paragraph(say("method.source")),
+    )
+    return Section("method", say("method.title"), blocks)

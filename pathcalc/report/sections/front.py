@@ -1,0 +1,126 @@
+"""The head of the document: what it is, how it came out, what it is for."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from pathcalc.report.context import Context, pick
+from pathcalc.report.sections.basis import inputs
+from pathcalc.report.units import kind_of
+from pathcalc.report.view import Block, Bullets, Document, Figure, Heading, Outcome, Paragraph, Section
+from pathcalc.report.words import say
+
+
+def header(ctx: Context, sections: tuple[Section, ...], figures: tuple[Figure, ...]) -> Document:
+    """The document around its sections."""
+    record = pick(ctx.case, "record")
+    title = str(ctx.result["case"]["title"] or ctx.result["case"]["id"])
+    facts = []
+    project = pick(record, "project")
+    if project is not None:
+        facts.append((say("doc.project"), str(project), False))
+    for key in ("number", "revision", "date", "author"):
+        value = pick(record, key)
+        facts.append((say(f"doc.{key}"), say("doc.unset") if value is None else str(value), value is None))
+    facts.append((say("doc.case"), str(ctx.result["case"]["id"]), False))
+    number, revision = pick(record, "number"), pick(record, "revision")
+    if number is None:
+        running = say("doc.running.bare", title=title)
+    else:
+        running = say("doc.running", number=number, revision=revision or say("doc.unset"))
+    return Document(
+        title=title,
+        kind=say("doc.kind"),
+        running=running,
+        facts=tuple(facts),
+        signatories=(pick(record, "author", ""), pick(record, "checker", ""), pick(record, "approver", "")),
+        outcomes=(_limits(ctx), _checks(ctx), _warnings(ctx), _inputs(ctx)),
+        evidence=say("verdict.evidence"),
+        sections=sections,
+        figures=figures,
+    )
+
+
+def _limits(ctx: Context) -> Outcome:
+    label = say("verdict.limits")
+    limits = ctx.result["limits"]
+    if not limits:
+        return Outcome(label, say("verdict.limits.none"), "plain")
+    missed = [x for x in limits if not x["passed"]]
+    if missed:
+        names = ", ".join(
+            f"{x['quantity']} = {ctx.measure(kind_of(x['quantity']), x['value'])}" for x in missed
+        )
+        text = say("verdict.limits.missed", missed=len(missed), n=len(limits), names=names)
+        return Outcome(label, text, "bad")
+    text = say("verdict.limits.met", n=len(limits))
+    ranked = [x for x in limits if x["margin"] is not None]
+    if ranked:
+        text += " " + _tightest(ctx, min(ranked, key=_share))
+    return Outcome(label, text, "good")
+
+
+def _share(limit: dict[str, Any]) -> float:
+    bound = _binding(limit)[1]
+    return float(abs(limit["margin"])) / (abs(bound) or 1.0)
+
+
+def _binding(limit: dict[str, Any]) -> tuple[str, float]:
+    """The bound the value is nearest to."""
+    bounds = [(side, float(limit[side])) for side in ("min", "max") if limit[side] is not None]
+    return min(bounds, key=lambda b: abs(b[1] - (limit["value"] or 0.0)))
+
+
+def _tightest(ctx: Context, limit: dict[str, Any]) -> str:
+    kind = kind_of(limit["quantity"])
+    side, bound = _binding(limit)
+    return say(
+        "verdict.tightest",
+        quantity=limit["quantity"],
+        value=ctx.measure(kind, limit["value"]),
+        side=say(f"verdict.side.{side}"),
+        limit=ctx.measure(kind, bound),
+        margin=ctx.measure(ctx.margin(kind), limit["margin"]),
+    )
+
+
+def _checks(ctx: Context) -> Outcome:
+    label = say("verdict.checks")
+    checks = ctx.result["checks"]
+    failed = [c for c in checks if not c["passed"]]
+    if failed:
+        names = ", ".join(f"{c['name']} ({c['at']})" if c["at"] else str(c["name"]) for c in failed)
+        text = say("verdict.checks.failed", failed=len(failed), n=len(checks), names=names)
+        return Outcome(label, text, "bad")
+    if not checks:
+        return Outcome(label, say("verdict.checks.none"), "plain")
+    return Outcome(label, say("verdict.checks.passed", n=len(checks)), "good")
+
+
+def _warnings(ctx: Context) -> Outcome:
+    n = len(ctx.warnings)
+    key = "none" if n == 0 else "one" if n == 1 else "many"
+    return Outcome(say("verdict.warnings"), say(f"verdict.warnings.{key}", n=n), "warning" if n else "plain")
+
+
+def _inputs(ctx: Context) -> Outcome:
+    found = inputs(ctx)
+    bare = sum(1 for i in found if not i.source)
+    text = say("verdict.inputs.some" if bare else "verdict.inputs.all", n=len(found), unsourced=bare)
+    return Outcome(say("verdict.inputs"), text, "plain")
+
+
+def purpose(ctx: Context) -> Section:
+    """Purpose, scope and sign convention."""
+    stated = pick(pick(ctx.case, "record"), "purpose")
+    mode = "flow" if ctx.flow else "closed"
+    scope = say(f"purpose.scope.{mode}", n=len(ctx.legs), fluid=ctx.solution.basis.substance)
+    notes = pick(pick(ctx.case, "record"), "notes", [])
+    blocks: tuple[Block, ...] = (
+        Paragraph(str(stated)) if stated else Paragraph(say("purpose.none"), blank=True),
+        Paragraph(scope),
+        Paragraph(say("purpose.sign") + " " + say(f"purpose.work.{mode}")),
+    )
+    if notes:
+        blocks = (*blocks, Heading(say("purpose.notes")), Bullets(tuple(str(n) for n in notes)))
+    return Section("purpose", say("purpose.title"), blocks)
