@@ -11,7 +11,7 @@ from pydantic import Field
 from pathcalc.case.fields import Text
 from pathcalc.case.leg_model import LegModel, OneOf, Strict
 from pathcalc.case.leg_registry import leg_models
-from pathcalc.case.names import MAX_LEGS, PATHS_LATER, RESERVED_NAMES
+from pathcalc.case.names import MAX_LEGS, PATH_WORDS, PATHS_LATER, RESERVED_NAMES
 from pathcalc.case.nodes import Mark, mark_of
 from pathcalc.case.sections import RepeatCount
 from pathcalc.case.translate import Findings, Path

@@ -32,7 +32,8 @@ class OneOf(Strict):
         low, high = self.needs
         if not low <= len(given) <= high:
             meant = f"{'one' if low == 1 else low} of" if low == high else f"{low} or {high} of"
-            got = f"not {words(given, 'and')}" if given else "none is given"
+            alone = " alone" if len(given) == 1 else ""
+            got = f"not {words(given, 'and')}{alone}" if given else "none is given"
             raise_problems(Problem("one-of", f"give {meant} {words(counted)}; {got}", key=True))
         return self
 

@@ -11,6 +11,12 @@ WITHOUT_SATURATION = ("ideal-gas", "virial")
 DATUMS = ("ideal-gas-298", "triple-liquid", "boiling-liquid", "liquid-0C")
 SATURATION_DATUMS = ("triple-liquid", "boiling-liquid", "liquid-0C")
 PATHS_LATER = ("saturation", "separation", "mixing")
+# the trade's other words for a path, and what is written here
+PATH_WORDS = {
+    "isentropic": "write adiabatic, which is reversible where no efficiency is given",
+    "isenthalpic": "write throttling",
+    "isometric": "write isochoric",
+}
 MIXTURES = False
 
 TOP_KEYS = (

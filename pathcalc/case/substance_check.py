@@ -7,6 +7,7 @@ answers, and a test of this room alone can put another in its place. The module 
 
 from __future__ import annotations
 
+import difflib
 import importlib
 from typing import Any
 
@@ -28,6 +29,8 @@ def problem_of(name: str) -> str | None:
     """Why ``name`` is no built-in substance, or None where it is one (or an alias of one)."""
     try:
         _substances().resolve(name)
-    except InvalidCaseError as error:
-        return error.findings[0].message if error.findings else f"unknown substance {name!r}"
+    except InvalidCaseError:
+        near = difflib.get_close_matches(name.lower(), substance_names(), n=1, cutoff=0.6)
+        hint = f"did you mean {near[0]}?" if near else "`pathcalc substances` lists all"
+        return f"unknown substance {name!r}; {hint}"
     return None

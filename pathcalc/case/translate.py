@@ -56,7 +56,7 @@ class Findings:
                 self._problem(p, (*at, *loc))
             return
         translate = _TRANSLATED.get(kind)
-        here = what or _name((*at, *loc[:-1]))
+        here = what if what and len(loc) == 1 else _name((*at, *loc[:-1]))
         if kind == "extra_forbidden":
             known = _keys(model, loc[:-1])
             text = f"unknown key {str(loc[-1])!r} in {here}; {nearest(str(loc[-1]), known)}"

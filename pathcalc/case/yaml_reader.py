@@ -34,6 +34,10 @@ _PLAIN_WORDS = {
 }
 
 
+# told where the brace, bracket or quotation mark is opened, not where its end was missed
+_NOT_CLOSED = frozenset(p for p, text in _PLAIN_WORDS.items() if "is not closed" in text)
+
+
 class _Stop(Exception):
     """Reading cannot go on; the findings say why."""
 
@@ -85,6 +89,8 @@ def read(text: str, file: str, findings: list[Finding]) -> Mapping | None:
 
 def _syntax(error: yaml.MarkedYAMLError, text: str, file: str) -> Finding:
     mark = error.problem_mark or error.context_mark
+    if error.context_mark and error.problem in _NOT_CLOSED:
+        mark = error.context_mark
     line, column = (mark.line, mark.column) if mark else (0, 0)
     problem = error.problem or "unreadable"
     lines = text.split("\n")

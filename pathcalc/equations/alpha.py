@@ -1,7 +1,7 @@
 """Temperature functions α(T) of the cubic equations: a(T) = a_c α(T).
 
-Each gives two independent forms: ``theta`` in y = 1/T for the fundamental equation (θ/θ_c = α Tc/T with its scaled
-y-derivatives) and ``alpha`` in T for p(T, v).
+Each gives two independent forms: ``theta`` in y = 1/T for the fundamental equation (θ/θ_c = α Tc/T with its
+scaled y-derivatives) and ``alpha`` in T for p(T, v).
 """
 
 from __future__ import annotations

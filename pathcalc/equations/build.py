@@ -1,7 +1,7 @@
 """From a substance card and the name of an equation to a model.
 
-An equation family is a function ``(card, options) -> Built``. Built-in ones are named here with the module they
-live in (imported when asked for); others come in through the entry-point group ``pathcalc.equations``.
+An equation family is a function ``(card, options) -> Built``. Built-in ones are named here with the module
+they live in (imported when asked for); others come in through the entry-point group ``pathcalc.equations``.
 """
 
 from __future__ import annotations
@@ -36,9 +36,9 @@ _T_CEILING = 20000.0
 class Options:
     """What a case may say about its equation.
 
-    ``volume_shift``: m3/mol, or "card" for the card's own. ``constants``: "critical" or "card" (van der Waals a
-    and b as the card gives them). ``virial``: ``{"B": Coefficient, "C": Coefficient | None}`` in place of the
-    correlations.
+    ``volume_shift``: m3/mol, or "card" for the card's own. ``constants``: "critical" or "card" (van der
+    Waals a and b as the card gives them). ``virial``: ``{"B": Coefficient, "C": Coefficient | None}`` in
+    place of the correlations.
     """
 
     volume_shift: float | str = 0.0
@@ -115,23 +115,18 @@ def build_model(
     :class:`pathcalc.errors.InvalidCaseError` where the card lacks a constant the equation needs.
     """
     built = builder(equation)(card, Options(volume_shift, constants, virial, more or {}))
-    if ideal is None:
-        ideal = built.ideal
-    if isinstance(heat_capacity, int | float):
-        ideal = ideal_gas.constant(float(heat_capacity) / built.R)
-    elif ideal is None or heat_capacity is not None:
-        ideal = ideal_gas.from_card(card, heat_capacity, built.R)
+    part = _ideal_part(card, built, heat_capacity, ideal)
     T_triple = built.T_triple
     if T_triple is None:
         T_triple = card.T_triple.value if card.has("T_triple") else 0.0
-    stated = (max(ideal.T_min, built.T_stated[0], T_triple), min(ideal.T_max, built.T_stated[1]))
-    lowest = max(T_triple, built.T_min) or max(0.5 * ideal.T_min, 1.0)
-    highest = min(2.0 * ideal.T_max, built.T_max, _T_CEILING)
+    stated = (max(part.T_min, built.T_stated[0], T_triple), min(part.T_max, built.T_stated[1]))
+    lowest = max(T_triple, built.T_min) or max(0.5 * part.T_min, 1.0)
+    highest = min(2.0 * part.T_max, built.T_max, _T_CEILING)
     return Model(
         name=card.name,
         equation=equation,
         M=card.molar_mass.value,
-        ideal=ideal,
+        ideal=part,
         residual=built.residual,
         T_c=built.T_c,
         p_c=built.p_c,
@@ -146,3 +141,15 @@ def build_model(
         notes=built.notes,
         info=built.info,
     )
+
+
+def _ideal_part(
+    card: Card, built: Built, heat_capacity: str | float | None, given: IdealPart | None
+) -> IdealPart:
+    if isinstance(heat_capacity, int | float):
+        return ideal_gas.constant(float(heat_capacity) / built.R)
+    if heat_capacity is None:
+        own = given if given is not None else built.ideal
+        if own is not None:
+            return own
+    return ideal_gas.from_card(card, heat_capacity, built.R)

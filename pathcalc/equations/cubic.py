@@ -13,8 +13,8 @@ With θ = a/(R T b) and η = b/v the reduced residual Helmholtz energy is
 
     α^r = −ln(1 − η) − θ L(η),   L = ln((1 + δ1 η)/(1 + δ2 η))/(δ1 − δ2)   (van der Waals: L = η).
 
-A volume shift c (A. Péneloux, E. Rauzy, R. Fréze, Fluid Phase Equilib. 8 (1982) 7) means v = v_EOS − c: all is
-evaluated at v + c, and α^r(T, v) = α^r_EOS(T, v + c) − ln((v + c)/v).
+A volume shift c (A. Péneloux, E. Rauzy, R. Fréze, Fluid Phase Equilib. 8 (1982) 7) means v = v_EOS − c: all
+is evaluated at v + c, and α^r(T, v) = α^r_EOS(T, v + c) − ln((v + c)/v).
 """
 
 from __future__ import annotations
@@ -64,7 +64,13 @@ class TwoConstantCubic:
     """One cubic for one substance, fixed by T_c (K), p_c (Pa), its α(T) and a volume shift c (m3/mol)."""
 
     def __init__(
-        self, form: Form, alpha: AlphaFunction, T_c: float, p_c: float, R: float = R_CODATA, shift: float = 0.0
+        self,
+        form: Form,
+        alpha: AlphaFunction,
+        T_c: float,
+        p_c: float,
+        R: float = R_CODATA,
+        shift: float = 0.0,
     ) -> None:
         self.form, self.alpha, self.T_c, self.p_c, self.R, self.shift = form, alpha, T_c, p_c, R, shift
         self.a_c = form.omega_a * (R * T_c) ** 2 / p_c

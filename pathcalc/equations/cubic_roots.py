@@ -4,13 +4,15 @@ With θ = a/(R T b), π = p b/(R T), u = δ1 + δ2, w = δ1 δ2, the equation p(
 
     (θ + w + wπ) η³ − (θ − u + (w − u)π) η² + (1 + (1 − u)π) η − π = 0.
 
-In η (not in Z or v) the small vapour root at tiny pressure and the large liquid root are both well conditioned for
-Newton's method: near zero the cubic is almost linear, and near the liquid root its slope is of order θ.
+In η (not in Z or v) the small vapour root at tiny pressure and the large liquid root are both well
+conditioned for Newton's method: near zero the cubic is almost linear, and near the liquid root its slope is
+of order θ.
 """
 
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array
 
@@ -20,11 +22,12 @@ _TINY = 1e-9
 _NEARLY_QUADRATIC = 1e-4
 
 
-def density_roots(theta: Array, pi: Array, u: float, w: float) -> tuple[Array, Array, Array]:
+def density_roots(theta: Array, pi: Array, u: float, w: float) -> tuple[Array, Array, NDArray[np.bool_]]:
     """(η_vapour, η_liquid, three) of shape (n,): the least and the greatest root in (0, 1).
 
     Closed form by Cardano and Viète, then Newton steps on the cubic itself. There are one or three roots in
-    (0, 1), as the cubic is negative at 0 and positive at 1; where ``three`` is False both arrays hold the one root.
+    (0, 1), as the cubic is negative at 0 and positive at 1; where ``three`` is False both arrays hold the
+    one root.
     """
     c3 = theta + (w + w * pi)
     c2 = (theta - u) + (w - u) * pi
@@ -67,9 +70,7 @@ def _three(m: Array, k: Array, h: Array) -> tuple[Array, Array]:
     return m - root * (c + s), m + 2.0 * root * c
 
 
-def _one_of_three(
-    c3: Array, c2: Array, c1: Array, pi: Array, m: Array, k: Array, h: Array
-) -> Array:
+def _one_of_three(c3: Array, c2: Array, c1: Array, pi: Array, m: Array, k: Array, h: Array) -> Array:
     """The one root in (0, 1) where others lie outside: the greatest if c3 > 0, else the middle one."""
     root, c, s = _angle(k, h)
     eta = np.where(c3 > 0.0, m + 2.0 * root * c, m - root * (c - s))

@@ -1,9 +1,9 @@
 """A start for the saturation pressure of a two-constant cubic; only a start, so its error does not reach a result.
 
-The reduced saturation pressure π = p b/(R T) of such an equation depends on θ = a/(R T b) alone. Near the critical
-point ln(π/π_c) = t F(√(1 + t)), t = θ/θ_c − 1, with a polynomial F fitted to the equation's own saturation states
-(t ≤ 3.6; within 0.0001 for van der Waals and Redlich–Kwong, 0.001 for Peng–Robinson in ln π). At lower temperature the
-liquid is taken at zero pressure and the vapour to first order in density.
+The reduced saturation pressure π = p b/(R T) of such an equation depends on θ = a/(R T b) alone. Near the
+critical point ln(π/π_c) = t F(√(1 + t)), t = θ/θ_c − 1, with a polynomial F fitted to the equation's own
+saturation states (t ≤ 3.6; within 0.0001 for van der Waals and Redlich–Kwong, 0.001 for Peng–Robinson in ln
+π). At lower temperature the liquid is taken at zero pressure and the vapour to first order in density.
 """
 
 from __future__ import annotations

@@ -4,7 +4,14 @@ from __future__ import annotations
 
 import math
 
-from pathcalc.equations.alpha import AlphaFunction, ConstantAlpha, RootAlpha, SoaveAlpha, peng_robinson_m, soave_m
+from pathcalc.equations.alpha import (
+    AlphaFunction,
+    ConstantAlpha,
+    RootAlpha,
+    SoaveAlpha,
+    peng_robinson_m,
+    soave_m,
+)
 from pathcalc.equations.build import Built, Options
 from pathcalc.equations.contract import R_CODATA, EquationInfo, Parameter
 from pathcalc.equations.cubic import (
@@ -24,7 +31,10 @@ P_MAX_CUBIC = 1.0e8
 
 _CODATA_SOURCE = "CODATA 2018, E. Tiesinga et al., Rev. Mod. Phys. 93 (2021) 025010"
 _ALPHA = r"\alpha=\left[1+m\left(1-\sqrt{T/T_c}\right)\right]^2"
-_NO_LIMIT = "no range is stated by the source; liquid volumes are rough (5 to 15 %), more so near the critical point"
+_NO_LIMIT = (
+    "no range is stated by the source; liquid volumes are rough (common experience: 5 to 15 %), "
+    "more so near the critical point"
+)
 
 
 def _gas_constant() -> Parameter:
@@ -66,7 +76,7 @@ def ideal_gas(card: Card, options: Options) -> Built:
 def _shift(card: Card, options: Options) -> tuple[float, str]:
     if options.volume_shift == "card":
         if card.volume_shift is None:
-            raise UsageError(f"the card of {card.name!r} gives no volume_shift; give one as a molar volume, or 0")
+            raise UsageError(f"the card of {card.name!r} gives no volume_shift; give a molar volume, or 0")
         return card.volume_shift.value, card.sources.get(card.volume_shift.source, card.volume_shift.source)
     if isinstance(options.volume_shift, str):
         raise UsageError(f"volume_shift is a molar volume or 'card', not {options.volume_shift!r}")
@@ -74,19 +84,31 @@ def _shift(card: Card, options: Options) -> tuple[float, str]:
 
 
 def _cubic(
-    card: Card, options: Options, name: str, title: str, formula: str, source: str, form: Form, alpha: AlphaFunction,
-    omega: float, extra: tuple[Parameter, ...] = (), critical: tuple[float, float] | None = None,
-) -> Built:  # fmt: skip
+    card: Card,
+    options: Options,
+    name: str,
+    title: str,
+    formula: str,
+    source: str,
+    form: Form,
+    alpha: AlphaFunction,
+    omega: float,
+    extra: tuple[Parameter, ...] = (),
+    critical: tuple[float, float] | None = None,
+) -> Built:
     shift, shift_source = _shift(card, options)
     T_c, p_c = critical or (card.T_c.value, card.p_c.value)
     residual = TwoConstantCubic(form, alpha, T_c, p_c, shift=shift)
     if shift <= -residual.b * 0.5 or shift >= 0.9 * residual.b:
-        raise UsageError(f"volume_shift {shift:g} m3/mol is out of proportion to the co-volume {residual.b:g} m3/mol")
+        raise UsageError(f"volume_shift {shift:g} m3/mol is too large beside b = {residual.b:g} m3/mol")
     derived = "from T_c and p_c: the critical point of the equation lies there"
     parameters = [
         _gas_constant(),
         *(
-            (Parameter("T_c", T_c, "K", "from a and b of the card"), Parameter("p_c", p_c, "Pa", "from a and b of the card"))
+            (
+                Parameter("T_c", T_c, "K", "from a and b of the card"),
+                Parameter("p_c", p_c, "Pa", "from a and b of the card"),
+            )
             if critical
             else (_from_card(card, "T_c", "T_c", "K"), _from_card(card, "p_c", "p_c", "Pa"))
         ),
@@ -103,7 +125,7 @@ def _cubic(
     if math.isfinite(alpha.T_max):
         text += f"; not used above {alpha.T_max:.6g} K, where its attraction would rise again"
     elif isinstance(alpha, SoaveAlpha) and alpha.m < 0.0:
-        notes = (f"m = {alpha.m:.4g} is negative: the attraction grows with temperature; doubtful for this substance",)
+        notes = (f"m = {alpha.m:.4g} is negative: the attraction grows with temperature; doubtful here",)
     info = EquationInfo(name, title, formula, tuple(parameters), source, text)
     return Built(
         residual=residual,
@@ -124,27 +146,41 @@ def van_der_waals(card: Card, options: Options) -> Built:
     critical = None
     if options.constants == "card":
         if card.van_der_waals is None:
-            raise UsageError(f"the card of {card.name!r} gives no van der Waals constants; use those from T_c and p_c")
+            raise UsageError(
+                f"the card of {card.name!r} gives no van der Waals a and b; use those from T_c, p_c"
+            )
         a, b = card.van_der_waals.a, card.van_der_waals.b
         critical = (8.0 * a / (27.0 * R_CODATA * b), a / (27.0 * b * b))
     elif options.constants != "critical":
         raise UsageError(f"constants is 'critical' or 'card', not {options.constants!r}")
     T_c = critical[0] if critical else card.T_c.value
     return _cubic(
-        card, options, "van-der-waals", "van der Waals", r"p=\frac{RT}{v-b}-\frac{a_c}{v^2}",
-        "J. D. van der Waals, Thesis, Leiden (1873)", VAN_DER_WAALS_FORM, ConstantAlpha(T_c),
-        _optional(card, "acentric"), critical=critical,
-    )  # fmt: skip
+        card,
+        options,
+        "van-der-waals",
+        "van der Waals",
+        r"p=\frac{RT}{v-b}-\frac{a_c}{v^2}",
+        "J. D. van der Waals, Thesis, Leiden (1873)",
+        VAN_DER_WAALS_FORM,
+        ConstantAlpha(T_c),
+        _optional(card, "acentric"),
+        critical=critical,
+    )
 
 
 def redlich_kwong(card: Card, options: Options) -> Built:
     """Redlich–Kwong from T_c and p_c."""
     return _cubic(
-        card, options, "redlich-kwong", "Redlich–Kwong",
+        card,
+        options,
+        "redlich-kwong",
+        "Redlich–Kwong",
         r"p=\frac{RT}{v-b}-\frac{a_c\,\sqrt{T_c/T}}{v(v+b)}",
-        "O. Redlich, J. N. S. Kwong, Chem. Rev. 44 (1949) 233", REDLICH_KWONG_FORM, RootAlpha(card.T_c.value),
+        "O. Redlich, J. N. S. Kwong, Chem. Rev. 44 (1949) 233",
+        REDLICH_KWONG_FORM,
+        RootAlpha(card.T_c.value),
         _optional(card, "acentric"),
-    )  # fmt: skip
+    )
 
 
 def soave(card: Card, options: Options) -> Built:
@@ -157,10 +193,17 @@ def soave(card: Card, options: Options) -> Built:
         Parameter("m", m, "1", f"0.480 + 1.574 ω − 0.176 ω²; {source}"),
     )
     return _cubic(
-        card, options, "soave", "Soave–Redlich–Kwong",
+        card,
+        options,
+        "soave",
+        "Soave–Redlich–Kwong",
         rf"p=\frac{{RT}}{{v-b}}-\frac{{a_c\,\alpha(T)}}{{v(v+b)}},\quad {_ALPHA}",
-        source, REDLICH_KWONG_FORM, SoaveAlpha(card.T_c.value, m), omega, extra,
-    )  # fmt: skip
+        source,
+        REDLICH_KWONG_FORM,
+        SoaveAlpha(card.T_c.value, m),
+        omega,
+        extra,
+    )
 
 
 def peng_robinson(card: Card, options: Options) -> Built:
@@ -173,10 +216,17 @@ def peng_robinson(card: Card, options: Options) -> Built:
         Parameter("m", m, "1", f"0.37464 + 1.54226 ω − 0.26992 ω²; {source}"),
     )
     return _cubic(
-        card, options, "peng-robinson", "Peng–Robinson",
+        card,
+        options,
+        "peng-robinson",
+        "Peng–Robinson",
         rf"p=\frac{{RT}}{{v-b}}-\frac{{a_c\,\alpha(T)}}{{v(v+b)+b(v-b)}},\quad {_ALPHA}",
-        source, PENG_ROBINSON_FORM, SoaveAlpha(card.T_c.value, m), omega, extra,
-    )  # fmt: skip
+        source,
+        PENG_ROBINSON_FORM,
+        SoaveAlpha(card.T_c.value, m),
+        omega,
+        extra,
+    )
 
 
 def _of_card(card: Card, item: VirialCorrelation) -> Coefficient:
@@ -213,8 +263,8 @@ def virial(card: Card, options: Options) -> Built:
         formula,
         (_gas_constant(), Parameter(r"\rho_\mathrm{max}", residual.rho_max, "mol/m3", "see the range")),
         source,
-        f"gas only, up to {residual.rho_max:.4g} mol/m3 and the first density where (∂p/∂ρ)_T = 0; below T_c it "
-        "describes vapour alone and does not know where condensation begins",
+        f"gas only, up to {residual.rho_max:.4g} mol/m3 and the first density where (∂p/∂ρ)_T = 0; "
+        "below T_c it describes vapour alone and does not know where condensation begins",
     )
     return Built(
         residual=residual,

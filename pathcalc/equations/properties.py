@@ -96,9 +96,10 @@ def helmholtz(model: Model, T: Array, v: Array) -> Helmholtz:
 def full(model: Model, T: Array, v: Array, p: Array | None = None) -> Full:
     """Every single-phase property at (T in K, v in m3/mol).
 
-    ``p`` (Pa) is the pressure if it is known already: a liquid's pressure from its volume is the small difference
-    of large terms, and Z and ln φ gain from the known one. The Joule–Thomson coefficient
-    μ = [T (∂v/∂T)_p − v]/c_p is formed from −v (D01 + D11 + D02)/(1 + 2 D01 + D02)/c_p, which stays exact at low density.
+    ``p`` (Pa) is the pressure if it is known already: a liquid's pressure from its volume is the small
+    difference of large terms, and Z and ln φ gain from the known one. The Joule–Thomson coefficient μ = [T
+    (∂v/∂T)_p − v]/c_p is formed from −v (D01 + D11 + D02)/(1 + 2 D01 + D02)/c_p, which stays exact at low
+    density.
     """
     rho = 1.0 / v
     d = model.residual.reduced(T, rho)

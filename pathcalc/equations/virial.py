@@ -1,17 +1,18 @@
 """The virial equation truncated after the third coefficient: Z = 1 + B(T) ρ + C(T) ρ².
 
 B by C. Tsonopoulos, AIChE J. 20 (1974) 263 (simple-fluid and acentric terms, non-polar); C by H. Orbey and
-J. H. Vera, AIChE J. 29 (1983) 107; or both as given sums of powers of T. The reduced residual Helmholtz energy
-is α^r = B ρ + C ρ²/2. It describes the gas alone: no liquid, no coexistence; below the critical temperature the
-user must keep to pressures below saturation himself.
+J. H. Vera, AIChE J. 29 (1983) 107; or both as given sums of powers of T. The reduced residual Helmholtz
+energy is α^r = B ρ + C ρ²/2. It describes the gas alone: no liquid, no coexistence; below the critical
+temperature the user must keep to pressures below saturation himself.
 
-Use stops at ρ_c/2 with B alone, at 3 ρ_c/4 with C (rule of thumb; from memory: J. M. Prausnitz, R. N. Lichtenthaler,
-E. G. de Azevedo, Molecular Thermodynamics of Fluid-Phase Equilibria, 3rd ed. (1999), ch. 5), and at the first density
-where (∂p/∂ρ)_T = 0.
+Use stops at ρ_c/2 with B alone, at 3 ρ_c/4 with C (rule of thumb; from memory: J. M. Prausnitz, R. N.
+Lichtenthaler, E. G. de Azevedo, Molecular Thermodynamics of Fluid-Phase Equilibria, 3rd ed. (1999), ch. 5),
+and at the first density where (∂p/∂ρ)_T = 0.
 """
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -55,21 +56,21 @@ class Coefficient:
 
 def tsonopoulos_b(T_c: float, p_c: float, omega: float, R: float = R_CODATA) -> Coefficient:
     """B p_c/(R T_c) = f0 + ω f1 (Tsonopoulos, AIChE J. 20 (1974) 263, eqs. 3 and 4; non-polar)."""
-    f0 = {0: 0.1445, 1: -0.330, 2: -0.1385, 3: -0.0121, 8: -0.000607}
-    f1 = {0: 0.0637, 2: 0.331, 3: -0.423, 8: -0.008}
+    f0 = {0.0: 0.1445, 1.0: -0.330, 2.0: -0.1385, 3.0: -0.0121, 8.0: -0.000607}
+    f1 = {0.0: 0.0637, 2.0: 0.331, 3.0: -0.423, 8.0: -0.008}
     return _corresponding(f0, f1, R * T_c / p_c, T_c, omega, "C. Tsonopoulos, AIChE J. 20 (1974) 263")
 
 
 def orbey_vera_c(T_c: float, p_c: float, omega: float, R: float = R_CODATA) -> Coefficient:
     """C p_c²/(R T_c)² = C0 + ω C1 (Orbey & Vera, AIChE J. 29 (1983) 107)."""
-    f0 = {0: 0.01407, 2.8: 0.02432, 10.5: -0.00313}
-    f1 = {0: -0.02676, 2.8: 0.01770, 3: 0.040, 6: -0.003, 10.5: -0.00228}
+    f0 = {0.0: 0.01407, 2.8: 0.02432, 10.5: -0.00313}
+    f1 = {0.0: -0.02676, 2.8: 0.01770, 3.0: 0.040, 6.0: -0.003, 10.5: -0.00228}
     source = "H. Orbey, J. H. Vera, AIChE J. 29 (1983) 107"
     return _corresponding(f0, f1, (R * T_c / p_c) ** 2, T_c, omega, source)
 
 
 def _corresponding(
-    f0: dict[float, float], f1: dict[float, float], scale: float, T_c: float, omega: float, source: str
+    f0: Mapping[float, float], f1: Mapping[float, float], scale: float, T_c: float, omega: float, source: str
 ) -> Coefficient:
     powers = sorted({*f0, *f1})
     terms = tuple((scale * (f0.get(t, 0.0) + omega * f1.get(t, 0.0)), float(t)) for t in powers)
@@ -133,7 +134,7 @@ class VirialGas:
     def _limit(self, b: Array, c: Array) -> Array:
         """The least density where 1 + 2 B ρ + 3 C ρ² = 0, or the density limit if that is less."""
         disc = b * b - 3.0 * c
-        first = -1.0 / (b - np.sqrt(disc))  # the root of least modulus where b < 0; the positive one where c < 0
+        first = -1.0 / (b - np.sqrt(disc))  # the lesser root where b < 0, the positive one where c < 0
         spinodal = np.where((disc >= 0.0) & (first > 0.0), first, np.inf)
         return np.minimum(spinodal, self.rho_max)
 

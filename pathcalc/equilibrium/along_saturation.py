@@ -10,9 +10,9 @@ from numpy.typing import NDArray
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.given_pressure import flash_Tp
-from pathcalc.equilibrium.iterate import scanned
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
 from pathcalc.equilibrium.saturation import NEAR_CRITICAL, saturation_at_p, saturation_at_T
+from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
 
@@ -31,7 +31,8 @@ def flash_x(model: Model, x: Array, key: str, given: Array) -> Points:
 
 
 def flash_beside(model: Model, offset: Array, key: str, given: Array) -> Points:
-    """Superheated by ``offset`` > 0 (K) above, or subcooled by −``offset`` below, the saturation temperature at p.
+    """Superheated by ``offset`` > 0 (K) above, or subcooled by −``offset`` below, the saturation
+    temperature at p.
 
     An offset of zero is saturated vapour; for saturated liquid ask for x = 0. ``key`` is T, p, v, h, s or u.
     """

@@ -27,7 +27,8 @@ def with_datum(model: Model, name: str) -> Model:
     - ``boiling-liquid``: h = s = 0 of saturated liquid at 1.01325 bar
     - ``liquid-0C``: h = 200 kJ/kg, s = 1 kJ/(kg K) of saturated liquid at 0 °C (as for refrigerants, IIR)
 
-    Raises :class:`NoSolutionError` where the equation has no such liquid, :class:`UsageError` for another name.
+    Raises :class:`NoSolutionError` where the equation has no such liquid, :class:`UsageError` for another
+    name.
     """
     model = replace(model, h_offset=0.0, s_offset=0.0)
     if name == "ideal-gas-298":
@@ -55,7 +56,7 @@ def _liquid(model: Model, name: str, sat: Saturation, where: str) -> tuple[float
             Trouble(
                 "no-datum",
                 "fluid.datum",
-                f"datum {name!r} needs saturated liquid at {where}, and {model.equation} has none for {model.name}: {why}",
+                f"datum {name!r} needs saturated liquid at {where}; {model.equation} of {model.name}: {why}",
                 "use the datum ideal-gas-298, or another equation",
             )
         )

@@ -1,7 +1,8 @@
 """States given by two of h, s, u.
 
 Along an isentrope dh = v dp and du = −p dv, so h and u rise with p: one state has the (h, s) or (u, s)
-asked for. With h and u the product p v = h − u is known; along that line u is scanned, as it need not be monotone.
+asked for. With h and u the product p v = h − u is known; along that line u is scanned, as it need not be
+monotone.
 """
 
 from __future__ import annotations
@@ -13,8 +14,9 @@ from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.given_pressure import flash_p
 from pathcalc.equilibrium.given_volume import mixed
-from pathcalc.equilibrium.iterate import guarded_newton, scanned
+from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
+from pathcalc.equilibrium.scan import scanned
 
 _P_LEAST = 1e-3
 _P_MOST = 1e10
@@ -87,7 +89,9 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
         return draft.finish(model)
     pv = h - u
     usable = np.isfinite(pv) & (pv > 0.0)
-    draft.reason[~usable] = np.where(np.isfinite(pv[~usable]), reasons.TARGET_NOT_REACHED, reasons.NOT_A_STATE)
+    draft.reason[~usable] = np.where(
+        np.isfinite(pv[~usable]), reasons.TARGET_NOT_REACHED, reasons.NOT_A_STATE
+    )
     at = np.flatnonzero(usable)
     if at.size == 0:
         return draft.finish(model)

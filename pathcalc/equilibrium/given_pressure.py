@@ -23,9 +23,9 @@ def range_reason(model: Model, T: Array) -> NDArray[np.int16]:
     """0 where T (K) lies within the limits of the model, else the reason."""
     reason = np.zeros(T.size, dtype=np.int16)
     low, high = model.T_limits
-    reason[T < low] = reasons.BELOW_TRIPLE_POINT
-    reason[T > high] = reasons.ABOVE_RANGE
-    reason[~((T > 0.0) & (T < np.inf))] = reasons.NOT_A_STATE
+    reason[low > T] = reasons.BELOW_TRIPLE_POINT
+    reason[high < T] = reasons.ABOVE_RANGE
+    reason[~((T > 0.0) & (np.inf > T))] = reasons.NOT_A_STATE
     return reason
 
 
@@ -191,7 +191,7 @@ def _single_phase(
     if key == "v":
         v = target[todo].copy()
     middle = 0.5 * (T_low + T_high)
-    failed = np.where(T < middle, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
+    failed = np.where(middle > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
     if not model.has_dome:
         with np.errstate(all="ignore"):
             dense = np.isnan(_root(model, T * (1.0 - 1e-6), q, b))
@@ -205,4 +205,5 @@ def _root(model: Model, T: Array, p: Array, branch: Array) -> Array:
     liquid, vapour = roots[0], roots[1]
     dense = np.where(np.isnan(liquid), vapour, liquid)
     light = np.where(np.isnan(vapour), liquid, vapour)
-    return np.where(branch > 0.0, light, dense)
+    chosen: Array = np.where(branch > 0.0, light, dense)
+    return chosen

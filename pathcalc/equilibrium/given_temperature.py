@@ -1,8 +1,8 @@
 """States of given temperature: with one of v, s, u, h.
 
-On an isotherm p falls and s rises with v, u too as long as molecules attract; each fixes one state. h need not
-be monotone (its slope changes sign where the Joule–Thomson coefficient does), so it is scanned, and two states are
-told apart from one.
+On an isotherm p falls and s rises with v, u too as long as molecules attract; each fixes one state. h need
+not be monotone (its slope changes sign where the Joule–Thomson coefficient does), so it is scanned, and two
+states are told apart from one.
 """
 
 from __future__ import annotations
@@ -14,11 +14,14 @@ from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.given_pressure import range_reason
-from pathcalc.equilibrium.iterate import guarded_newton, scanned
+from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation
 from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.equilibrium.scan import scanned
 
-_NODES = 64
+_NODES = 80
+_P_LEAST = 1.0
+_P_MOST = 1e10
 _P_INVERSE_MOST = 1e-15
 """1/Pa: no free volume below that of an ideal gas at 10^15 Pa is looked at."""
 
@@ -74,7 +77,8 @@ def _with_dome(
     for mask, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
         if mask.any():
             _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask])
-    return at[~known]
+    near: NDArray[np.intp] = at[~known]
+    return near
 
 
 def _on_branch(
@@ -139,9 +143,18 @@ def _scan_enthalpy(
         t = thermal(model, T, v)
         return np.where(t.p <= model.p_max, t.h - wanted, np.nan)
 
-    share = np.linspace(0.0, 1.0, _NODES)[:, None]
-    nodes = lowest + share * (highest - lowest)
+    p_most = model.p_max if np.isfinite(model.p_max) else _P_MOST
+    with np.errstate(all="ignore"):
+        free = np.log(model.R * T)
+    near, far = (
+        np.maximum(lowest, free - np.log(100.0 * p_most)),
+        np.minimum(highest, free - np.log(_P_LEAST)),
+    )
+    near = np.minimum(near, highest)
+    far = np.maximum(far, near)
+    nodes = near + np.linspace(0.0, 1.0, _NODES)[:, None] * (far - near)
     nodes[-1] = highest
+    nodes[0] = np.where(lowest > near - 0.5 * (far - near) / _NODES, lowest, near)
     first, second, count = scanned(fun, nodes, (T, wanted, floor), unit=1.0)
     with np.errstate(all="ignore"):
         v = floor + np.exp(first.x)

@@ -46,11 +46,11 @@ def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
     with np.errstate(all="ignore"):
         t = thermal(model, T, w)
         stable = root.ok & (t.p > 0.0) & (t.p_v < 0.0)
-    failed = np.where(T < 0.5 * (T_low + T_high), reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
+    failed = np.where(0.5 * (T_low + T_high) > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
     reason = np.where(stable, 0, np.where(root.ok, reasons.NO_ROOT, failed)).astype(np.int16)
     draft.put(at, T, t.p, w, reason)
     if model.has_dome:
-        below = at[(T < model.T_c) | ~root.ok]
+        below = at[(model.T_c > T) | ~root.ok]
         if below.size:
             _below_critical(model, below, v, key, target, draft)
     return draft.finish(model)

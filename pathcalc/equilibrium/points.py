@@ -45,9 +45,9 @@ class Saturation:
 class Points:
     """Equilibrium states, arrays of shape (n,): T (K), p (Pa), v (m3/mol), x (NaN outside the dome).
 
-    ``v_liquid`` and ``v_vapour`` are those of the coexisting phases, NaN outside the dome. ``phase`` indexes
-    :data:`PHASES`. ``reason`` is 0 where the state was found; elsewhere all else is NaN, save that where there are
-    two solutions ``T``, ``p`` and ``T_other``, ``p_other`` tell both.
+    ``v_liquid`` and ``v_vapour`` are those of the coexisting phases, NaN outside the dome. ``phase``
+    indexes :data:`PHASES`. ``reason`` is 0 where the state was found; elsewhere all else is NaN, save that
+    where there are two solutions ``T``, ``p`` and ``T_other``, ``p_other`` tell both.
     """
 
     T: Array
@@ -135,7 +135,7 @@ def name_phases(model: Model, T: Array, p: Array, v: Array, x: Array, reason: Co
         phase = np.full(T.shape, GAS, dtype=np.int8)
     else:
         dense = v < model.v_c
-        hot = T >= model.T_c
+        hot = model.T_c <= T
         tight = p >= model.p_c
         cold_phase = np.where(dense | tight, LIQUID, VAPOUR)
         phase = np.where(hot, np.where(tight, SUPERCRITICAL, GAS), cold_phase).astype(np.int8)

@@ -1,8 +1,8 @@
 """Vapour-liquid equilibrium of a pure substance: equal pressure and equal Gibbs energy.
 
 At a trial (T, p) both volumes come from the equation; f = (g_liquid − g_vapour)/(R T) then has the slopes
-∂f/∂ln p = p (v_l − v_v)/(R T) and ∂f/∂(1/T) = (h_l − h_v)/R. Where the equation has only a vapour (liquid) volume
-the trial pressure is too low (high): that keeps a bracket.
+∂f/∂ln p = p (v_l − v_v)/(R T) and ∂f/∂(1/T) = (h_l − h_v)/R. Where the equation has only a vapour (liquid)
+volume the trial pressure is too low (high): that keeps a bracket.
 """
 
 from __future__ import annotations
@@ -14,6 +14,15 @@ import numpy as np
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium import reasons
 from pathcalc.equilibrium.points import Codes, Mask, Saturation
+
+__all__ = [
+    "NEAR_CRITICAL",
+    "Saturation",
+    "difference",
+    "pressure_range",
+    "saturation_at_T",
+    "saturation_at_p",
+]
 
 NEAR_CRITICAL = 1e-8
 """Closer to T_c than this part of it liquid and vapour cannot be told apart reliably in double precision."""
@@ -75,9 +84,9 @@ def _why_not(model: Model, T: Array) -> Codes:
         reason[:] = reasons.NO_COEXISTENCE
         return reason
     with np.errstate(invalid="ignore"):
-        reason[T > model.T_c * (1.0 - NEAR_CRITICAL)] = reasons.NEAR_CRITICAL
-        reason[T >= model.T_c] = reasons.ABOVE_CRITICAL
-        reason[T < model.T_limits[0]] = reasons.BELOW_TRIPLE_POINT
+        reason[model.T_c * (1.0 - NEAR_CRITICAL) < T] = reasons.NEAR_CRITICAL
+        reason[model.T_c <= T] = reasons.ABOVE_CRITICAL
+        reason[model.T_limits[0] > T] = reasons.BELOW_TRIPLE_POINT
         reason[~(T > 0.0)] = reasons.NOT_A_STATE
     return reason
 

@@ -17,8 +17,8 @@ from pathcalc.equilibrium.points import Points, mix
 class States:
     """Properties of shape (n,), molar SI; sound speed in m/s, Joule–Thomson coefficient in K/Pa.
 
-    In two phases c_v, c_p, sound speed, expansivity, compressibility and Joule–Thomson coefficient are NaN; the fugacity
-    coefficient is that of the coexisting phases. A failed lane is NaN throughout.
+    In two phases c_v, c_p, sound speed, expansivity, compressibility and Joule–Thomson coefficient are NaN;
+    the fugacity coefficient is that of the coexisting phases. A failed lane is NaN throughout.
     """
 
     points: Points
@@ -66,7 +66,9 @@ def state_properties(model: Model, points: Points) -> States:
     return States(points=points, T=points.T, p=points.p, v=points.v, rho=rho, x=points.x, **out)
 
 
-def _one_phase(model: Model, points: Points, at: NDArray[np.intp], out: dict[str, Array], every: bool) -> None:
+def _one_phase(
+    model: Model, points: Points, at: NDArray[np.intp], out: dict[str, Array], every: bool
+) -> None:
     T, p, v = (points.T, points.p, points.v) if every else (points.T[at], points.p[at], points.v[at])
     f = full(model, T, v, p)
     for name in (*_MIXED, *_SINGLE, "Z"):

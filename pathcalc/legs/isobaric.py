@@ -102,7 +102,7 @@ def solve(leg: Isobaric, run: LegRun) -> Outcome:
 
     def exchange(i: Integrals) -> Exchange:
         if run.flow:
-            work, heat = i["v_dp"], i["dh"]
+            work, heat = 0.0 * i["dh"], i["dh"]
         else:
             work = -i["p_dv"]
             heat = i["du"] - work

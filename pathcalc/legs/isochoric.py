@@ -84,7 +84,7 @@ def solve(leg: Isochoric, run: LegRun) -> Outcome:
     b = run.reach(v=a.v, **targets)
 
     def exchange(i: Integrals) -> Exchange:
-        work = i["v_dp"] if run.flow else -i["p_dv"]
+        work = i["v_dp"] if run.flow else 0.0 * i["du"]
         heat = (i["dh"] if run.flow else i["du"]) - work
         return Exchange(work, heat, run.heat_boundary(i, heat))
 

@@ -73,11 +73,12 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     for _ in range(MAX_STRETCHES):
         if not front.open.any():
             break
-        for dome in (False, True):
-            lanes = np.flatnonzero(front.open & (front.into_dome == dome)).astype(np.intp)
-            if lanes.size:
-                stretch = _in_dome if dome else _in_one_phase
-                segments.append(stretch(model, front, goal, factor, lanes, start))
+        wet = np.flatnonzero(front.open & front.into_dome).astype(np.intp)
+        dry = np.flatnonzero(front.open & ~front.into_dome).astype(np.intp)
+        if wet.size:
+            segments.append(_in_dome(model, front, goal, factor, wet, start))
+        if dry.size:
+            segments.append(_in_one_phase(model, front, goal, factor, dry, start))
         start = _points_at(model, front)
     trouble = ~np.isfinite(front.h) | (front.open & np.isfinite(goal * a.T))
     h = np.where(trouble, np.nan, front.h)

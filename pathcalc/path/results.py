@@ -16,7 +16,7 @@ def plain(value: Any) -> Any:
     """A number, text or None that JSON can hold: NaN and infinities become None."""
     if isinstance(value, bool) or value is None or isinstance(value, str | int):
         return value
-    number = float(value)
+    number = float(value) + 0.0  # no negative zeros
     return number if math.isfinite(number) else None
 
 

@@ -261,7 +261,7 @@ def _spread(data: Mapping[str, Any], base: Quantity | None, problems: list[Probl
         return {"u": spread.value, "shape": "normal"}
     if key == "U":
         if "k" not in data:
-            problems.append(Problem("missing-key", "U needs its coverage factor k, such as k: 2"))
+            problems.append(Problem("missing-key", "U needs its coverage factor k, such as k: 2", key=True))
             return {}
         k = _sub(data, "k", ("fraction",), problems)
         if k is None:
@@ -271,7 +271,7 @@ def _spread(data: Mapping[str, Any], base: Quantity | None, problems: list[Probl
             return {}
         return {"u": spread.value / k.value, "shape": "normal", "k": k.value}
     if "shape" not in data:
-        problems.append(Problem("missing-key", "half_width needs shape: rectangular or triangular"))
+        problems.append(Problem("missing-key", "half_width needs shape: rectangular or triangular", key=True))
         return {}
     shape = data["shape"]
     if shape not in ("rectangular", "triangular"):
@@ -300,7 +300,8 @@ def parse_mapping(
     if "value" in data:
         base = _sub(data, "value", dimensions, problems, ambient=ambient, any_sign=any_sign)
     else:
-        problems.append(Problem("missing-key", "a quantity written as a mapping needs the key 'value'"))
+        text = "a quantity written as a mapping needs the key 'value'"
+        problems.append(Problem("missing-key", text, key=True))
     more = _spread(data, base, problems)
     for key in ("source", "note"):
         if key in data:

@@ -78,7 +78,7 @@ class Solution:
         span = (self.y_b - self.y_a)[lanes]
         with np.errstate(divide="ignore", invalid="ignore"):
             x = np.where(span != 0.0, (y - self.y_a[lanes]) / span, 0.0) * PANELS
-        panel = np.clip(np.floor(x), 0, PANELS - 1).astype(np.intp)
+        panel = np.clip(np.floor(np.nan_to_num(x)), 0, PANELS - 1).astype(np.intp)
         local = x - panel
         weights = _integration_matrix()[1]
         top = np.zeros((self.values.shape[0], *y.shape))
