@@ -15,7 +15,7 @@ from pathcalc.case.model import P_SURROUNDINGS, Case, CaseSurroundings
 from pathcalc.case.nodes import Mapping, Mark, Scalar, Sequence, mark_of, walk
 from pathcalc.case.nodes import place as place_of
 from pathcalc.case.sections import AMOUNT_DIMENSIONS, Fluid, Limit, Record, Report, Start, Surroundings
-from pathcalc.case.translate import Findings
+from pathcalc.case.translate import MOST, Findings
 from pathcalc.case.translate import Path as NodePath
 from pathcalc.errors import Finding
 from pathcalc.quantities.parse import QuantityError, nearest, parse
@@ -91,7 +91,7 @@ def _version(data: Mapping, out: Findings) -> bool:
 
 
 def _top_keys(data: Mapping, out: Findings) -> None:
-    for key in data:
+    for key in list(data)[:MOST]:
         if key in names.TOP_KEYS_LATER and key not in names.TOP_KEYS:
             known = ", ".join(names.TOP_KEYS)
             text = f"the block {key!r} is not available in this version; available are {known}"

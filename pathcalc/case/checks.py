@@ -108,17 +108,6 @@ def _check_mixture(fluid: Fluid, out: Findings) -> None:
         out.add(at, text, "not-available", key=True)
 
 
-def check_amount(amount: Quantity | None, boundary: str, out: Findings) -> None:
-    """Does the amount go with the boundary."""
-    if amount is None:
-        return
-    meant = names.AMOUNTS[boundary]
-    if amount.dimension not in meant:
-        kind = amount.dimension.replace("-", " ")
-        text = f"{amount.unit} is a {kind}; with boundary: {boundary} write {wanted(meant)}"
-        out.add(("amount",), text, "wrong-dimension")
-
-
 def check_leg(
     leg: LegModel, at: Path, boundary: str, amount: bool | None, equation: str | None, out: Findings
 ) -> None:

@@ -20,7 +20,7 @@ CODES: dict[str, str] = {
     "encoding": "The file is not plain UTF-8.",
     "file-too-large": "The file is larger than a case can be.",
     "fractions": "The fractions of a mixture do not sum to 1.",
-    "implausible": "A value cannot be meant, as read in SI; mostly its unit is not the one that was thought of.",
+    "implausible": "A value, as read in SI, cannot be meant; mostly its unit is not the one thought of.",
     "include-cycle": "A file includes itself, if through others.",
     "include-missing": "A file that is named does not exist or cannot be read.",
     "include-outside": "A file that is named is not under the root folder.",

@@ -17,7 +17,7 @@ _HEAD = 65536
 def find_cases(path: str | os.PathLike[str]) -> list[Path]:
     """Cases at ``path``: the file itself, or every ``*.yaml`` below the folder that begins as a case, sorted.
 
-    Folders reached a second time through a link are not entered again. Raises UsageError where there is nothing.
+    Folders reached a second time through a link are not entered again. Raises UsageError if nothing is there.
     """
     top = Path(path)
     if not top.is_dir():

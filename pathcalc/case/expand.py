@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from dataclasses import dataclass, replace
 from typing import Annotated, Any
 
@@ -17,8 +16,6 @@ from pathcalc.case.sections import RepeatCount
 from pathcalc.case.translate import Findings, Path
 from pathcalc.quantities.parse import nearest
 from pathcalc.quantities.values import Relative
-
-NAME = re.compile(r"[A-Za-z0-9_-]+( [A-Za-z0-9_-]+)*")
 
 
 class Repeat(Strict):
@@ -115,7 +112,9 @@ def _leg(item: Any, at: Path, out: Findings, context: dict[str, Any]) -> LegMode
             out.add((*at, "path"), text, "not-available")
         elif isinstance(path, str):
             out.add(
-                (*at, "path"), f"unknown path {str(path)!r}; {nearest(path, list(models))}", "unknown-path"
+                (*at, "path"),
+                f"unknown path {str(path)!r}; {PATH_WORDS.get(path) or nearest(path, list(models))}",
+                "unknown-path",
             )
         else:
             out.add((*at, "path"), f"`path` holds one of {', '.join(models)}", "wrong-type")

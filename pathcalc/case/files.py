@@ -35,6 +35,8 @@ class Files:
     digest: list[tuple[str, bytes]] = field(default_factory=list)
     folders: dict[str, Path] = field(default_factory=dict)
     reads: int = 0
+    incomplete: bool = False
+    """An include could not be read: what it would have held is not told as missing."""
 
     def sha256(self, own: bytes) -> str:
         """Digest of the file's bytes, then of each further file's path and bytes, in order of reading."""
@@ -100,10 +102,13 @@ class Files:
             if not isinstance(item, Scalar) or item.null:
                 at = getattr(item, "mark", node.keys_at["include"])
                 self._refuse(at, "include holds a path, or a list of paths", "wrong-type")
+                self.incomplete = True
                 continue
             included = self._included(item, shown, folder, chain)
             if included is not None:
                 base = merge(base, included)
+            else:
+                self.incomplete = True
         own = Mapping(node.mark)
         for key, value in node.items():
             if key != "include":

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+from dataclasses import replace
 from pathlib import Path
 
 from pathcalc.case.build import Origin, build
@@ -10,6 +11,8 @@ from pathcalc.case.files import Files, find_root
 from pathcalc.case.model import Case
 from pathcalc.case.yaml_reader import MAX_BYTES, decode, read
 from pathcalc.errors import Finding, InvalidCaseError, UsageError
+
+MAX_MESSAGE = 400
 
 
 def load(path: str | os.PathLike[str], *, root: str | os.PathLike[str] | None = None) -> Case:
@@ -68,7 +71,15 @@ def _load(data: bytes, file: str, folder: Path, root: Path, name: str, path: Pat
         files = Files(root, folder, findings)
         own = (folder / path.name).resolve() if path is not None else folder
         merged = files.merged(tree, file, folder, (own,))
-        case = build(merged, Origin(name, path, text, data), files, file)
+        if not files.incomplete:
+            case = build(merged, Origin(name, path, text, data), files, file)
     if findings or case is None:
-        raise InvalidCaseError(sorted(findings, key=lambda f: (f.file != file, f.file, f.line, f.column)))
+        findings.sort(key=lambda f: (f.file != file, f.file, f.line, f.column))
+        raise InvalidCaseError([replace(f, message=_one_line(f.message)) for f in findings])
     return case
+
+
+def _one_line(message: str) -> str:
+    """A message that quotes a long text is cut in the middle, and never breaks the line."""
+    flat = "\\n".join(message.splitlines())
+    return flat if len(flat) <= MAX_MESSAGE else f"{flat[: MAX_MESSAGE // 2]} … {flat[-MAX_MESSAGE // 2 :]}"

@@ -32,8 +32,6 @@ from pathcalc.case.names import AMOUNTS, DATUMS, DIAGRAMS, EQUATIONS, EQUATIONS_
 from pathcalc.quantities.parse import Problem, QuantityError, nearest, parse, words
 from pathcalc.quantities.values import Quantity
 
-IDENTIFIER = re.compile(r"[A-Za-z0-9_.-]+( [A-Za-z0-9_.-]+)*")
-
 
 @dataclass(frozen=True)
 class DateField(_Field):
@@ -323,7 +321,6 @@ AnyQuantity = Annotated[
         ("specific-energy", "specific-entropy", "pressure", "temperature", "specific-volume", "density",
          "fraction", "energy", "power", "entropy", "entropy-rate", "speed", "expansivity", "compressibility",
          "joule-thomson"),
-        any_sign=True,
     ),
 ]  # fmt: skip
 

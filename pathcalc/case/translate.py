@@ -12,6 +12,8 @@ from pathcalc.errors import Finding
 from pathcalc.quantities.parse import Problem, nearest
 
 Path = tuple[str | int, ...]
+MOST = 100
+"""Findings told of one section: a flood helps nobody."""
 M = TypeVar("M", bound=BaseModel)
 
 
@@ -44,7 +46,7 @@ class Findings:
         try:
             return model.model_validate(data, context=context)
         except ValidationError as error:
-            for item in error.errors(include_url=False):
+            for item in error.errors(include_url=False)[:MOST]:
                 self._one(model, item, at, what)
             return None
 

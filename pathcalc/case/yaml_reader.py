@@ -1,6 +1,6 @@
 """YAML text to nodes with places, by the library's event stream: strict, bounded, and building no objects.
 
-Scalars keep their text. Which texts are numbers or truth values is decided by the field that reads them, as in
+Scalars keep their text. Which texts are numbers or truth values the field that reads them decides, as in
 the core schema of YAML 1.2, so `no`, `on`, `010` and `1:30` are what they look like.
 """
 
@@ -183,6 +183,10 @@ class _Builder:
     def scalar(self, event: Any, _depth: int) -> tuple[Any, int]:
         plain = not event.style
         value = event.value
+        bad = _CONTROL.search(value)
+        if bad:
+            text = f"control character U+{ord(bad.group()):04X} in a text; remove its escape"
+            self.fail(event.start_mark, text, "control-character", stop=False)
         return Scalar(value, self.at(event.start_mark), plain, plain and value in _NULLS), 1
 
     def sequence(self, event: Any, depth: int) -> tuple[Any, int]:

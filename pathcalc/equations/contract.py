@@ -83,8 +83,15 @@ class Residual(Protocol):
 class IdealPart(Protocol):
     """Ideal-gas heat capacity and its integrals, divided by R."""
 
-    T_min: float
-    T_max: float
+    @property
+    def T_min(self) -> float:
+        """The lowest temperature the source of the heat capacity states, K."""
+        ...
+
+    @property
+    def T_max(self) -> float:
+        """The highest temperature the source of the heat capacity states, K."""
+        ...
 
     def cp0_R(self, T: Array) -> Array:
         """c_p0/R."""

@@ -1,4 +1,4 @@
-"""A start for the saturation pressure of a two-constant cubic; only a start, so its error does not reach a result.
+"""A start for the saturation pressure of a two-constant cubic: its error does not reach a result.
 
 The reduced saturation pressure π = p b/(R T) of such an equation depends on θ = a/(R T b) alone. Near the
 critical point ln(π/π_c) = t F(√(1 + t)), t = θ/θ_c − 1, with a polynomial F fitted to the equation's own

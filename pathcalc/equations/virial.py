@@ -78,7 +78,7 @@ def _corresponding(
 
 
 class VirialGas:
-    """The residual part from coefficients B and (optionally) C; ``rho_c`` in mol/m3 sets how far it is used."""
+    """The residual part from B and, if given, C; ``rho_c`` in mol/m3 sets how far it is used."""
 
     def __init__(self, B: Coefficient, C: Coefficient | None, rho_c: float, R: float = R_CODATA) -> None:
         self.B, self.C, self.R = B, C, R
@@ -108,7 +108,7 @@ class VirialGas:
         return self.pressure(T, v).p_TT
 
     def volume_roots(self, T: Array, p: Array) -> Array:
-        """The gas volume at ``T`` (K), ``p`` (Pa) in row 1; NaN beyond the first spinodal or the density limit."""
+        """The gas volume at ``T`` (K), ``p`` (Pa) in row 1; NaN beyond spinodal or density limit."""
         T, p = np.broadcast_arrays(T, p)
         b = self.B.in_y(T)[0]
         c = self.C.in_y(T)[0] if self.C is not None else 0.0 * b
@@ -118,15 +118,16 @@ class VirialGas:
             reached = limit * (1.0 + limit * (b + limit * c)) >= target
             low, high = np.zeros_like(b), limit
             rho = np.minimum(target, 0.5 * limit)
+            settled = np.zeros(rho.shape, dtype=np.bool_)
             for _ in range(_NEWTON_STEPS):
                 f = rho * (1.0 + rho * (b + rho * c)) - target
                 low, high = np.where(f < 0.0, rho, low), np.where(f < 0.0, high, rho)
                 new = rho - f / (1.0 + rho * (2.0 * b + 3.0 * rho * c))
                 new = np.where((new > low) & (new < high), new, 0.5 * (low + high))
-                new = np.where(f == 0.0, rho, new)
-                done = ~(np.abs(new - rho) > 4e-16 * rho)
+                new = np.where(settled | (f == 0.0), rho, new)
+                settled |= ~(np.abs(new - rho) > 4e-16 * rho)
                 rho = new
-                if done.all():
+                if settled.all():
                     break
             v = np.where(reached & (target > 0.0), 1.0 / rho, np.nan)
         return np.stack([np.full_like(v, np.nan), v])

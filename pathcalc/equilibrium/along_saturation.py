@@ -87,7 +87,7 @@ def _scan(
     along: Callable[[Array, Array], Array],
     settle: Callable[[Model, Draft, NDArray[np.intp], Saturation, Array], None],
 ) -> None:
-    """All saturation temperatures where the quantity has the value given; more than one is a reason of its own."""
+    """All saturation temperatures where the quantity has the value given; two are a reason of their own."""
     n = given.size
     if not model.has_dome:
         draft.reason[:] = reasons.NO_COEXISTENCE

@@ -1,4 +1,4 @@
-"""A state from any two of T, p, v, rho, u, h, s, x, or one of them with a superheat, a subcooling or a phase."""
+"""A state from two of T, p, v, rho, u, h, s, x, or one of them with a superheat, subcooling or phase."""
 
 from __future__ import annotations
 
@@ -50,7 +50,8 @@ def flash(model: Model, given: Mapping[str, ArrayLike]) -> Points:
     solve, order = _route(frozenset(arrays))
     a, b = (np.ascontiguousarray(x) for x in np.broadcast_arrays(*(arrays[key] for key in order)))
     n = a.size
-    parts = [solve(model, a[i : i + BLOCK], b[i : i + BLOCK]) for i in range(0, max(n, 1), BLOCK)]
+    with np.errstate(all="ignore"):
+        parts = [solve(model, a[i : i + BLOCK], b[i : i + BLOCK]) for i in range(0, max(n, 1), BLOCK)]
     return joined(parts)
 
 

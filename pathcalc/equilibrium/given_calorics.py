@@ -49,7 +49,9 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     start = np.full(at.size, np.log(1e5))
     root = guarded_newton(fun, start, low, high, (s[at], target[at]), unit=1.0, tolerance=3e-9)
     points = flash_p(model, np.exp(root.x), "s", s[at])
-    reached = root.ok & points.ok
+    # a cold liquid hardly changes h or u with p: there the value itself decides
+    miss = np.abs(_on_isentrope(model, points, key)[0] - target[at])
+    reached = points.ok & (root.ok | (miss <= 1e-12 * (np.abs(target[at]) + model.R * points.T)))
     draft.take(at, points)
     missed = at[~reached]
     draft.reason[missed] = np.where(

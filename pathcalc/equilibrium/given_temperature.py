@@ -51,7 +51,7 @@ def flash_T(model: Model, T: Array, key: str, target: Array) -> Points:
 def _with_dome(
     model: Model, at: NDArray[np.intp], T: Array, key: str, target: Array, draft: Draft
 ) -> NDArray[np.intp]:
-    """Settles lanes below T_c; returns those so close to T_c that they are treated as if there were no dome."""
+    """Settles lanes below T_c; returns those so close to T_c that they are treated as without a dome."""
     sat = saturation_at_T(model, T[at])
     wanted = target[at]
     known = sat.reason == 0
@@ -136,7 +136,7 @@ def _scan_enthalpy(
     lowest: Array,
     highest: Array,
 ) -> None:
-    """h at given T: all states with p up to the limit of the equation; two of them are a reason of their own."""
+    """h at given T: all states with p up to the equation's limit; two are a reason of their own."""
 
     def fun(x: Array, T: Array, wanted: Array, floor: Array) -> Array:
         v = floor + np.exp(x)

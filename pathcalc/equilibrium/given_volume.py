@@ -97,7 +97,7 @@ _FIELDS = tuple(Saturation.__dataclass_fields__)
 
 
 def stable(model: Model, key: str, T: Array, v: Array) -> tuple[Array, Array, Saturation, Array]:
-    """X and (∂X/∂T)_v of the stable state below T_c, whether one phase or two; saturation at T; x (not clipped)."""
+    """X and (∂X/∂T)_v of the stable state below T_c, one phase or two; saturation at T; x (not clipped)."""
     sat = saturation_at_T(model, T)
     with np.errstate(all="ignore"):
         x = (v - sat.v_liquid) / (sat.v_vapour - sat.v_liquid)

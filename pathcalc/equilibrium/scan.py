@@ -73,7 +73,7 @@ def _edge(
 def _with_turning_point(
     fun: Callable[..., Array], nodes: Array, f: Array, args: tuple[Array, ...]
 ) -> tuple[Array, Array]:
-    """One node more a lane: the turning point towards zero, where there is one; else the last node doubled."""
+    """One node more a lane: the turning point towards zero where there is one, else the last node again."""
     size = np.abs(f)
     turns = (size[1:-1] <= size[:-2]) & (size[1:-1] <= size[2:])
     turns &= (f[1:-1] * f[:-2] > 0.0) & (f[1:-1] * f[2:] > 0.0)

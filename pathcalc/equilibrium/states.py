@@ -53,15 +53,15 @@ def state_properties(model: Model, points: Points) -> States:
     out = {name: np.full(n, np.nan) for name in names}
     two = points.x == points.x
     ok = points.reason == 0
-    for start in range(0, n, BLOCK):
-        block = slice(start, start + BLOCK)
-        one = np.flatnonzero(ok[block] & ~two[block]) + start
-        if one.size:
-            _one_phase(model, points, one, out, one.size == n)
-        both = np.flatnonzero(ok[block] & two[block]) + start
-        if both.size:
-            _two_phases(model, points, both, out)
     with np.errstate(all="ignore"):
+        for start in range(0, n, BLOCK):
+            block = slice(start, start + BLOCK)
+            one = np.flatnonzero(ok[block] & ~two[block]) + start
+            if one.size:
+                _one_phase(model, points, one, out, one.size == n)
+            both = np.flatnonzero(ok[block] & two[block]) + start
+            if both.size:
+                _two_phases(model, points, both, out)
         rho = 1.0 / points.v
     return States(points=points, T=points.T, p=points.p, v=points.v, rho=rho, x=points.x, **out)
 

@@ -71,6 +71,14 @@ class Adiabatic(LegModel):
 
 MODEL = Adiabatic
 
+FORMULAS = {
+    "holds": r"q=0",
+    "work_flow": r"w=\Delta h-q=\Delta h",
+    "work_closed": r"w=\Delta u-q=\Delta u",
+    "boundary": r"0",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Adiabatic, run: LegRun) -> Outcome:
     """Reversible, with an isentropic or a polytropic efficiency, or against a constant pressure."""

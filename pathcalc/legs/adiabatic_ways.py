@@ -71,7 +71,7 @@ def isentropic_efficiency(run: LegRun, targets: Targets) -> Outcome:
 def _in_two_steps(run: LegRun, ideal: Place, b: Place, *, by_volume: bool) -> Outcome:
     second = isochore(ideal, b, own=False) if by_volume else isobar(ideal, b, own=False)
     way = [constant("s", run.inlet, ideal, own=False), second]
-    return Outcome(b, way, _no_heat(run), reversible=False)
+    return Outcome(b, way, _no_heat(run), reversible=False, ideal=ideal)
 
 
 def _pressure_with_efficiency(run: LegRun, targets: Targets, efficiency: Array) -> Array:

@@ -46,6 +46,15 @@ class FreeExpansion(LegModel):
 
 MODEL = FreeExpansion
 
+FORMULAS = {
+    "holds": r"u=u_1",
+    "ds": r"\Delta s=\int\left[\frac{c_v}{T}\,\mathrm{d}T+\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v\right]_u",
+    "work_flow": r"w=0",
+    "work_closed": r"w=0",
+    "boundary": r"0",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: FreeExpansion, run: LegRun) -> Outcome:
     """End state from the internal energy and the target; integrated along the line of constant energy."""

@@ -88,6 +88,16 @@ class Isobaric(LegModel):
 
 MODEL = Isobaric
 
+FORMULAS = {
+    "holds": r"p=p_1",
+    "ds": r"\Delta s=\int_{T_1}^{T_2}\frac{c_p}{T}\,\mathrm{d}T",
+    "du": r"\Delta u=\int_{T_1}^{T_2}\left[c_p-p\left(\frac{\partial v}{\partial T}\right)_p\right]\mathrm{d}T",
+    "work_flow": r"w=\int_{p_1}^{p_2}v\,\mathrm{d}p=0",
+    "work_closed": r"w=-p_1\,(v_2-v_1)",
+    "boundary": r"\int\frac{\mathrm{d}q}{T}",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Isobaric, run: LegRun) -> Outcome:
     """End state from the pressure and the target (heat is the change of enthalpy); work -p dv, or none in flow."""

@@ -71,6 +71,16 @@ class Isochoric(LegModel):
 
 MODEL = Isochoric
 
+FORMULAS = {
+    "holds": r"v=v_1",
+    "ds": r"\Delta s=\int_{T_1}^{T_2}\frac{c_v}{T}\,\mathrm{d}T",
+    "du": r"\Delta u=\int_{T_1}^{T_2}c_v\,\mathrm{d}T",
+    "work_flow": r"w=\int_{p_1}^{p_2}v\,\mathrm{d}p=v_1\,(p_2-p_1)",
+    "work_closed": r"w=-\int p\,\mathrm{d}v=0",
+    "boundary": r"\int\frac{\mathrm{d}q}{T}",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Isochoric, run: LegRun) -> Outcome:
     """End state from the volume and the target (heat is the change of internal energy); no work by p dv."""

@@ -67,6 +67,16 @@ class Isothermal(LegModel):
 
 MODEL = Isothermal
 
+FORMULAS = {
+    "holds": r"T=T_1",
+    "ds": r"\Delta s=\int_{v_1}^{v_2}\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v",
+    "du": r"\Delta u=\int_{v_1}^{v_2}\left[T\left(\frac{\partial p}{\partial T}\right)_v-p\right]\mathrm{d}v",
+    "work_flow": r"w=\int_{p_1}^{p_2}v\,\mathrm{d}p",
+    "work_closed": r"w=-\int_{v_1}^{v_2}p\,\mathrm{d}v",
+    "boundary": r"\frac{q}{T_1}",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Isothermal, run: LegRun) -> Outcome:
     """End state from the temperature and the target; work by the integral of p dv or v dp, heat by the balance."""

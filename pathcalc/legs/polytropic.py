@@ -82,6 +82,14 @@ class Polytropic(LegModel):
 
 MODEL = Polytropic
 
+FORMULAS = {
+    "holds": r"p\,v^n=p_1\,v_1^n",
+    "work_flow": r"w=\int_{p_1}^{p_2}v\,\mathrm{d}p",
+    "work_closed": r"w=-\int_{v_1}^{v_2}p\,\mathrm{d}v",
+    "boundary": r"\int\frac{\mathrm{d}q}{T}",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Polytropic, run: LegRun) -> Outcome:
     """End state on p v^n; work by the integral of p dv or v dp, heat by the balance."""

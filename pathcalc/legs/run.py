@@ -68,13 +68,15 @@ class Outcome:
     """A solved leg: where it ends, the way route 1 is integrated along, and what is exchanged.
 
     ``exchange`` is evaluated once the integrals of the way are known. ``reversible`` says that the fluid passes
-    through the states of the way, so that its heat is the integral of T ds.
+    through the states of the way, so that its heat is the integral of T ds. ``ideal`` is the end of the reversible
+    leg that an isentropic efficiency refers to.
     """
 
     end: Place
     segments: list[Segment]
     exchange: Callable[[Integrals], Exchange]
     reversible: bool
+    ideal: Place | None = None
 
 
 def nothing(i: Integrals) -> Exchange:

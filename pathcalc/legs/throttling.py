@@ -41,6 +41,15 @@ class Throttling(LegModel):
 
 MODEL = Throttling
 
+FORMULAS = {
+    "holds": r"h=h_1",
+    "ds": r"\Delta s=\int\left[\frac{c_v}{T}\,\mathrm{d}T+\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v\right]_h",
+    "work_flow": r"w=0",
+    "work_closed": r"w=0",
+    "boundary": r"0",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Throttling, run: LegRun) -> Outcome:
     """End state from the enthalpy and the target; the state change is integrated along the isenthalp."""

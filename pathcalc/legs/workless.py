@@ -97,6 +97,14 @@ class Workless(LegModel):
 
 MODEL = Workless
 
+FORMULAS = {
+    "holds": r"w=0,\ \mathrm{d}p\propto\mathrm{d}h",
+    "work_flow": r"w=0",
+    "work_closed": r"w=0",
+    "boundary": r"\int\frac{\mathrm{d}h}{T}",
+}
+"""What this kind of leg holds, and how its changes and its work are integrated (LaTeX, for the report)."""
+
 
 def solve(leg: Workless, run: LegRun) -> Outcome:
     """End state from the outlet pressure and the target; heat is the change of enthalpy.

@@ -6,6 +6,7 @@ import math
 from importlib.metadata import version
 from typing import TYPE_CHECKING, Any
 
+from pathcalc import __version__
 from pathcalc.path.values import DELTA_KEYS, EXCHANGE_KEYS, STATE_KEYS
 
 if TYPE_CHECKING:
@@ -29,7 +30,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
     return {
         "pathcalc": 1,
         "case": {"id": case.id, "title": case.title, "sha256": case.sha256},
-        "software": {name: version(name) for name in ("pathcalc", "numpy", "scipy")},
+        "software": {"pathcalc": __version__, **{name: version(name) for name in ("numpy", "scipy")}},
         "fluid": {
             "substance": path.card.name,
             "equation": path.model.equation,

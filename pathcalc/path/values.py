@@ -23,7 +23,7 @@ STATE_KEYS = (
 DELTA_KEYS = ("T", "p", "v", "u", "h", "s", "a", "g")
 EXCHANGE_KEYS = ("heat", "work", "entropy_generated", "exergy_destroyed")
 EXTENSIVE = frozenset({"v", "u", "h", "s", "a", "g"})
-_PER_MASS = frozenset({"u", "h", "s", "a", "g", "cv", "cp"})
+PER_MASS = frozenset({"u", "h", "s", "a", "g", "cv", "cp"})
 
 
 class Record(Mapping[str, Value]):
@@ -87,7 +87,7 @@ def state_values(path: SolvedPath, name: str, place: Place, dead: Place) -> dict
                 value = place.v / M
             else:
                 value = getattr(states, key)
-                if key in _PER_MASS:
+                if key in PER_MASS:
                     value = value / M
             values[key] = np.where(path.setting.status.ok, value, None if key == "phase" else np.nan)
     return values

@@ -290,7 +290,7 @@ def parse_mapping(
     any_sign: bool = False,
     sources: Collection[str] | None = None,
 ) -> Quantity:
-    """Quantity of ``{value: …, u: …}``; raises QuantityError. ``sources``: ids of sources that may be named."""
+    """Quantity of ``{value: …, u: …}``; raises QuantityError. ``sources``: ids that may be named."""
     problems = [
         Problem("unknown-key", f"unknown key {k!r} in a quantity; {nearest(k, QUANTITY_KEYS)}", (k,), True)
         for k in data

@@ -163,6 +163,7 @@ def _build() -> dict[str, Unit]:
         for name, (f, c) in group.items():
             for time, (ft, ct) in _TIME.items():
                 table[f"{name}/{time}"] = Unit(dimension, f / ft, citation=_worse(c, ct))
+    simple_pressures = [(name, f) for name, f in _PRESSURE.items() if "/" not in name]
     for interval, (fi, ci) in _INTERVAL.items():
         for name, (f, c) in _ENERGY.items():
             table[f"{name}/{interval}"] = Unit("entropy", f / fi, citation=_worse(c, ci))
@@ -172,9 +173,9 @@ def _build() -> dict[str, Unit]:
         for name, factor in (("W", 1.0), ("kW", 1e3), ("MW", 1e6)):
             table[f"{name}/{interval}"] = Unit("entropy-rate", factor / fi, citation=ci)
         table[f"1/{interval}"] = Unit("expansivity", 1 / fi, citation=ci)
-        for name, (f, c) in _PRESSURE.items():
+        for name, (f, c) in simple_pressures:
             table[f"{interval}/{name}"] = Unit("joule-thomson", fi / f, citation=_worse(c, ci))
-    for name, (f, c) in _PRESSURE.items():
+    for name, (f, c) in simple_pressures:
         table[f"1/{name}"] = Unit("compressibility", 1 / f, citation=c)
     return table | _per_amount()
 

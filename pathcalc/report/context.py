@@ -169,4 +169,4 @@ def phase_words(phase: str | None) -> str:
     """The name of a phase as printed."""
     if not phase:
         return numbers.ABSENT
-    return WORDS.get(f"phase.{phase}", str(phase).replace("-", " ").replace("_", " "))
+    return WORDS.get(f"phase.{phase}", str(phase))

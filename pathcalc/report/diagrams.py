@@ -16,11 +16,13 @@ from pathcalc.report import diagram_labels, svg
 from pathcalc.report.context import Context
 from pathcalc.report.numbers import short
 from pathcalc.report.textsafe import clean
-from pathcalc.report.units import STATE_KINDS
 from pathcalc.report.words import SYMBOLS, say
 
 AXES = {"T-s": ("s", "T"), "p-v": ("v", "p"), "p-h": ("h", "p"), "h-s": ("s", "h")}
 """Diagram name → (abscissa, ordinate)."""
+
+_KINDS = {"T": "T", "p": "dp", "v": "v", "h": "e", "s": "s"}
+"""Kinds of the axes; pressure always absolute, since a gauge pressure has no logarithm."""
 
 COLOURS = ("#1f4e8c", "#b3471d", "#0f7a6c", "#7a3b86", "#6f6212", "#4a5560")
 """Six inks, at least 4.5 to 1 against white, apart in lightness and in the red–green dimension."""
@@ -56,15 +58,15 @@ class Drawing:
     # data
 
     def _scaled(self, key: str, si: Any) -> Any:
-        scale = self.ctx.units[STATE_KINDS[key]]
+        scale = self.ctx.units[_KINDS[key]]
         return np.asarray(si, dtype=float) * scale.factor + scale.offset if si is not None else np.nan
 
     def _line(self, curve: Any) -> tuple[Array, Array]:
         xs = np.concatenate(
-            [_thin(self._scaled(self.x, getattr(p, self.x)).ravel()) for p in curve.pieces] or [[]]
+            [_thin(self._scaled(self.x, getattr(p, self.x)).ravel()) for p in curve.pieces] or [np.empty(0)]
         )
         ys = np.concatenate(
-            [_thin(self._scaled(self.y, getattr(p, self.y)).ravel()) for p in curve.pieces] or [[]]
+            [_thin(self._scaled(self.y, getattr(p, self.y)).ravel()) for p in curve.pieces] or [np.empty(0)]
         )
         good = np.isfinite(xs) & np.isfinite(ys)
         return xs[good], ys[good]
@@ -164,7 +166,9 @@ class Drawing:
         axes.set_ylim(*self.limits[1])
         for axis, key, log in ((axes.xaxis, self.x, self.log_x), (axes.yaxis, self.y, self.log_y)):
             svg.ticks(axis, log, short)
-            unit = self.ctx.units[STATE_KINDS[key]].unit
+            unit = self.ctx.units[_KINDS[key]].unit
+            if key == "p" and self.ctx.units.gauge:
+                unit = say("diagrams.absolute", unit=unit)
             axis.set_label_text(f"{say(f'q.{key}')}  {SYMBOLS[key]}, {unit}", fontsize=9, color=_INK)
         axes.grid(True, which="major", color=_GRID, linewidth=0.6)
         axes.set_axisbelow(True)

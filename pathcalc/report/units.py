@@ -150,7 +150,7 @@ def kind_of(address: str) -> str:
     if head == "cycle":
         return "one"
     if head == "totals" or "total" in path[:-1]:
-        return TOTAL_KINDS.get(key, "one")
+        return TOTAL_KINDS.get(key) or DELTA_KINDS.get(key, "one")
     if "delta" in path[:-1]:
         return DELTA_KINDS.get(key, "one")
     if "maxwell" in path[:-1]:

@@ -125,7 +125,7 @@ class Symbols:
 
     caption: str
     columns: tuple[str, ...]
-    rows: tuple[tuple[str, str, Cell, str, str], ...]
+    rows: tuple[tuple[str, str, str, str, str], ...]
     number: int = 0
     kind: Literal["symbols"] = "symbols"
 

@@ -117,6 +117,7 @@ WORDS: Final[dict[str, str]] = {
     "fluid.datum.boiling-liquid": "h = 0 and s = 0 for the saturated liquid at 1.01325 bar",
     "fluid.datum.liquid-0C": "h = 200 kJ/kg and s = 1 kJ/(kg K) for the saturated liquid at 0 °C",
     "fluid.caption.models": "Models, their ranges and sources",
+    "fluid.sources": "Sources of the constants and parameters:",
     "fluid.equation": "equation of state",
     "fluid.ideal": "ideal-gas heat capacity",
     "fluid.caption.constants": "Constants of the fluid",
@@ -146,10 +147,9 @@ WORDS: Final[dict[str, str]] = {
     "Thermal Plant Analysis, Butterworths, 1985, chapter 2. Symbols: ISO 80000-5:2019.",
     # results
     "results.title": "Results",
-    "results.warnings": "Warnings",
     "results.nowarnings": "The calculation gave no warnings.",
-    "results.warning.at": "{n}. At {at}",
-    "results.warning.general": "{n}. In general",
+    "results.warning.at": "{n}. At {at}:",
+    "results.warning.general": "{n}. In general:",
     "results.mark": "warning {n}",
     "results.states": "States",
     "results.legs": "Legs",
@@ -162,7 +162,7 @@ WORDS: Final[dict[str, str]] = {
     "results.caption.delta": "Legs: changes from inlet to outlet, per unit {per}",
     "results.caption.totals": "Legs: totals for the amount that flows",
     "results.caption.totals.closed": "Legs: totals for the amount enclosed",
-    "results.caption.sum": "Whole path: totals",
+    "results.caption.sum": "Whole path: changes from the first state to the last",
     "results.caption.cycle": "Cycle figures",
     "results.whole": "whole path",
     "results.noamount": "The case gives no amount, so there are no totals.",
@@ -183,8 +183,9 @@ WORDS: Final[dict[str, str]] = {
     "limits.margin": "A negative margin is a miss.",
     # checks
     "checks.title": "Balances, checks and integrals",
-    "checks.lead": "These are the program’s checks on itself. They show that the arithmetic is consistent; "
-    "they say nothing about whether the inputs or the equation of state are right.",
+    "checks.lead": "These are the program’s checks on itself. They show that the arithmetic is consistent; they say "
+    "nothing about whether the inputs or the equation of state are right. Values and tolerances are relative, "
+    "except for the second law: entropy generated, J/(kg K), which must not be negative.",
     "checks.none": "No checks were recorded.",
     "checks.caption": "Checks",
     "checks.passed": "passed",
@@ -192,10 +193,10 @@ WORDS: Final[dict[str, str]] = {
     "checks.maxwell": "Maxwell integrals",
     "checks.caption.maxwell": "Changes integrated along each leg (route 1), error estimate, closure against "
     "route 2",
-    "checks.caption.pieces": "The same by pieces, cut at phase boundaries",
-    "checks.error": "Error estimates are those of the quadrature. They are kept apart from the uncertainty "
-    "of inputs and of the equation of state. Both columns are relative to the larger of the change and its "
-    "scale.",
+    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration turns",
+    "checks.error": "Error estimates are those of the quadrature, kept apart from the uncertainty of inputs and "
+    "of the equation of state. Error and closure are relative: the largest of the three integrals’, each against "
+    "the size of its integrand along the leg.",
     # worked
     "worked.title": "Formulas with numbers",
     "worked.none": "No worked steps were recorded.",
@@ -211,8 +212,10 @@ WORDS: Final[dict[str, str]] = {
     "comparison.absent": "no solution",
     # diagrams
     "diagrams.title": "Diagrams",
-    "diagrams.lead": "States are numbered as in the state table. Lines are the legs’ own paths, told apart "
-    "by line style and number. Arrows show the direction.",
+    "diagrams.lead": "States are numbered as in the state table. Lines are told apart by style and number; arrows "
+    "show the direction. The line of an irreversible leg is the way along which it was integrated, not a row of "
+    "states the fluid passed through.",
+    "diagrams.absolute": "{unit} absolute",
     "diagrams.none": "The case asks for no diagrams.",
     "diagrams.curve": "{y}–{x} diagram",
     "diagrams.alt": "{y} against {x}{scales}. States: {states}. {dome}",
@@ -220,7 +223,6 @@ WORDS: Final[dict[str, str]] = {
     "diagrams.alt.dome": "The two-phase region is outlined.",
     "diagrams.alt.nodome": "No two-phase region is drawn.",
     "diagrams.dome": "two-phase region",
-    "diagrams.critical": "critical point",
     # cautions
     "cautions.title": "Cautions",
     "cautions.lead": "General reminders, chosen by the fluid and the states of this case. They are common "

@@ -32,6 +32,7 @@ class UnknownSubstance(InvalidCaseError):
         hint = f"; did you mean {' or '.join(nearest)}?" if nearest else ""
         text = f"no substance is called {name!r}{hint} (`pathcalc substances` lists all)"
         super().__init__([Finding("", 0, 0, text, "unknown-substance")])
+        self.args = (text,)
 
 
 def key_of(name: str) -> str:

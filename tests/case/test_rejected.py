@@ -1,4 +1,4 @@
-"""Every file in rejected/ is refused with exactly the lines of the .txt beside it: drop two files, gain a test."""
+"""Every file in rejected/ is refused with exactly the lines of the .txt beside it."""
 
 from __future__ import annotations
 

@@ -86,7 +86,7 @@ def rotation(T: float, even: bool) -> float:
 
 @pytest.mark.parametrize("T", [100.0, 200.0])
 def test_the_quantum_mechanics_of_hydrogen_is_that_of_the_tables(T: float) -> None:
-    """NIST-JANAF gives hydrogen in equilibrium of ortho and para: 28.154 and 27.447 J/(mol K), table H-050."""
+    """NIST-JANAF, table H-050, is of the equilibrium of ortho and para: 28.154 and 27.447 J/(mol K)."""
     J = np.arange(0, 14)
     x = 1.438777 * (59.33 * J * (J + 1) - 0.0457 * (J * (J + 1)) ** 2) / T
     weight = np.where(J % 2, 3, 1) * (2 * J + 1) * np.exp(-x)

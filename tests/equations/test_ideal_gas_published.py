@@ -48,7 +48,7 @@ JANAF: list[tuple[str, str, str, float, float, float, float, float, str]] = [
     ("helium", "He", "ortizvega2019", 100, 2000, 3e-5, 0.002, 0.002, "5/2 R with other values of R"),
     ("helium", "He", "nasa9", 300, 3000, 3e-5, 0.002, 0.002, "5/2 R with other values of R"),
     ("hydrogen", "H2", "leachman2009", 298, 1000, 1.0e-3, 0.010, 0.012,
-     "fit of five terms; the table is of the equilibrium of ortho and para, the card of their frozen mixture"),
+     "fit of five terms; the table is of ortho and para in equilibrium, the card of a frozen mixture"),
     ("hydrogen", "H2", "nasa9", 298, 3000, 3.2e-4, 0.010, 0.006, SAME),
     ("carbon-monoxide", "CO", "lemmon2006", 100, 500, 1.5e-4, 0.002, 0.006, "fit of two terms"),
     ("carbon-monoxide", "CO", "nasa9", 200, 3000, 3.5e-4, 0.018, 0.012, "Gurvich 1979; the table is of 1965"),

@@ -74,7 +74,9 @@ def ideal_state(name: str, t: float, p: float) -> dict[str, Any]:
     }  # fmt: skip
 
 
-def leg(name: str, path: str, a: dict[str, Any], b: dict[str, Any], heat: float, flow: float) -> dict[str, Any]:
+def leg(
+    name: str, path: str, a: dict[str, Any], b: dict[str, Any], heat: float, flow: float
+) -> dict[str, Any]:
     delta = {k: b[k] - a[k] for k in ("T", "p", "v", "u", "h", "s", "a", "g")}
     work = delta["h"] - heat
     generated = max(delta["s"], 0.0) if heat == 0 else 0.0
@@ -269,7 +271,10 @@ def throttled() -> MadeSolution:
         leg("first stage", "throttling", a, b, 0.0, 0.1),
         leg("intercooler", "workless", b, c, c["h"] - b["h"], 0.1),
     ]
-    legs[0]["pieces"] = [{"phase": "liquid", "ds": 1.0, "dh": 0.0}, {"phase": "two-phase", "ds": 2.0, "dh": 0.0}]
+    legs[0]["pieces"] = [
+        {"phase": "liquid", "ds": 1.0, "dh": 0.0},
+        {"phase": "two-phase", "ds": 2.0, "dh": 0.0},
+    ]
     solution.result |= {"states": [a, b, c], "legs": legs, "limits": [], "warnings": [], "comparison": []}
     solution.curves = [line("first stage", a, b, "two-phase"), line("intercooler", b, c, "two-phase")]
     solution.dome = dome

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from itertools import groupby
 from typing import Any
 
 from pathcalc.report import numbers
@@ -58,7 +59,8 @@ def _integrals(ctx: Context) -> Table:
     rows = []
     for leg in ctx.legs:
         m = leg["maxwell"] or {}
-        phases = ", ".join(phase_words(p["phase"]) for p in leg["pieces"]) or numbers.ABSENT
+        runs = [phase for phase, _ in groupby(phase_words(p["phase"]) for p in leg["pieces"])]
+        phases = ", ".join(runs) or numbers.ABSENT
         rows.append(
             [
                 Cell(str(leg["name"])),
@@ -112,10 +114,21 @@ def comparison(ctx: Context) -> Section | None:
             row.append(
                 ctx.cell(kind, value) if value is not None else Cell(say("comparison.absent"), "absent")
             )
-            row.append(ctx.cell(ctx.margin(kind), gap))
+            row.append(_gap(ctx, kind, own, gap))
         rows.append(row)
     blocks = (
         Paragraph(say("comparison.lead")),
         ctx.table(say("comparison.caption"), columns, rows),
     )
     return Section("comparison", say("comparison.title"), blocks)
+
+
+def _gap(ctx: Context, kind: str, own: float | None, gap: float | None) -> Cell:
+    """A difference, to the decimals of the values it is between."""
+    if gap is None:
+        return Cell(numbers.ABSENT, "absent")
+    text = ctx.number(kind, own)
+    if "×" in text:
+        return ctx.cell(ctx.margin(kind), gap)
+    decimals = len(text.partition(".")[2])
+    return Cell(numbers.fixed(ctx.units[ctx.margin(kind)].of(gap), decimals), "number")

@@ -23,7 +23,7 @@ _T_HOT = 333.15
 def cautions(ctx: Context) -> Section:
     """Standard cautions that the fluid's hazards and the states call for."""
     blocks: list[Block] = [Paragraph(say("cautions.lead"))]
-    found = [Notice(say(f"caution.{key}"), text, "caution") for key, text in _cautions(ctx)]
+    found = [Notice(say(f"caution.{key}") + ".", text, "caution") for key, text in _cautions(ctx)]
     blocks += found or [Paragraph(say("caution.none"))]
     return Section("cautions", say("cautions.title"), tuple(blocks))
 

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
+import re
+
 from pathcalc.path.steps import Constant
 from pathcalc.report import numbers
 from pathcalc.report.context import Context
 from pathcalc.report.units import pretty
-from pathcalc.report.view import Block, Cell, Column, Formulas, Paragraph, Section, Symbols
+from pathcalc.report.view import Block, Bullets, Cell, Column, Formulas, Paragraph, Section, Symbols
 from pathcalc.report.words import WORDS, say
 
+_LOW = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
 _D = r"\mathrm{d}"
 _ROUTE_1 = (
     (
@@ -51,7 +54,7 @@ def section(ctx: Context) -> Section:
             say(
                 "fluid.lead",
                 substance=basis.substance,
-                formula=basis.formula,
+                formula=subscripted(basis.formula),
                 molar_mass=numbers.short(result["molar_mass"] * 1e3, 8),
                 equation=basis.equation_title,
             )
@@ -67,21 +70,55 @@ def section(ctx: Context) -> Section:
     rows = [(Cell(say(words)), *(Cell(t or numbers.ABSENT) for t in texts)) for words, *texts in models]
     blocks.append(ctx.table(say("fluid.caption.models"), columns, rows))
     blocks.append(Paragraph(say("fluid.datum", datum=WORDS.get(f"fluid.datum.{datum}", datum))))
+    cited = _Cited()
     if basis.constants:
-        blocks.append(_symbols(ctx, "fluid.caption.constants", basis.constants))
+        blocks.append(_symbols(ctx, "fluid.caption.constants", basis.constants, cited))
     if basis.parameters:
-        blocks.append(_symbols(ctx, "fluid.caption.parameters", basis.parameters))
+        blocks.append(_symbols(ctx, "fluid.caption.parameters", basis.parameters, cited))
+    if cited.texts:
+        blocks += [Paragraph(say("fluid.sources")), Bullets(tuple(cited.listed()))]
     return Section("fluid", say("fluid.title"), tuple(blocks))
 
 
-def _symbols(ctx: Context, caption: str, constants: tuple[Constant, ...]) -> Symbols:
-    texts = numbers.align(numbers.short(c.value, 12) for c in constants)
+class _Cited:
+    """Citations by number, so that a table need not repeat them; a remark after one stays with its row."""
+
+    def __init__(self) -> None:
+        self.texts: list[str] = []
+
+    def number(self, source: str) -> str:
+        """What stands in the row: ``[1]`` and what the source adds to citation 1."""
+        if not source:
+            return say("basis.nosource")
+        for i, text in enumerate(self.texts, 1):
+            if source == text or source.startswith(text + " ("):
+                return f"[{i}]{source[len(text) :]}"
+        self.texts.append(source)
+        return f"[{len(self.texts)}]"
+
+    def listed(self) -> list[str]:
+        """The citations with their numbers."""
+        return [f"[{i}] {text}" for i, text in enumerate(self.texts, 1)]
+
+
+def _symbols(ctx: Context, caption: str, constants: tuple[Constant, ...], cited: _Cited) -> Symbols:
     rows = tuple(
-        (c.symbol, c.text, Cell(n.text, "number", n.pad), pretty(c.unit), c.source)
-        for c, n in zip(constants, texts, strict=True)
+        (
+            c.symbol,
+            c.text,
+            numbers.short(c.value, 12),
+            "" if c.unit == "1" else pretty(c.unit),
+            cited.number(c.source),
+        )
+        for c in constants
     )
     heads = tuple(say(f"col.{c}") for c in ("symbol", "meaning", "value", "unit", "source"))
     return Symbols(say(caption), heads, rows, ctx.number_table())
+
+
+def subscripted(formula: str) -> str:
+    """A chemical formula with its counts set low (NH3 → NH₃)."""
+    return re.sub(r"(?<=[A-Za-z)])\d+", lambda m: m[0].translate(_LOW), formula)
 
 
 def method(ctx: Context) -> Section:

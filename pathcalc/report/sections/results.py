@@ -144,7 +144,7 @@ def _totals(ctx: Context) -> list[Block]:
     keys = [k for k in ("u", "h", "s", "a", "g", "v") if delta.get(k) is not None]
     if keys:
         columns = [Column(say("col.leg"))]
-        columns += [ctx.column(f"q.{k}", "Δ" + SYMBOLS[k].upper(), TOTAL_KINDS[k]) for k in keys]
+        columns += [ctx.column(f"d.{k}", "Δ" + SYMBOLS[k].upper(), TOTAL_KINDS[k]) for k in keys]
         row = [Cell(say("results.whole")), *(ctx.cell(TOTAL_KINDS[k], delta[k]) for k in keys)]
         blocks.append(ctx.table(say("results.caption.sum"), columns, [row]))
     return blocks
