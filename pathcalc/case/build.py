@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 from pathlib import Path
-from types import MappingProxyType
 from typing import Any, Literal
 
 from pathcalc.case import checks, names
@@ -113,8 +112,12 @@ class _Builder:
         self.data, self.out, self.files = data, out, files
         record = data.get("record")
         sources = record.get("sources") if isinstance(record, dict) else None
+        known = [str(s) for s in sources] if isinstance(sources, dict) else []
+        readable = "record" not in data or (
+            isinstance(record, dict) and isinstance(sources, (dict, type(None)))
+        )
         self.context: dict[str, Any] = {
-            "sources": [str(s) for s in sources] if isinstance(sources, dict) else [],
+            "sources": known if readable else None,
             "ambient": P_SURROUNDINGS,
         }
 
@@ -164,8 +167,8 @@ class _Builder:
             limits=limits,
             units=units,
             report=report,
-            positions=MappingProxyType({p: m for p, n in walk(data) if (m := mark_of(n))}),
-            user=MappingProxyType(user),
+            positions={p: m for p, n in walk(data) if (m := mark_of(n))},
+            user=user,
         )
 
     def section(self, model: Any, key: str) -> Any:

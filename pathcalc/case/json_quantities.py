@@ -49,10 +49,10 @@ def target_schema(dimensions: Collection[str], ratio: bool) -> dict[str, Any]:
         kinds = {"ratio": quantity_schema(("fraction",))} | kinds
     relative = {
         "type": "object",
-        "properties": kinds,
+        "properties": {**kinds, "source": {"type": ["string", "number"]}, "note": {"type": "string"}},
+        "patternProperties": {"^x-": {}},
         "additionalProperties": False,
-        "minProperties": 1,
-        "maxProperties": 1,
+        "oneOf": [{"required": [kind]} for kind in kinds],
     }
     return {"anyOf": [quantity_schema(dimensions), relative]}
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from pathlib import Path
-from types import MappingProxyType
 from typing import Any, Literal
 
 from pathcalc.case.leg_model import LegModel
@@ -49,6 +48,6 @@ class Case:
     limits: tuple[Limit, ...]
     units: dict[str, str]
     report: Report
-    positions: MappingProxyType[tuple[str | int, ...], Mark] = field(repr=False)
-    user: MappingProxyType[tuple[str | int, ...], Any] = field(repr=False)
+    positions: dict[tuple[str | int, ...], Mark] = field(repr=False)
+    user: dict[tuple[str | int, ...], Any] = field(repr=False)
     """What stands under the user's own keys (those that begin with ``x-``), by path."""

@@ -24,6 +24,7 @@ class Findings:
         self.file, self.root = file, None
         self.found: list[Finding] = found if found is not None else []
         self.emptied: set[Path] = set()
+        self._told: set[Finding] = set()
 
     def add(self, path: Path, message: str, code: str, key: bool = False) -> None:
         """Add a finding at the value at ``path`` of the tree, or at its key."""
@@ -31,7 +32,8 @@ class Findings:
         if not path:
             mark = Mark(self.file, 1, 1)
         finding = Finding(mark.file, mark.line, mark.column, message, code)
-        if finding not in self.found:
+        if finding not in self._told:
+            self._told.add(finding)
             self.found.append(finding)
 
     def missing(self, parent: Path, key: str, message: str) -> None:

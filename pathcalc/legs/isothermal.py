@@ -6,7 +6,16 @@ from typing import TYPE_CHECKING, ClassVar, Literal
 
 from pydantic import Field
 
-from pathcalc.case.fields import Efficiency, Pressure, TargetEntropy, TargetP, TargetRho, TargetV, TargetX
+from pathcalc.case.fields import (
+    Efficiency,
+    Pressure,
+    TargetEntropy,
+    TargetP,
+    TargetRho,
+    TargetV,
+    TargetX,
+    Temperature,
+)
 from pathcalc.case.leg_model import LegModel, OneOf
 
 if TYPE_CHECKING:
@@ -62,6 +71,11 @@ class Isothermal(LegModel):
         description="Work of the reversible leg to that of this one where the machine takes work; "
         "the other way round where it gives work.",
         examples=[0.76, "80 %"],
+    )
+    reservoir: Temperature | None = Field(
+        default=None,
+        description="Temperature of the body the heat comes from or goes to; the fluid's own if left out.",
+        examples=["20 degC"],
     )
 
 

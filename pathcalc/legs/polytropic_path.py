@@ -27,12 +27,14 @@ from pathcalc.legs.integration.polytropic_efficiency import (
     solve,
 )
 from pathcalc.legs.integration.quadrature import NODES
-from pathcalc.legs.integration.saturation_line import side_of
+from pathcalc.legs.integration.saturation_line import SaturationLine, side_of
 from pathcalc.legs.integration.segments import Segment
 from pathcalc.legs.run import LegRun, Place
 
 MAX_STRETCHES = 6
 MAX_HALVINGS = 40
+_SCREEN = 2e-3
+"""Relative distance from the tabled saturation temperature within which the temperature itself is solved for."""
 
 
 @dataclass(frozen=True)
@@ -78,7 +80,7 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
         if wet.size:
             segments.append(_in_dome(model, front, goal, factor, wet, start))
         if dry.size:
-            segments.append(_in_one_phase(model, front, goal, factor, dry, start))
+            segments.append(_in_one_phase(run, front, goal, factor, dry, start))
         start = _points_at(model, front)
     trouble = ~np.isfinite(front.h) | (front.open & np.isfinite(goal * a.T))
     h = np.where(trouble, np.nan, front.h)
@@ -110,8 +112,9 @@ def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
 
 
 def _in_one_phase(
-    model: Model, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points
+    run: LegRun, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points
 ) -> Segment:
+    model = run.model
     y_a, y_b = front.y[lanes], goal[lanes].copy()
     initial = np.stack([front.T[lanes], front.v[lanes]])
     slopes = one_phase_slopes(model, factor[lanes])
@@ -120,7 +123,7 @@ def _in_one_phase(
     if model.has_dome:
         liquid = front.v[lanes] < model.v_c
         for _ in range(MAX_HALVINGS):
-            low, high, lost = _first_sign_change(model, solution, liquid)
+            low, high, lost = _first_sign_change(model, run.setting.boundary.line(), solution, liquid)
             if not lost.any():
                 break
             y_b = np.where(lost, 0.5 * (y_a + y_b), y_b)
@@ -171,9 +174,12 @@ def _above_saturation(model: Model, solution: Solution, y: Array, lanes: Lanes) 
 
 
 def _first_sign_change(
-    model: Model, solution: Solution, liquid: NDArray[np.bool_]
+    model: Model, line: SaturationLine, solution: Solution, liquid: NDArray[np.bool_]
 ) -> tuple[Array, Array, NDArray[np.bool_]]:
-    """Bracket of ln p in which each lane enters the dome (NaN: it does not), and lanes lost before any."""
+    """Bracket of ln p in which each lane enters the dome (NaN: it does not), and lanes lost before any.
+
+    The saturation temperature is read off the table, and solved for only where the table cannot decide.
+    """
     panels, lanes = solution.values.shape[1], liquid.size
     width = (solution.y_b - solution.y_a) / panels
     y = (solution.y_a + width * (np.arange(panels)[:, None, None] + NODES[:, None])).reshape(-1, lanes)
@@ -182,8 +188,11 @@ def _first_sign_change(
     near = (p < model.p_c) & (model.T_c * 1.2 > T)
     gap = np.full(y.shape, np.nan)
     if near.any():
-        sat = saturation_at_p(model, p[near])
-        gap[near] = np.where(sat.reason == 0, T[near] - sat.T, np.nan)
+        gap[near] = T[near] - line.temperature(y[near])
+        close = near & (np.abs(gap) < _SCREEN * T)
+        if close.any():
+            sat = saturation_at_p(model, p[close])
+            gap[close] = np.where(sat.reason == 0, T[close] - sat.T, np.nan)
     wrong = np.where(liquid, gap > 0.0, gap < 0.0)
     broken = ~np.isfinite(T)
     first_wrong = np.where(wrong.any(axis=0), wrong.argmax(axis=0), y.shape[0])

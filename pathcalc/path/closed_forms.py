@@ -1,9 +1,9 @@
 """Closed forms that a pocket calculator can follow: the ideal gas and the van der Waals gas.
 
-With p = R T/(v - b) - a/v^2 the heat capacity c_v is that of the ideal gas, and the two integrals separate
-(a = b = 0 is the ideal gas):
+With p = R T/(v - b) - a_c/v^2 the heat capacity c_v is that of the ideal gas, and the two integrals separate
+(a_c = b = 0 is the ideal gas):
 
-    du = c_v0 dT + a/v^2 dv        ds = c_v0/T dT + R/(v - b) dv
+    du = c_v0 dT + a_c/v^2 dv        ds = c_v0/T dT + R/(v - b) dv
 """
 
 from __future__ import annotations
@@ -86,7 +86,7 @@ def _energy(solution: Solution, solved: SolvedLeg) -> Step:
     formula = r"\Delta u=\int_{T_1}^{T_2}c_v^0\,\mathrm{d}T"
     numbers = shown(caloric, "energy")
     if a > 0.0:
-        formula += r"-a\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
+        formula += r"-a_c\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
         numbers += (
             rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
         )
@@ -114,7 +114,7 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
     numbers = rf"-{shown(R, 'entropy')}\times {number(T)}\times\ln\frac{{{top}}}{{{bottom}}}"
     value = -R * T * float(np.log((v2 - b) / (v1 - b)))
     if real:
-        formula += r"-a\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
+        formula += r"-a_c\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
         numbers += (
             rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
         )

@@ -85,7 +85,9 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
         )
     ]
     if len(pieces) > 1 and key in ("s", "h"):
+        least = 1e-12 * sum(abs(piece["ds" if key == "s" else "dh"]) for piece in pieces)
         parts = [piece["ds" if key == "s" else "dh"] for piece in pieces]
+        parts = [part if abs(part) > least else 0.0 for part in parts]
         steps.append(
             Step(
                 title="Pieces of the path, cut at phase boundaries and corners",

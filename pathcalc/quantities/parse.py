@@ -342,16 +342,21 @@ def parse(value: Any, dimensions: Collection[str], **more: Any) -> Quantity:
     raise QuantityError(Problem("wrong-type", f"write {wanted(dimensions)}, not a list"))
 
 
+def _moved(at: tuple[str, ...], kind: str, beside: Collection[str]) -> tuple[str, ...]:
+    return at if at and at[0] in beside else (kind, *(at[1:] if beside and at[:1] == ("value",) else at))
+
+
 def parse_relative(
     data: Mapping[str, Any], dimensions: Collection[str], ratio: bool, **more: Any
 ) -> Relative:
     """Relative target of a mapping with one of ratio, rise, drop, same_as; raises QuantityError."""
     keys = list(data)
     kind = next(k for k in keys if k in RELATIVE_KEYS)
-    if len(keys) > 1:
-        other = next(k for k in keys if k != kind)
-        raise QuantityError(Problem("one-of", f"{kind} stands alone; remove {other!r}", (other,), True))
     value = data[kind]
+    beside = {k: data[k] for k in ("source", "note") if k in data and kind != "same_as"}
+    if len(keys) > 1 + len(beside):
+        other = next(k for k in keys if k != kind and k not in beside)
+        raise QuantityError(Problem("one-of", f"{kind} stands alone; remove {other!r}", (other,), True))
     if kind == "same_as":
         if not isinstance(value, str):
             raise QuantityError(Problem("wrong-type", "same_as holds the name of an earlier state", (kind,)))
@@ -367,10 +372,12 @@ def parse_relative(
         )
     meant = ("fraction",) if kind == "ratio" else tuple(difference_of(d) for d in dimensions)
     more = {k: v for k, v in more.items() if k != "any_sign"}
+    if beside and not isinstance(value, Quantity):
+        value = {**(value if isinstance(value, Mapping) else {"value": value}), **beside}
     try:
         amount = parse(value, meant, any_sign=True, **more)
     except QuantityError as error:
-        raise QuantityError(*(replace(p, at=(kind, *p.at)) for p in error.problems)) from None
+        raise QuantityError(*(replace(p, at=_moved(p.at, kind, beside)) for p in error.problems)) from None
     if amount.value <= 0:
         if kind == "ratio":
             raise QuantityError(Problem("out-of-range", "ratio must be above 0", (kind,)))

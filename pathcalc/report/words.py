@@ -183,9 +183,9 @@ WORDS: Final[dict[str, str]] = {
     "limits.margin": "A negative margin is a miss.",
     # checks
     "checks.title": "Balances, checks and integrals",
-    "checks.lead": "These are the program’s checks on itself. They show that the arithmetic is consistent; they say "
-    "nothing about whether the inputs or the equation of state are right. Values and tolerances are relative, "
-    "except for the second law: entropy generated, J/(kg K), which must not be negative.",
+    "checks.lead": "These are the program’s checks on itself. They show that the arithmetic is consistent; "
+    "they say nothing about whether the inputs or the equation of state are right. Values and tolerances "
+    "are relative, except for the second law: entropy generated, J/(kg K), which must not be negative.",
     "checks.none": "No checks were recorded.",
     "checks.caption": "Checks",
     "checks.passed": "passed",
@@ -193,14 +193,16 @@ WORDS: Final[dict[str, str]] = {
     "checks.maxwell": "Maxwell integrals",
     "checks.caption.maxwell": "Changes integrated along each leg (route 1), error estimate, closure against "
     "route 2",
-    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration turns",
-    "checks.error": "Error estimates are those of the quadrature, kept apart from the uncertainty of inputs and "
-    "of the equation of state. Error and closure are relative: the largest of the three integrals’, each against "
-    "the size of its integrand along the leg.",
+    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration "
+    "turns",
+    "checks.error": "Error estimates are those of the quadrature, kept apart from the uncertainty of inputs "
+    "and of the equation of state. Error and closure are relative: the largest of the three integrals’, "
+    "each against the size of its integrand along the leg.",
     # worked
     "worked.title": "Formulas with numbers",
     "worked.none": "No worked steps were recorded.",
-    "worked.lead": "Each result as symbols, then numbers, then result.",
+    "worked.lead": "Each result as symbols, then numbers, then result. Properties that come from the "
+    "equation of state without a further step are in the state tables.",
     "worked.for": "For {quantities}",
     "worked.source": "Source: {source}",
     # comparison
@@ -212,9 +214,9 @@ WORDS: Final[dict[str, str]] = {
     "comparison.absent": "no solution",
     # diagrams
     "diagrams.title": "Diagrams",
-    "diagrams.lead": "States are numbered as in the state table. Lines are told apart by style and number; arrows "
-    "show the direction. The line of an irreversible leg is the way along which it was integrated, not a row of "
-    "states the fluid passed through.",
+    "diagrams.lead": "States are numbered as in the state table. Lines are told apart by style and number; "
+    "arrows show the direction. The line of an irreversible leg is the way along which it was integrated, "
+    "not a row of states the fluid passed through.",
     "diagrams.absolute": "{unit} absolute",
     "diagrams.none": "The case asks for no diagrams.",
     "diagrams.curve": "{y}–{x} diagram",

@@ -18,20 +18,20 @@ TRANSLATED = {code for code, _ in _TRANSLATED.values()}
 CALLS = {"add": 2, "fail": 2, "_refuse": 2, "Finding": 4, "Problem": 0}
 
 
-def codes_in(file: Path) -> set[str]:
+def codes_in(file: Path, calls: dict[str, int] = CALLS) -> set[str]:
     found = set()
     for node in ast.walk(ast.parse(file.read_text(encoding="utf-8"))):
         if isinstance(node, ast.Call):
             name = getattr(node.func, "attr", getattr(node.func, "id", ""))
-            code = node.args[CALLS[name]] if name in CALLS and len(node.args) > CALLS[name] else None
+            code = node.args[calls[name]] if name in calls and len(node.args) > calls[name] else None
             if isinstance(code, ast.Constant):
                 found.add(code.value)
     return found
 
 
 def test_every_emitted_code_is_in_the_table() -> None:
-    files = [f for room in ROOMS for f in room.glob("*.py")] + list(LEGS.glob("*.py"))
-    emitted = set().union(*map(codes_in, files)) | TRANSLATED
+    emitted = TRANSLATED.union(*(codes_in(f) for room in ROOMS for f in room.glob("*.py")))
+    emitted = emitted.union(*(codes_in(f, {"Problem": 0}) for f in LEGS.glob("*.py")))
     assert emitted == CODES.keys()
 
 

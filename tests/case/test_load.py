@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+import pickle
 import subprocess
 import sys
 from pathlib import Path
@@ -80,6 +81,21 @@ def test_places() -> None:
     assert (p.line, p.column) == (7, 44)
 
 
+def test_a_case_goes_to_another_process_and_back() -> None:
+    case = load(WHOLE)
+    back = pickle.loads(pickle.dumps(case))
+    assert back == case
+    assert back.legs[0].origin == case.legs[0].origin
+    assert {type(leg.name) for leg in case.legs} == {str}
+
+
+def test_an_unreadable_record_is_told_once() -> None:
+    text = SMALL.replace("to: {p: 2 bar}", "to: {p: 2 bar}, source: sheet")
+    assert findings(text + "record: {sources: [sheet]}\n") == [
+        "-:8:19: error: `sources` holds keys and values, such as {key: value} (wrong-type)"
+    ]
+
+
 def test_defaults() -> None:
     case = loads(SMALL)
     assert (case.surroundings.T.value, case.surroundings.p.value) == (298.15, 101325.0)
@@ -95,7 +111,7 @@ def test_digest_is_that_of_the_file_where_nothing_is_included() -> None:
 
 
 def test_texts_mean_what_they_say() -> None:
-    """YAML 1.2, chapter 10: `no`, `on`, `010`, `1:30` and dates are no truth values, octals, minutes or dates."""
+    """YAML 1.2, chapter 10: `no`, `on`, `010`, `1:30` are no truth values, octals or minutes."""
     text = SMALL + "record: {number: 010, revision: no, purpose: 1:30, author: on, date: 2026-03-02}\n"
     record = loads(text).record
     assert (record.number, record.revision, record.purpose, record.author) == ("010", "no", "1:30", "on")
@@ -137,9 +153,10 @@ def test_amounts_of_flow(amount: str) -> None:
     assert got.dimension in ("mass-flow", "mole-flow")
 
 
-@pytest.mark.parametrize(
-    ("amount", "dimension"), [("2 kg", "mass"), ("3 mol", "mole"), ("9 Nm3", "mole"), ("2 m3", "volume")]
-)
+CLOSED = [("2 kg", "mass"), ("3 mol", "mole"), ("9 Nm3", "mole"), ("2 m3", "volume")]
+
+
+@pytest.mark.parametrize(("amount", "dimension"), CLOSED)
 def test_amounts_of_a_closed_mass(amount: str, dimension: str) -> None:
     got = loads(SMALL.replace("flow", "closed") + f"amount: {amount}\n").amount
     assert got is not None
@@ -169,11 +186,31 @@ def test_escapes_hide_no_control_characters() -> None:
     ]
 
 
-@pytest.mark.parametrize(
-    "text",
-    ["[" * 200000, "{a: " * 100000, "- " * 100000, "? " * 50000, "a: &a " * 1000, "'" * 99999, "&a " * 9999, "!!binary x", "%YAML 9.9\n---\na: 1", "�", "a: b\x00", "\x85", "--- >\n", "key: |\n" + "\t" * 99, "*a", "x" * 3000000, "a: 1\n" * 100000, "\n".join(f"k{i}: 1" for i in range(30000)), "pathcalc: 1\n? [a]\n: b"],
-    ids=range(19),
-)
+HOSTILE = {
+    "brackets": "[" * 200_000,
+    "braces": "{a: " * 100_000,
+    "dashes": "- " * 100_000,
+    "question marks": "? " * 50_000,
+    "anchors": "a: &a " * 1000,
+    "quotes": "'" * 99_999,
+    "anchors alone": "&a " * 9999,
+    "tag": "!!binary x",
+    "directive": "%YAML 9.9\n---\na: 1",
+    "surrogate": "\ud800",
+    "nul": "a: b\x00",
+    "next line": "\x85",
+    "block": "--- >\n",
+    "tabs": "key: |\n" + "\t" * 99,
+    "alias": "*a",
+    "long": "x" * 3_000_000,
+    "one key": "a: 1\n" * 100_000,
+    "many keys": "\n".join(f"k{i}: 1" for i in range(30_000)),
+    "list as key": "pathcalc: 1\n? [a]\n: b",
+    "many bad legs": SMALL + "  - {name: a, path: b}\n" * 2000,
+}
+
+
+@pytest.mark.parametrize("text", HOSTILE.values(), ids=HOSTILE)
 def test_hostile_texts_are_findings(text: str) -> None:
     lines = findings(text)
     assert lines

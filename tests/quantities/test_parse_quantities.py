@@ -54,26 +54,26 @@ def test_per_mass_and_per_mole_are_kept_apart() -> None:
     assert parse_text("1 K", ("temperature",)).per is None
 
 
-@pytest.mark.parametrize(
-    ("data", "u", "shape", "k"),
-    [
-        ({"value": "350 bar", "u": "2 bar"}, 2e5, "normal", None),
-        ({"value": "350 bar", "U": "2 bar", "k": "2"}, 1e5, "normal", 2.0),
-        (
-            {"value": "9 bar", "half_width": "3 bar", "shape": "rectangular"},
-            3e5 / math.sqrt(3),
-            "rectangular",
-            None,
-        ),
-        (
-            {"value": "9 bar", "half_width": "3 bar", "shape": "triangular"},
-            3e5 / math.sqrt(6),
-            "triangular",
-            None,
-        ),
-        ({"value": "350 barg", "u": "2 bar"}, 2e5, "normal", None),
-    ],
-)
+SPREADS = [
+    ({"value": "350 bar", "u": "2 bar"}, 2e5, "normal", None),
+    ({"value": "350 bar", "U": "2 bar", "k": "2"}, 1e5, "normal", 2.0),
+    (
+        {"value": "9 bar", "half_width": "3 bar", "shape": "rectangular"},
+        3e5 / math.sqrt(3),
+        "rectangular",
+        None,
+    ),
+    (
+        {"value": "9 bar", "half_width": "3 bar", "shape": "triangular"},
+        3e5 / math.sqrt(6),
+        "triangular",
+        None,
+    ),
+    ({"value": "350 barg", "u": "2 bar"}, 2e5, "normal", None),
+]
+
+
+@pytest.mark.parametrize(("data", "u", "shape", "k"), SPREADS)
 def test_standard_uncertainty(data: dict[str, str], u: float, shape: str, k: float | None) -> None:
     """JCGM 100:2008: 4.3.3 (expanded), 4.3.7 (rectangular), 4.3.9 (triangular)."""
     q = parse(data, ("pressure",))
@@ -110,10 +110,12 @@ def test_all_problems_of_a_mapping_at_once() -> None:
     [
         ("bar(g)", "write barg"), ("bar g", "write barg"), ("BARG", "write barg"), ("kPa a", "write kPaa"),
         ("psi(a)", "write psia"), ("MPa(gauge)", "write MPag"), ("C", "for a temperature write degC"),
-        ("F", "for a temperature write degF"), ("R", "for a temperature write degR"), ("celsius", "write degC"),
+        ("F", "for a temperature write degF"), ("R", "for a temperature write degR"),
+        ("celsius", "write degC"),
         ("deg C", "write degC"), ("m³/kg", "write m3/kg"), ("kg/m^3", "write kg/m3"), ("kg/hr", "write kg/h"),
         ("kJ/kgK", "write kJ/(kg K)"), ("kJ/kg-K", "write kJ/(kg K)"), ("kJ/(kg·K)", "write kJ/(kg K)"),
-        ("kcal", "there are two calories"), ("lbm", "write lb"), ("gal", "several gallons"), ("ton", "several tons"),
+        ("kcal", "there are two calories"), ("lbm", "write lb"), ("gal", "several gallons"),
+        ("ton", "several tons"),
         ("barr", "did you mean bar"), ("furlongs per fortnight", "list of units"),
     ],
 )  # fmt: skip
@@ -192,3 +194,16 @@ def test_relative_targets() -> None:
     assert (drop.kind, drop.amount and drop.amount.value) == ("drop", 5.0)
     same = parse_relative({"same_as": "start"}, ("temperature",), True)
     assert (same.kind, same.state, same.amount) == ("same_as", "start", None)
+
+
+def test_a_relative_target_may_name_its_source() -> None:
+    target = parse_relative(
+        {"ratio": "3.1", "source": "lab", "note": "n"}, ("pressure",), True, sources=["lab"]
+    )
+    assert target.amount is not None
+    assert (target.amount.value, target.amount.source, target.amount.note) == (3.1, "lab", "n")
+    with pytest.raises(QuantityError) as caught:
+        parse_relative({"ratio": "x", "source": "lob"}, ("pressure",), True, sources=["lab"])
+    assert [p.at for p in caught.value.problems] == [("ratio",), ("source",)]
+    with pytest.raises(QuantityError, match="same_as stands alone"):
+        parse_relative({"same_as": "start", "note": "n"}, ("pressure",), True)

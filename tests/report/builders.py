@@ -67,11 +67,28 @@ def ideal_state(name: str, t: float, p: float) -> dict[str, Any]:
     s = CP * np.log(t / 298.15) - RS * np.log(p / 1e5)
     h0, s0 = CP * (T0 - 298.15), CP * np.log(T0 / 298.15) - RS * np.log(P0 / 1e5)
     return {
-        "name": name, "T": t, "p": p, "v": v, "rho": 1 / v, "u": u, "h": h, "s": float(s), "a": float(u - t * s),
-        "g": float(h - t * s), "cv": CV, "cp": CP, "sound_speed": (1.4 * RS * t) ** 0.5, "Z": 1.0, "x": None,
-        "phase": "gas", "expansivity": 1 / t, "compressibility": 1 / p, "joule_thomson": 0.0,
-        "fugacity_coefficient": 1.0, "exergy": float(h - h0 - T0 * (s - s0)),
-    }  # fmt: skip
+        "name": name,
+        "T": t,
+        "p": p,
+        "v": v,
+        "rho": 1 / v,
+        "u": u,
+        "h": h,
+        "s": float(s),
+        "a": float(u - t * s),
+        "g": float(h - t * s),
+        "cv": CV,
+        "cp": CP,
+        "sound_speed": (1.4 * RS * t) ** 0.5,
+        "Z": 1.0,
+        "x": None,
+        "phase": "gas",
+        "expansivity": 1 / t,
+        "compressibility": 1 / p,
+        "joule_thomson": 0.0,
+        "fugacity_coefficient": 1.0,
+        "exergy": float(h - h0 - T0 * (s - s0)),
+    }
 
 
 def leg(
@@ -82,11 +99,23 @@ def leg(
     generated = max(delta["s"], 0.0) if heat == 0 else 0.0
     flows = {"heat": heat, "work": work, "entropy_generated": generated, "exergy_destroyed": T0 * generated}
     return {
-        "name": name, "path": path, "from": a["name"], "to": b["name"], "delta": delta, **flows, "amount": flow,
+        "name": name,
+        "path": path,
+        "from": a["name"],
+        "to": b["name"],
+        "delta": delta,
+        **flows,
+        "amount": flow,
         "total": {k: v * flow for k, v in flows.items()},
-        "maxwell": {"ds": delta["s"], "du": delta["u"], "dh": delta["h"], "error": 3.1e-13, "closure": -1.2e-14},
+        "maxwell": {
+            "ds": delta["s"],
+            "du": delta["u"],
+            "dh": delta["h"],
+            "error": 3.1e-13,
+            "closure": -1.2e-14,
+        },
         "pieces": [{"phase": "gas", "ds": delta["s"], "dh": delta["h"]}],
-    }  # fmt: skip
+    }
 
 
 def curve(name: str, a: dict[str, Any], b: dict[str, Any]) -> Curve:
@@ -141,7 +170,10 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
         "case": {"id": "boosters/purge-booster", "title": title, "sha256": "0f" * 32},
         "software": {"pathcalc": "0.1.0", "numpy": "2.0.0", "scipy": "1.14.0"},
         "fluid": {
-            "substance": "nitrogen", "equation": "ideal-gas", "molar_mass": M, "datum": "ideal-gas-298",
+            "substance": "nitrogen",
+            "equation": "ideal-gas",
+            "molar_mass": M,
+            "datum": "ideal-gas-298",
             "sources": ["Made for the layout tests"],
         },
         "boundary": "flow",
@@ -154,20 +186,44 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
         "checks": [
             {"name": "route closure", "at": x["name"], "passed": True, "value": 1.2e-14, "tolerance": 1e-9}
             for x in legs
-        ] + [{"name": "energy balance", "at": None, "passed": True, "value": 0.0, "tolerance": 1e-9}],
+        ]
+        + [{"name": "energy balance", "at": None, "passed": True, "value": 0.0, "tolerance": 1e-9}],
         "limits": [
-            {"quantity": "first stage.T", "value": t2, "min": None, "max": 433.15, "passed": True, "margin": 433.15 - t2},
-            {"quantity": "totals.work", "value": totals["work"], "min": None, "max": 120e3, "passed": True,
-             "margin": 120e3 - totals["work"]},
+            {
+                "quantity": "first stage.T",
+                "value": t2,
+                "min": None,
+                "max": 433.15,
+                "passed": True,
+                "margin": 433.15 - t2,
+            },
+            {
+                "quantity": "totals.work",
+                "value": totals["work"],
+                "min": None,
+                "max": 120e3,
+                "passed": True,
+                "margin": 120e3 - totals["work"],
+            },
         ],
         "comparison": [
-            {"equation": "peng-robinson",
-             "quantities": {"first stage.T": t2 + 0.41, "intercooler.heat": legs[1]["heat"] * 1.01, "totals.work": 9e4}},
+            {
+                "equation": "peng-robinson",
+                "quantities": {
+                    "first stage.T": t2 + 0.41,
+                    "intercooler.heat": legs[1]["heat"] * 1.01,
+                    "totals.work": 9e4,
+                },
+            },
         ],
         "warnings": [
-            {"code": "outside-range", "at": "second stage", "text": "A made-up warning, to see where it stands."},
+            {
+                "code": "outside-range",
+                "at": "second stage",
+                "text": "A made-up warning, to see where it stands.",
+            },
         ],
-    }  # fmt: skip
+    }
     case = SimpleNamespace(
         id="boosters/purge-booster",
         title=title,
@@ -175,7 +231,10 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
         includes=(("../shared/site.yaml", "surroundings: {T: 20 degC}\n"),),
         sha256="0f" * 32,
         record={
-            "number": "C-2041-07", "revision": "B", "date": "2026-03-02", "author": "A. Writer",
+            "number": "C-2041-07",
+            "revision": "B",
+            "date": "2026-03-02",
+            "author": "A. Writer",
             "purpose": "Discharge temperatures, cooler duty and shaft power for the booster data sheet.",
             "assumptions": ["Steady flow. Changes of kinetic and potential energy are neglected."],
             "sources": {"vendor": "Booster data sheet D-118, revision 2, rated point"},
@@ -188,15 +247,20 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
         start={"T": q("15 degC", "temperature"), "p": q("1.2 barg", "pressure", u=2e3, shape="normal")},
         legs=[
             {
-                "name": "first stage", "path": "adiabatic", "to": {"p": q("4.5 barg", "pressure")},
+                "name": "first stage",
+                "path": "adiabatic",
+                "to": {"p": q("4.5 barg", "pressure")},
                 "efficiency": Quantity(0.76, "fraction", "", "0.76", u=0.02, shape="normal", source="vendor"),
             },
             {
-                "name": "intercooler", "path": "workless", "to": {"T": q("35 degC", "temperature")},
+                "name": "intercooler",
+                "path": "workless",
+                "to": {"T": q("35 degC", "temperature")},
                 "pressure_drop": q("0.15 bar", "pressure"),
             },
             {
-                "name": "second stage", "path": "adiabatic",
+                "name": "second stage",
+                "path": "adiabatic",
                 "to": {"p": Relative("ratio", Quantity(3.1, "fraction", "", "3.1"))},
                 "efficiency": Quantity(0.74, "fraction", "", "0.74"),
             },
@@ -208,7 +272,7 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
         units={"T": "degC", "p": "bar", "energy": "kJ", "mass": "kg", "time": "s"},
         report=SimpleNamespace(diagrams=["T-s", "p-h", "p-v"], compare_with=["peng-robinson"]),
         positions={},
-    )  # fmt: skip
+    )
     work = Step(
         "Work of the adiabatic stage",
         r"w = h_2 - h_1",
@@ -226,10 +290,20 @@ def two_stages(title: str = "Nitrogen purge booster, two stages with an intercoo
     return MadeSolution(
         case,
         result,
-        {"first stage.work": [ideal, work], "first stage.T": [ideal], "start.exergy": [
-            Step("Exergy of the inlet", r"e_x = (h - h_0) - T_0 (s - s_0)", r"e_x = \notacommand{x}", "67.8 kJ/kg")]},
+        {
+            "first stage.work": [ideal, work],
+            "first stage.T": [ideal],
+            "start.exergy": [
+                Step(
+                    "Exergy of the inlet",
+                    r"e_x = (h - h_0) - T_0 (s - s_0)",
+                    r"e_x = \notacommand{x}",
+                    "67.8 kJ/kg",
+                )
+            ],
+        },
         [curve(x["name"], a, b) for x, a, b in zip(legs, st, st[1:], strict=False)],
-    )  # fmt: skip
+    )
 
 
 def made_dome() -> Dome:
@@ -239,10 +313,20 @@ def made_dome() -> Dome:
     h_c, s_c, v_c = 332e3, 1.43e3, 1 / 467.6
     h_l, h_v = h_c - 190e3 * gap - 60e3 * gap**2, h_c + 150e3 * gap - 45e3 * gap**2
     return Dome(
-        T=t, p=p, v_l=v_c * np.exp(-1.0 * gap), v_v=v_c * np.exp(1.0 * gap + 3.6 * gap**1.5),
-        s_l=s_c + (h_l - h_c) / 280.0, s_v=s_c + (h_l - h_c) / 280.0 + (h_v - h_l) / t, h_l=h_l, h_v=h_v,
-        T_c=304.13, p_c=7.38e6, v_c=v_c, s_c=s_c, h_c=h_c,
-    )  # fmt: skip
+        T=t,
+        p=p,
+        v_l=v_c * np.exp(-1.0 * gap),
+        v_v=v_c * np.exp(1.0 * gap + 3.6 * gap**1.5),
+        s_l=s_c + (h_l - h_c) / 280.0,
+        s_v=s_c + (h_l - h_c) / 280.0 + (h_v - h_l) / t,
+        h_l=h_l,
+        h_v=h_v,
+        T_c=304.13,
+        p_c=7.38e6,
+        v_c=v_c,
+        s_c=s_c,
+        h_c=h_c,
+    )
 
 
 def throttled() -> MadeSolution:
@@ -256,8 +340,15 @@ def throttled() -> MadeSolution:
         for k in "vsh":
             low, high = getattr(dome, f"{k}_l")[i], getattr(dome, f"{k}_v")[i]
             state[k] = float(low + y * (high - low))
-        state |= {"rho": 1 / state["v"], "x": x, "phase": "liquid" if x is None else "two-phase", "cv": None, "cp": None,
-                  "sound_speed": None, "joule_thomson": None}  # fmt: skip
+        state |= {
+            "rho": 1 / state["v"],
+            "x": x,
+            "phase": "liquid" if x is None else "two-phase",
+            "cv": None,
+            "cp": None,
+            "sound_speed": None,
+            "joule_thomson": None,
+        }
         return state
 
     a, b, c = inside("start", 60, None), inside("first stage", 18, 0.34), inside("intercooler", 18, 0.9)

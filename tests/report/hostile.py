@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-
 from builders import MadeSolution, two_stages
 
 from pathcalc.path.steps import Step

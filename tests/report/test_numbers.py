@@ -118,16 +118,33 @@ def test_values_per_mole() -> None:
 @pytest.mark.parametrize(
     ("address", "kind"),
     [
-        ("start.T", "T"), ("first stage.work", "e"), ("totals.work", "total"), ("totals.delta.s", "total_entropy"),
-        ("cooler.delta.T", "dT"), ("cooler.delta.s", "s"), ("cooler.maxwell.ds", "s"), ("totals.delta.p", "dp"),
-        ("start.Z", "one"), ("cycle.thermal_efficiency", "one"), ("leg.total.heat", "total"), ("a.unheard", "one"),
+        ("start.T", "T"),
+        ("first stage.work", "e"),
+        ("totals.work", "total"),
+        ("totals.delta.s", "total_entropy"),
+        ("cooler.delta.T", "dT"),
+        ("cooler.delta.s", "s"),
+        ("cooler.maxwell.ds", "s"),
+        ("totals.delta.p", "dp"),
+        ("start.Z", "one"),
+        ("cycle.thermal_efficiency", "one"),
+        ("leg.total.heat", "total"),
+        ("a.unheard", "one"),
     ],
-)  # fmt: skip
+)
 def test_kinds_of_addresses(address: str, kind: str) -> None:
     assert kind_of(address) == kind
 
 
 def test_pretty_units() -> None:
-    assert [pretty(u) for u in ("degC", "m3/kg", "kJ/(kg K)", "delta_degF", "Nm3/h", "kgf/cm2", "m6/mol2")] == [
-        "°C", "m³/kg", "kJ/(kg K)", "°F", "m³(n)/h", "kgf/cm²", "m⁶/mol²",
-    ]  # fmt: skip
+    assert [
+        pretty(u) for u in ("degC", "m3/kg", "kJ/(kg K)", "delta_degF", "Nm3/h", "kgf/cm2", "m6/mol2")
+    ] == [
+        "°C",
+        "m³/kg",
+        "kJ/(kg K)",
+        "°F",
+        "m³(n)/h",
+        "kgf/cm²",
+        "m⁶/mol²",
+    ]

@@ -15,6 +15,8 @@ from pathcalc.equilibrium.saturation import Saturation, saturation_at_T
 from pathcalc.legs.integration.bracket import bracketed_root
 
 POINTS = 96
+MARGIN = 1e-9
+"""A cut closer to an end of a path than this part of it is left out."""
 
 
 class Side(NamedTuple):
@@ -58,8 +60,10 @@ class SaturationLine:
     def __init__(self, model: Model) -> None:
         self.model = model
         low = model.T_triple * (1.0 + 1e-9)
-        distance = 1.0 - low / model.T_c
-        T = model.T_c * (1.0 - distance * np.geomspace(1.0, 1e-7, POINTS))
+        knee = low + 0.9 * (model.T_c - low)
+        far = np.linspace(low, knee, POINTS // 2, endpoint=False)
+        near = model.T_c - (model.T_c - knee) * np.geomspace(1.0, 1e-6, POINTS // 2)
+        T = np.concatenate([far, near])
         sat = saturation_at_T(model, T)
         known = sat.reason == 0
         T = T[known]
@@ -74,18 +78,22 @@ class SaturationLine:
         last = Side(T_c, state.p, v_c, state.s, state.h, state.u, state.p_T)
         return Side(*(np.concatenate([a, b]) for a, b in zip(side, last, strict=True)))
 
+    def temperature(self, log_p: Array) -> Array:
+        """Saturation temperature read off the table (1/T linear in ln p); NaN below the triple point."""
+        table = self.vapour
+        return np.asarray(1.0 / np.interp(log_p, np.log(table.p), 1.0 / table.T, left=np.nan))
+
     def cuts(
         self,
         lanes: int,
         mismatch: Callable[[Side, NDArray[np.intp] | None], Array],
         progress: Callable[[Side, NDArray[np.intp]], Array],
-        margin: float = 1e-9,
     ) -> Cuts:
         """Cuts of the paths with the boundary.
 
         ``mismatch(side, lane)`` is zero where the boundary meets the path of a lane: arrays (G, 1) of a side
         against all lanes when ``lane`` is None, else arrays (k,) against those lanes. ``progress`` is the
-        coordinate of a boundary state along the path; cuts within ``margin`` of an end are left out.
+        coordinate of a boundary state along the path; cuts within MARGIN of an end are left out.
         """
         found: list[tuple[NDArray[np.intp], Array, Side, bool]] = []
         for vapour, table in ((False, self.liquid), (True, self.vapour)):
@@ -97,10 +105,10 @@ class SaturationLine:
                 continue
             side = self._refine(vapour, table.T[cell], table.T[cell + 1], lane.astype(np.intp), mismatch)
             along = progress(side, lane.astype(np.intp))
-            keep = (along > margin) & (along < 1.0 - margin) & np.isfinite(along)
+            keep = (along > MARGIN) & (along < 1.0 - MARGIN) & np.isfinite(along)
             kept = Side(*(a[keep] for a in side))
             found.append((lane[keep].astype(np.intp), along[keep], kept, vapour))
-        return _sorted_cuts(lanes, found)
+        return sorted_cuts(lanes, found)
 
     def _refine(
         self,
@@ -122,7 +130,8 @@ class SaturationLine:
         return at(bracketed_root(miss, low, np.minimum(high, ceiling)))
 
 
-def _sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, bool]]) -> Cuts:
+def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, bool]]) -> Cuts:
+    """Cuts of all lanes from lists of (lanes, coordinates, states, vapour or liquid), in order along each path."""
     count = np.zeros(lanes, dtype=np.intp)
     if not found:
         empty = np.empty((0, lanes))

@@ -11,10 +11,11 @@ from pathcalc.equilibrium.flash import flash
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium.points import Points
+from pathcalc.equilibrium.saturation import saturation_at_p, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
-from pathcalc.legs.integration.families import Ends, Family, Lanes
+from pathcalc.legs.integration.families import Ends, Family, Isotherm, Lanes
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
-from pathcalc.legs.integration.saturation_line import Cuts, SaturationLine, Side
+from pathcalc.legs.integration.saturation_line import MARGIN, Cuts, SaturationLine, Side, sorted_cuts
 from pathcalc.legs.integration.two_phase import level_piece, sloping_piece
 
 COUNT = len(QUANTITIES)
@@ -109,7 +110,7 @@ def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]
     at_risk = _may_meet_dome(model, segment)
     if segment.region != "unknown" or not at_risk.any():
         return [_piece(model, segment, ends, lanes, segment.region == "dome")]
-    cuts = _cuts(boundary.line(), segment, ends)
+    cuts = _level_cuts(model, segment) if segment.family.level_in_dome else _cuts(boundary, segment, ends)
     inside = _starts_inside(model, segment, ends, cuts, at_risk)
     pieces: list[Piece] = []
     for j in range(int(cuts.count.max(initial=0)) + 1):
@@ -130,17 +131,35 @@ def _may_meet_dome(model: Model, segment: Segment) -> NDArray[np.bool_]:
     return np.minimum(segment.a.T, segment.b.T) < model.T_c
 
 
-def _cuts(line: SaturationLine, segment: Segment, ends: Ends) -> Cuts:
-    family = segment.family
+def _progress(segment: Segment, side: Side, lane: Lanes) -> Array:
+    a, b, here = _coordinates(segment, side)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        along: Array = (here - a[lane]) / (b[lane] - a[lane])
+    return along
 
+
+def _cuts(boundary: BoundaryOf, segment: Segment, ends: Ends) -> Cuts:
     def progress(side: Side, lane: Lanes) -> Array:
-        a, b, here = _coordinates(segment, side)
-        start, stop = a[lane], b[lane]
-        with np.errstate(divide="ignore", invalid="ignore"):
-            along: Array = (here - start) / (stop - start)
-        return along
+        return _progress(segment, side, lane)
 
-    return line.cuts(ends.T_a.size, family.mismatch, progress)
+    return boundary.line().cuts(ends.T_a.size, segment.family.mismatch, progress)
+
+
+def _level_cuts(model: Model, segment: Segment) -> Cuts:
+    """Isotherms and isobars meet the boundary at one saturation state, both sides of it."""
+    a = segment.a
+    by_T = isinstance(segment.family, Isotherm)
+    sat = saturation_at_T(model, a.T) if by_T else saturation_at_p(model, a.p)
+    lanes = np.flatnonzero(sat.reason == 0).astype(np.intp)
+    found = []
+    for vapour in (False, True):
+        v = sat.v_vapour if vapour else sat.v_liquid
+        none = np.full(lanes.size, np.nan)
+        side = Side(sat.T[lanes], sat.p[lanes], v[lanes], none, none, none, sat.dp_dT[lanes])
+        along = _progress(segment, side, lanes)
+        keep = (along > MARGIN) & (along < 1.0 - MARGIN)
+        found.append((lanes[keep], along[keep], Side(*(x[keep] for x in side)), vapour))
+    return sorted_cuts(a.T.size, found)
 
 
 def _coordinates(segment: Segment, side: Side) -> tuple[Array, Array, Array]:

@@ -1,0 +1,110 @@
+"""What a PATH on the command line stands for: a file, a folder, or standard input."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, TypeVar
+
+import click
+
+from pathcalc.cli.run import report_error
+from pathcalc.cli.talk import Talk
+from pathcalc.errors import UsageError
+
+if TYPE_CHECKING:
+    from pathcalc.case import Case
+
+F = TypeVar("F", bound=Callable[..., Any])
+STDIN = "-"
+
+PATH = click.Path(allow_dash=True)
+ROOT_HELP = "Folder that includes may not leave and case ids begin at; by default the enclosing checkout."
+
+
+def root_option(command: F) -> F:
+    """The option ``--root``."""
+    return click.option("--root", type=click.Path(), metavar="DIR", help=ROOT_HELP)(command)
+
+
+@dataclass(frozen=True)
+class Input:
+    """One case to come: where it lies, and how it is called in messages."""
+
+    path: Path | None
+    shown: str
+
+    def load(self, root: str | None) -> Case:
+        """The case; raises InvalidCaseError or UsageError."""
+        from pathcalc.case import load, loads
+
+        if self.path is not None:
+            return load(self.path, root=root)
+        from pathcalc.case.yaml_reader import MAX_BYTES
+
+        data = sys.stdin.buffer.read(MAX_BYTES + 1)
+        return loads(data.decode("utf-8", errors="surrogateescape"), name=STDIN, root=root)
+
+
+@dataclass(frozen=True)
+class Inputs:
+    """The cases behind several PATHs; ``many`` where results come as a list."""
+
+    items: tuple[Input, ...]
+    many: bool
+    code: int
+    """Exit code of the PATHs that lead to no case."""
+
+
+def gather(paths: Sequence[str], talk: Talk) -> Inputs:
+    """The cases of all PATHs, each once, in the order given; a PATH without any is told and counted as wrong usage."""
+    from pathcalc.case import find_cases
+
+    found: dict[object, Input] = {}
+    code, many = 0, len(paths) > 1
+    for path in paths:
+        if path == STDIN:
+            found.setdefault(STDIN, Input(None, STDIN))
+            continue
+        folder = Path(path).is_dir()
+        many = many or folder
+        try:
+            files = find_cases(path)
+            if folder and not files:
+                raise UsageError(f"{path}: no case in this folder (*.yaml that begin with the key pathcalc)")
+        except UsageError as error:
+            code = max(code, report_error(error, talk))
+            continue
+        for file in files:
+            found.setdefault(file.absolute(), Input(file, file.as_posix()))
+    return Inputs(tuple(found.values()), many, code)
+
+
+def single(path: str) -> Input:
+    """The one case behind a PATH that may not be a folder."""
+    return Input(None, STDIN) if path == STDIN else Input(Path(path), Path(path).as_posix())
+
+
+def places(case: Case) -> Iterator[tuple[str, tuple[str, int, int]]]:
+    """Name of every leg with the file, line and column it begins at."""
+    for leg in case.legs:
+        line, column = leg.origin
+        yield leg.name, (leg.origin_file, line, column)
+
+
+def place_of(case: Case, at: str) -> tuple[str, int, int] | None:
+    """File, line and column of what an address or a name of a leg stands for; None where it has none."""
+    name = at
+    known = dict(places(case))
+    while name and name not in known:
+        name = name.rpartition(".")[0]
+    if name and known[name][1]:
+        return known[name]
+    for key in ("start", "surroundings", "fluid", "limits"):
+        if at == key or at.startswith(f"{key}."):
+            mark = case.positions.get((key,))
+            if mark is not None:
+                return str(mark[0]), int(mark[1]), int(mark[2])
+    return None
