@@ -64,7 +64,8 @@ def _stripped(node: Any, path: NodePath, user: dict[NodePath, Any], out: Finding
         for i, value in enumerate(node):
             if isinstance(value, Scalar) and value.null:
                 out.found.append(Finding(*value.mark, "an item of the list has no value", "empty-value"))
-            items.append(_stripped(value, (*path, i), user, out))
+            else:
+                items.append(_stripped(value, (*path, i), user, out))
         return items
     return node
 
@@ -113,9 +114,7 @@ class _Builder:
         record = data.get("record")
         sources = record.get("sources") if isinstance(record, dict) else None
         known = [str(s) for s in sources] if isinstance(sources, dict) else []
-        readable = "record" not in data or (
-            isinstance(record, dict) and isinstance(sources, (dict, type(None)))
-        )
+        readable = "record" not in data or (isinstance(record, dict) and isinstance(sources, (dict, type(None))))
         self.context: dict[str, Any] = {
             "sources": known if readable else None,
             "ambient": P_SURROUNDINGS,
@@ -124,9 +123,7 @@ class _Builder:
     def case(self, origin: Origin, user: dict[NodePath, Any]) -> Case | None:
         data, out = self.data, self.out
         title = self.text("title")
-        record = (
-            out.validate(Record, data["record"], ("record",), self.context) if "record" in data else Record()
-        )
+        record = out.validate(Record, data["record"], ("record",), self.context) if "record" in data else Record()
         surroundings = self.surroundings()
         self.context["ambient"] = surroundings.p.value
         fluid = self.section(Fluid, "fluid")
@@ -234,9 +231,7 @@ class _Builder:
         value = self.data[key]
         mark = place_of(self.data, (key,)) or Mark(self.out.file, 1, 1)
         try:
-            q = parse(
-                value, field.dimensions, ambient=self.context["ambient"], sources=self.context["sources"]
-            )
+            q = parse(value, field.dimensions, ambient=self.context["ambient"], sources=self.context["sources"])
         except QuantityError as error:
             for p in error.problems:
                 self.out.add((key, *p.at), p.message, p.code, p.key)

@@ -14,7 +14,8 @@ from pathcalc.quantities.values import Quantity
 
 SATURATION_KEYS = ("x", "superheat", "subcooling", "phase")
 # which partner each of these keys can stand with: superheat and subcooling are counted from saturation at p
-PARTNERS = {"superheat": ("p",), "subcooling": ("p",), "phase": ("T", "p")}
+_ALL = ("T", "p", "v", "rho", "u", "h", "s")
+PARTNERS = {"superheat": _ALL, "subcooling": _ALL, "phase": _ALL}
 DEPENDENT = ({"v", "rho"},)
 DEPENDENT_IDEAL = ({"T", "u"}, {"T", "h"}, {"u", "h"})
 
@@ -38,9 +39,7 @@ def check_start(start: Start, equation: str | None, out: Findings) -> None:
             True,
         )
     if equation == "ideal-gas" and set(keys) in DEPENDENT_IDEAL:
-        text = (
-            f"{keys[0]} and {keys[1]} of an ideal gas both depend on T alone; give p, v or s with one of them"
-        )
+        text = f"{keys[0]} and {keys[1]} of an ideal gas both depend on T alone; give p, v or s with one of them"
         out.add((*at, keys[1]), text, "dependent-pair", key=True)
     for key in keys:
         _check_saturation(key, (*at, key), equation, out)
@@ -48,9 +47,7 @@ def check_start(start: Start, equation: str | None, out: Findings) -> None:
 
 def _check_saturation(key: str, at: Path, equation: str | None, out: Findings) -> None:
     if key in SATURATION_KEYS and equation in names.WITHOUT_SATURATION:
-        text = (
-            f"the equation {equation} has no saturation, so {key} has no meaning; use {words(names.CUBICS)}"
-        )
+        text = f"the equation {equation} has no saturation, so {key} has no meaning; use {words(names.CUBICS)}"
         out.add(at, text, "no-saturation", key=True)
 
 
@@ -75,9 +72,7 @@ def check_fluid(fluid: Fluid, out: Findings) -> None:
         key = "basis" if fluid.basis is not None else "k_ij"
         out.add((*at, key), f"{key} goes with mixture, which is not given", "one-of", key=True)
     if fluid.volume_shift is not None and fluid.equation not in names.CUBICS:
-        text = (
-            f"volume_shift goes with the cubic equations {', '.join(names.CUBICS)}, not with {fluid.equation}"
-        )
+        text = f"volume_shift goes with the cubic equations {', '.join(names.CUBICS)}, not with {fluid.equation}"
         out.add((*at, "volume_shift"), text, "one-of", key=True)
     if fluid.virial is not None and fluid.equation != "virial":
         out.add(
@@ -87,9 +82,7 @@ def check_fluid(fluid: Fluid, out: Findings) -> None:
             key=True,
         )
     if fluid.datum in names.SATURATION_DATUMS and fluid.equation in names.WITHOUT_SATURATION:
-        text = (
-            f"the equation {fluid.equation} has no liquid; use datum ideal-gas-298, or {words(names.CUBICS)}"
-        )
+        text = f"the equation {fluid.equation} has no liquid; use datum ideal-gas-298, or {words(names.CUBICS)}"
         out.add((*at, "datum"), text, "no-saturation")
 
 
@@ -108,9 +101,7 @@ def _check_mixture(fluid: Fluid, out: Findings) -> None:
         out.add(at, text, "not-available", key=True)
 
 
-def check_leg(
-    leg: LegModel, at: Path, boundary: str, amount: bool | None, equation: str | None, out: Findings
-) -> None:
+def check_leg(leg: LegModel, at: Path, boundary: str, amount: bool | None, equation: str | None, out: Findings) -> None:
     """Does a leg go with the boundary, the amount and the equation. ``amount`` None: not known."""
     if boundary not in leg.boundaries:
         other = "closed" if boundary == "flow" else "flow"
@@ -132,9 +123,7 @@ def check_leg(
             _check_total(value, key, here, boundary, amount, out)
 
 
-def _check_total(
-    value: Quantity, key: str, at: Path, boundary: str, amount: bool | None, out: Findings
-) -> None:
+def _check_total(value: Quantity, key: str, at: Path, boundary: str, amount: bool | None, out: Findings) -> None:
     meant = "power" if boundary == "flow" else "energy"
     if value.dimension != meant:
         total = f"a total {key} with boundary: {boundary} is {_a(meant)} such as {EXAMPLE[meant]}"
@@ -164,11 +153,7 @@ def check_limit(
     if place != "totals" and place not in states:
         out.add(here, f"no state or leg {place!r}; {nearest(place, [*states, 'totals'])}", "unknown-quantity")
         return
-    known = (
-        names.TOTAL_KEYS
-        if place == "totals"
-        else names.STATE_KEYS | (names.LEG_KEYS if place in legs else {})
-    )
+    known = names.TOTAL_KEYS if place == "totals" else names.STATE_KEYS | (names.LEG_KEYS if place in legs else {})
     if key not in known:
         out.add(here, f"{place!r} has no result {key!r}; {nearest(key, known)}", "unknown-quantity")
         return

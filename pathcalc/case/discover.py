@@ -35,12 +35,7 @@ def find_cases(path: str | os.PathLike[str]) -> list[Path]:
         folders[:] = sorted(f for f in folders if not f.startswith("."))
         for name in files:
             file = Path(folder, name)
-            if (
-                name.endswith(".yaml")
-                and not name.startswith(".")
-                and file.is_file()
-                and begins_as_case(file)
-            ):
+            if name.endswith(".yaml") and not name.startswith(".") and file.is_file() and begins_as_case(file):
                 found.append(file)
     return sorted(found, key=lambda p: p.relative_to(top).parts)
 

@@ -23,9 +23,7 @@ class Repeat(Strict):
 
     repeat: RepeatCount = Field(description="How many times.", examples=[3])
     legs: Annotated[list[Any], Field(description="The legs of one time through.")]
-    note: Text | None = Field(
-        None, description="Anything a reader should know.", examples=["three equal stages"]
-    )
+    note: Text | None = Field(None, description="Anything a reader should know.", examples=["three equal stages"])
 
 
 @dataclass(frozen=True)
@@ -123,9 +121,7 @@ def _leg(item: Any, at: Path, out: Findings, context: dict[str, Any]) -> LegMode
     if found is None:
         return None
     if found.name in RESERVED_NAMES:
-        out.add(
-            (*at, "name"), f"{found.name!r} is no leg name; it already names something else", "reserved-name"
-        )
+        out.add((*at, "name"), f"{found.name!r} is no leg name; it already names something else", "reserved-name")
     mark = mark_of(item) or Mark("", 0, 0)
     found._origin, found._origin_file = (mark.line, mark.column), mark.file
     return found

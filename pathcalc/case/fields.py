@@ -16,13 +16,12 @@ from pydantic_core import CoreSchema, PydanticCustomError, core_schema
 
 from pathcalc.case.nodes import Scalar, mark_of
 from pathcalc.quantities.parse import (
-    RELATIVE_KEYS,
     Problem,
     QuantityError,
     parse,
-    parse_relative,
     unknown_source,
 )
+from pathcalc.quantities.relative import RELATIVE_KEYS, parse_relative
 from pathcalc.quantities.units import ATM
 from pathcalc.quantities.values import Quantity, Relative
 
@@ -159,9 +158,7 @@ class WholeField(_Field):
             shown = repr(str(value)) if isinstance(value, (str, float)) else "a mapping or a list"
             raise_problems(Problem("bad-number", f"{shown} is no whole number"))
         if not self.low <= value <= self.high:
-            raise_problems(
-                Problem("out-of-range", f"{value} is out of range; must be {self.low} to {self.high}")
-            )
+            raise_problems(Problem("out-of-range", f"{value} is out of range; must be {self.low} to {self.high}"))
         return int(value)
 
     def json(self) -> dict[str, Any]:
@@ -175,7 +172,7 @@ class TextField(_Field):
     def read(self, value: Any, info: core_schema.ValidationInfo) -> str:
         """Text of a scalar."""
         if isinstance(value, Mapping) or not isinstance(value, (str, int, float)):
-            raise_problems(Problem("wrong-type", "holds a text, not a mapping or a list"))
+            raise_problems(Problem("wrong-type", "write a text, not a mapping or a list"))
         if not str(value).strip():
             raise_problems(Problem("empty-value", "the text is empty; write one, or leave the key out"))
         return str(value)
@@ -212,11 +209,9 @@ class ChoiceField(_Field):
         from pathcalc.quantities.parse import nearest, words
 
         if not isinstance(value, str):
-            raise_problems(Problem("wrong-type", f"holds one of {words(self.choices)}"))
+            raise_problems(Problem("wrong-type", f"write one of {words(self.choices)}"))
         if value not in self.choices:
-            raise_problems(
-                Problem("unknown-name", f"unknown name {str(value)!r}; {nearest(value, self.choices)}")
-            )
+            raise_problems(Problem("unknown-name", f"unknown name {str(value)!r}; {nearest(value, self.choices)}"))
         return str(value)
 
     def json(self) -> dict[str, Any]:

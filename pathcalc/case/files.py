@@ -55,14 +55,10 @@ class Files:
         try:
             target = (folder / str(written)).resolve()
         except (OSError, RuntimeError):
-            self._refuse(
-                mark, f"{what} {str(written)!r} cannot be followed: a loop of links", "include-missing"
-            )
+            self._refuse(mark, f"{what} {str(written)!r} cannot be followed: a loop of links", "include-missing")
             return None
         if not target.is_relative_to(self.root):
-            text = (
-                f"{what} {str(written)!r} leads out of the root folder; move the file under it, or set --root"
-            )
+            text = f"{what} {str(written)!r} leads out of the root folder; move the file under it, or set --root"
             self._refuse(mark, text, "include-outside")
             return None
         if not target.exists():
@@ -120,9 +116,7 @@ class Files:
         if target is None:
             return None
         if target in chain:
-            self._refuse(
-                item.mark, f"included file {str(item)!r} includes itself in the end", "include-cycle"
-            )
+            self._refuse(item.mark, f"included file {str(item)!r} includes itself in the end", "include-cycle")
             return None
         if self.reads >= MAX_INCLUDES:
             self._refuse(item.mark, f"more than {MAX_INCLUDES} included files", "include-too-many")

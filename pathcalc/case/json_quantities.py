@@ -105,9 +105,7 @@ def _text(dimensions: Collection[str]) -> dict[str, Any]:
     with_unit = {"type": "string", "pattern": rf"^{NUMBER} +({units})$"}
     if "fraction" not in dimensions:
         return with_unit
-    return {
-        "anyOf": [{"type": "number"}, {"type": "string", "pattern": rf"^{NUMBER}( *(%|ppm))?$"}, with_unit]
-    }
+    return {"anyOf": [{"type": "number"}, {"type": "string", "pattern": rf"^{NUMBER}( *(%|ppm))?$"}, with_unit]}
 
 
 _MANY = 6

@@ -53,9 +53,7 @@ def case_json_schema() -> dict[str, Any]:
             "record": _key(
                 _model(Record, "record", defs), "What a checker needs beside the numbers.", {"revision": "B"}
             ),
-            "fluid": _key(
-                fluid, "The fluid and its equation.", {"substance": "nitrogen", "equation": "soave"}
-            ),
+            "fluid": _key(fluid, "The fluid and its equation.", {"substance": "nitrogen", "equation": "soave"}),
             "boundary": _key(
                 {"enum": list(names.AMOUNTS)},
                 "flow: steady flow through devices; closed: a fixed mass.",
@@ -83,9 +81,7 @@ def case_json_schema() -> dict[str, Any]:
                 "Acceptance; a miss makes the exit code 1.",
                 [{"quantity": "totals.work", "max": "120 kW"}],
             ),
-            "units": _key(
-                _units(), "Units of the report; results files are always SI.", {"T": "degC", "p": "bar"}
-            ),
+            "units": _key(_units(), "Units of the report; results files are always SI.", {"T": "degC", "p": "bar"}),
             "report": _key(_model(Report, "report", defs), "What the report shows.", {"diagrams": ["T-s"]}),
         },
         "patternProperties": USER_KEYS,

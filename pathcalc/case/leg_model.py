@@ -13,9 +13,7 @@ from pathcalc.quantities.parse import Problem, words
 class Strict(BaseModel):
     """Base of all models: unknown keys are refused, values do not change."""
 
-    model_config = ConfigDict(
-        extra="forbid", frozen=True, arbitrary_types_allowed=True, populate_by_name=True
-    )
+    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True, populate_by_name=True)
 
 
 class OneOf(Strict):
@@ -64,12 +62,8 @@ class LegModel(Strict):
 
     name: LegName
     path: str
-    note: Text | None = Field(
-        None, description="Anything a reader should know.", examples=["per vendor sheet"]
-    )
-    source: SourceId | None = Field(
-        None, description="Id of a source in record.sources.", examples=["vendor"]
-    )
+    note: Text | None = Field(None, description="Anything a reader should know.", examples=["per vendor sheet"])
+    source: SourceId | None = Field(None, description="Id of a source in record.sources.", examples=["vendor"])
 
     _origin: tuple[int, int] = PrivateAttr(default=(0, 0))
     _origin_file: str = PrivateAttr(default="")

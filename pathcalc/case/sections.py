@@ -61,7 +61,7 @@ class EquationField(_Field):
     def read(self, value: Any, info: core_schema.ValidationInfo) -> str:
         """The name, or a problem that tells a name to come from one that is not known."""
         if not isinstance(value, str):
-            raise_problems(Problem("wrong-type", f"holds one of {words(EQUATIONS)}"))
+            raise_problems(Problem("wrong-type", f"write one of {words(EQUATIONS)}"))
         if value in EQUATIONS_LATER and value not in EQUATIONS:
             known = ", ".join(EQUATIONS)
             text = f"equation {str(value)!r} is not available in this version; available are {known}"
@@ -100,9 +100,7 @@ class HeatCapacityField(_Field):
         if isinstance(value, AnyMapping) and "correlation" in value:
             other = [k for k in value if k != "correlation"]
             if other:
-                raise_problems(
-                    Problem("one-of", f"correlation stands alone; remove {other[0]!r}", (other[0],), True)
-                )
+                raise_problems(Problem("one-of", f"correlation stands alone; remove {other[0]!r}", (other[0],), True))
             if not isinstance(value["correlation"], str):
                 raise_problems(Problem("wrong-type", "correlation holds a name", ("correlation",)))
             return HeatCapacity(correlation=str(value["correlation"]))
@@ -165,30 +163,22 @@ class SeriesField(_Field):
 class Record(Strict):
     """What a checker needs beside the numbers."""
 
-    number: Text | None = Field(
-        default=None, description="Number of the calculation.", examples=["C-2041-07"]
-    )
+    number: Text | None = Field(default=None, description="Number of the calculation.", examples=["C-2041-07"])
     revision: Text | None = Field(default=None, description="Revision of the calculation.", examples=["B"])
     date: Annotated[str, DateField()] | None = Field(
         default=None, description="Day, year-month-day.", examples=["2026-03-02"]
     )
-    author: Text | None = Field(
-        default=None, description="Who wrote the calculation.", examples=["A. Writer"]
-    )
+    author: Text | None = Field(default=None, description="Who wrote the calculation.", examples=["A. Writer"])
     checker: Text | None = Field(default=None, description="Who checked it.", examples=["C. Checker"])
     approver: Text | None = Field(default=None, description="Who approved it.", examples=["D. Approver"])
-    project: Text | None = Field(
-        default=None, description="Project or plant it belongs to.", examples=["Unit 20"]
-    )
+    project: Text | None = Field(default=None, description="Project or plant it belongs to.", examples=["Unit 20"])
     purpose: Text | None = Field(
         default=None, description="What the result is for.", examples=["Shaft power of the booster."]
     )
     assumptions: list[Text] | None = Field(
         default=None, description="Assumptions, one text each.", examples=[["Steady flow."]]
     )
-    notes: list[Text] | None = Field(
-        default=None, description="Notes, one text each.", examples=[["See revision A."]]
-    )
+    notes: list[Text] | None = Field(default=None, description="Notes, one text each.", examples=[["See revision A."]])
     sources: dict[Text, Text] | None = Field(
         default=None,
         description="Citations by id; any quantity, leg or limit may name one.",
@@ -217,9 +207,7 @@ class Virial(Strict):
     @model_validator(mode="after")
     def _reference(self) -> Virial:
         if self.T_ref is None and (len(self.B) > 1 or len(self.C or ()) > 1):
-            raise_problems(
-                Problem("missing-key", "a series of two or more coefficients needs T_ref", key=True)
-            )
+            raise_problems(Problem("missing-key", "a series of two or more coefficients needs T_ref", key=True))
         return self
 
 
@@ -230,9 +218,7 @@ Fraction = Annotated[Quantity, QuantityField(("fraction",), low=0.0)]
 class Fluid(Strict):
     """The fluid: a substance or the user's own card, and its equation of state."""
 
-    substance: Text | None = Field(
-        default=None, description="Name of a built-in substance.", examples=["nitrogen"]
-    )
+    substance: Text | None = Field(default=None, description="Name of a built-in substance.", examples=["nitrogen"])
     card: Text | None = Field(
         default=None,
         description="Path of the user's own substance card, relative to this file.",
@@ -258,7 +244,7 @@ class Fluid(Strict):
     )
     volume_shift: Annotated[Quantity, QuantityField(("specific-volume",), any_sign=True)] | None = Field(
         default=None,
-        description="Volume added to that of a cubic equation; may be negative.",
+        description="Volume taken off that of a cubic equation, v = v_equation - c (Péneloux); may be negative.",
         examples=["-2.1 cm3/mol"],
     )
     k_ij: dict[Text, dict[Text, KIJ]] | None = Field(
@@ -281,9 +267,7 @@ class Fluid(Strict):
 class Surroundings(Strict):
     """Gauge zero, and the dead state of exergy."""
 
-    T: Temperature | None = Field(
-        default=None, description="Temperature; 298.15 K if left out.", examples=["20 degC"]
-    )
+    T: Temperature | None = Field(default=None, description="Temperature; 298.15 K if left out.", examples=["20 degC"])
     p: Pressure | None = Field(
         default=None, description="Pressure, absolute; 1.01325 bar if left out.", examples=["1.013 bar"]
     )
@@ -305,13 +289,13 @@ class Start(OneOf):
     s: SpecificEntropy | None = Field(default=None, description="Entropy.", examples=["6.8 kJ/(kg K)"])
     x: Quality | None = Field(default=None, description="Vapour quality by mass, 0 to 1.", examples=[0.9])
     superheat: Superheat | None = Field(
-        default=None, description="Temperature above saturation at p.", examples=["5 K"]
+        default=None, description="Temperature above that of saturation at the same pressure.", examples=["5 K"]
     )
     subcooling: Superheat | None = Field(
-        default=None, description="Temperature below saturation at p.", examples=["3 K"]
+        default=None, description="Temperature below that of saturation at the same pressure.", examples=["3 K"]
     )
     phase: Annotated[str, ChoiceField(PHASES)] | None = Field(
-        default=None, description="Saturated liquid or vapour, with T or p.", examples=["saturated-vapour"]
+        default=None, description="Saturated liquid or vapour, with one other property.", examples=["saturated-vapour"]
     )
 
 
@@ -332,18 +316,10 @@ class Limit(Strict):
         description="Address of the result: <state or leg>.<key>, or totals.<key>.",
         examples=["first stage.T"],
     )
-    min: AnyQuantity | None = Field(
-        default=None, description="Least value that is accepted.", examples=["1 barg"]
-    )
-    max: AnyQuantity | None = Field(
-        default=None, description="Greatest value that is accepted.", examples=["160 degC"]
-    )
-    note: Text | None = Field(
-        default=None, description="Anything a reader should know.", examples=["seal rating"]
-    )
-    source: SourceId | None = Field(
-        default=None, description="Id of a source in record.sources.", examples=["vendor"]
-    )
+    min: AnyQuantity | None = Field(default=None, description="Least value that is accepted.", examples=["1 barg"])
+    max: AnyQuantity | None = Field(default=None, description="Greatest value that is accepted.", examples=["160 degC"])
+    note: Text | None = Field(default=None, description="Anything a reader should know.", examples=["seal rating"])
+    source: SourceId | None = Field(default=None, description="Id of a source in record.sources.", examples=["vendor"])
 
     _origin: tuple[int, int] = PrivateAttr(default=(0, 0))
 

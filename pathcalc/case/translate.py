@@ -41,9 +41,7 @@ class Findings:
         if (*parent, key) not in self.emptied:
             self.add(parent, message, "missing-key", key=True)
 
-    def validate(
-        self, model: type[M], data: Any, at: Path, context: dict[str, Any], what: str = ""
-    ) -> M | None:
+    def validate(self, model: type[M], data: Any, at: Path, context: dict[str, Any], what: str = "") -> M | None:
         """Model of the data found at path ``at``; None, with findings, where it is not valid."""
         try:
             return model.model_validate(data, context=context)

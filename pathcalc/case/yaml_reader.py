@@ -64,9 +64,7 @@ def decode(data: bytes, file: str, findings: list[Finding]) -> str | None:
 def read(text: str, file: str, findings: list[Finding]) -> Mapping | None:
     """Top mapping of a YAML text; None, with at least one finding, where there is none."""
     if len(text) > MAX_BYTES:
-        findings.append(
-            Finding(file, 1, 1, f"the text is longer than {MAX_BYTES} characters", "file-too-large")
-        )
+        findings.append(Finding(file, 1, 1, f"the text is longer than {MAX_BYTES} characters", "file-too-large"))
         return None
     bad = _CONTROL.search(text)
     if bad:
@@ -224,9 +222,7 @@ class _Builder:
             self.fail(mark, message, "merge-key", stop=False)
             return None, mark
         if key.plain and _NOT_TEXT.fullmatch(key):
-            self.fail(
-                mark, f"key {key!s} is not a text; put it in quotes if it is meant", "bad-key", stop=False
-            )
+            self.fail(mark, f"key {key!s} is not a text; put it in quotes if it is meant", "bad-key", stop=False)
             return None, mark
         return str(key), mark
 

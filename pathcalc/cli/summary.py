@@ -54,7 +54,7 @@ def _head(page: Page, ctx: Context) -> None:
     facts += [f"revision {record.revision}"] if record.revision else []
     page.line(", ".join(facts))
     amount = result["amount"]["value"]
-    size = f", {ctx.measure('amount', amount)}" if amount is not None else ""
+    size = f", {ctx.brief('amount', amount)}" if amount is not None else ""
     kind = "steady flow" if ctx.flow else "closed"
     page.line(f"{result['fluid']['substance']}, equation {result['fluid']['equation']}; {kind}{size}")
     around = result["surroundings"]
@@ -132,7 +132,8 @@ def _limits(page: Page, ctx: Context) -> None:
     rows: list[Sequence[str]] = []
     for row in ctx.result["limits"]:
         kind = kind_of(row["quantity"])
-        bounds = [ctx.measure(kind, row[key]) for key in ("value", "min", "max")]
+        bounds = [ctx.measure(kind, row["value"])]
+        bounds += [numbers.ABSENT if row[key] is None else ctx.brief(kind, row[key]) for key in ("min", "max")]
         margin = ctx.measure(ctx.margin(kind), row["margin"])
         rows.append([row["quantity"], *bounds, margin, "pass" if row["passed"] else "FAIL"])
     if rows:

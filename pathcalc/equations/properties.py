@@ -108,24 +108,21 @@ def full(model: Model, T: Array, v: Array, p: Array | None = None) -> Full:
     stiff = 1.0 + 2.0 * d.d01 + d.d02  # (dp/drho)_T/(R T)
     thermal_slope = 1.0 + d.d01 - d.d11
     cp = t.cv + R * thermal_slope * thermal_slope / stiff
-    if p is None:
-        p = t.p
-        Z = 1.0 + d.d01
-        ln_z = np.log1p(d.d01)
-        h, u = t.h, t.u
-    else:
-        Z = p * v / (R * T)
-        ln_z = np.log(Z)
-        u = t.u
-        h = u + p * v
-    with np.errstate(invalid="ignore"):
+    with np.errstate(invalid="ignore", divide="ignore"):
+        if p is None:
+            p, h = t.p, t.h
+            Z, ln_z = 1.0 + d.d01, np.log1p(d.d01)
+        else:
+            Z = p * v / (R * T)
+            ln_z = np.log(Z)
+            h = t.u + p * v
         sound_speed = np.sqrt(R * T * (cp / t.cv) * stiff / model.M)
     return Full(
         p=p,
-        u=u,
+        u=t.u,
         h=h,
         s=t.s,
-        a=u - T * t.s,
+        a=t.u - T * t.s,
         g=h - T * t.s,
         cv=t.cv,
         cp=cp,

@@ -125,7 +125,7 @@ class VirialGas:
                 new = rho - f / (1.0 + rho * (2.0 * b + 3.0 * rho * c))
                 new = np.where((new > low) & (new < high), new, 0.5 * (low + high))
                 new = np.where(settled | (f == 0.0), rho, new)
-                settled |= ~(np.abs(new - rho) > 4e-16 * rho)
+                settled |= ~(np.abs(new - rho) > 1e-9 * rho)  # the step taken leaves its square
                 rho = new
                 if settled.all():
                     break

@@ -16,6 +16,7 @@ from pathcalc.equilibrium.given_pressure import flash_p
 from pathcalc.equilibrium.given_volume import mixed
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
+from pathcalc.equilibrium.saturation import pressure_range
 from pathcalc.equilibrium.scan import scanned
 
 _P_LEAST = 1e-3
@@ -54,9 +55,7 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     reached = points.ok & (root.ok | (miss <= 1e-12 * (np.abs(target[at]) + model.R * points.T)))
     draft.take(at, points)
     missed = at[~reached]
-    draft.reason[missed] = np.where(
-        points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached]
-    )
+    draft.reason[missed] = np.where(points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached])
     return draft.finish(model)
 
 
@@ -83,7 +82,10 @@ def _on_isentrope(model: Model, points: Points, key: str) -> tuple[Array, Array]
 
 
 def flash_uh(model: Model, u: Array, h: Array) -> Points:
-    """The state of energy ``u`` and enthalpy ``h`` (J/mol): p v = h − u is known, u is scanned along it."""
+    """The state of energy ``u`` and enthalpy ``h`` (J/mol): p v = h − u is known, u is scanned along it.
+
+    Saturated liquid itself is a turning point of u on that line: its own u and h may be called not reached.
+    """
     n = u.size
     draft = Draft(n)
     if quantity.is_ideal(model):
@@ -91,9 +93,7 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
         return draft.finish(model)
     pv = h - u
     usable = np.isfinite(pv) & (pv > 0.0)
-    draft.reason[~usable] = np.where(
-        np.isfinite(pv[~usable]), reasons.TARGET_NOT_REACHED, reasons.NOT_A_STATE
-    )
+    draft.reason[~usable] = np.where(np.isfinite(pv[~usable]), reasons.TARGET_NOT_REACHED, reasons.NOT_A_STATE)
     at = np.flatnonzero(usable)
     if at.size == 0:
         return draft.finish(model)
@@ -104,7 +104,8 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
         return _on_isentrope(model, points, "u")[0] - wanted
 
     top = min(model.p_max, _P_MOST)
-    nodes = np.linspace(np.log(1.0), np.log(top), _NODES)[:, None] + np.zeros(at.size)
+    least = min(1.0, pressure_range(model)[0]) if model.has_dome else 1.0
+    nodes = np.linspace(np.log(least), np.log(top), _NODES)[:, None] + np.zeros(at.size)
     first, second, count = scanned(fun, nodes, (pv[at], u[at]), unit=1.0)
     with np.errstate(all="ignore"):
         p = np.exp(first.x)

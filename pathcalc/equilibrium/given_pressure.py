@@ -177,6 +177,10 @@ def _single_phase(
         f = np.where(lost, -1.0, f)
         return f, np.where(lost, np.nan, slope * T if logarithmic else slope)
 
+    def at_volume(T: Array, p: Array, v: Array, branch: Array) -> tuple[Array, Array]:
+        t = model.residual.pressure(T, v)
+        return t.p - p, t.p_T
+
     lo, hi, x = (a[todo] for a in (low, high, start))
     q, b = p[todo], branch[todo].astype(np.float64)
     T_low, T_high = lo, hi
@@ -185,7 +189,8 @@ def _single_phase(
             lo, hi, x = np.log(lo), np.log(hi), np.log(x)
         lo = lo - 1e-12 * np.abs(lo)
         hi = hi + 1e-12 * np.abs(hi)
-        root = guarded_newton(fun, x, lo, hi, (q, target[todo], b), unit=1.0 if logarithmic else None)
+        args = (q, target[todo], b)
+        root = guarded_newton(at_volume if key == "v" else fun, x, lo, hi, args, unit=1.0 if logarithmic else None)
         T = np.clip(np.exp(root.x) if logarithmic else root.x, T_low, T_high)
         v = _root(model, T, q, b)
     if key == "v":

@@ -48,9 +48,7 @@ def flash_T(model: Model, T: Array, key: str, target: Array) -> Points:
     return draft.finish(model)
 
 
-def _with_dome(
-    model: Model, at: NDArray[np.intp], T: Array, key: str, target: Array, draft: Draft
-) -> NDArray[np.intp]:
+def _with_dome(model: Model, at: NDArray[np.intp], T: Array, key: str, target: Array, draft: Draft) -> NDArray[np.intp]:
     """Settles lanes below T_c; returns those so close to T_c that they are treated as without a dome."""
     sat = saturation_at_T(model, T[at])
     wanted = target[at]

@@ -56,9 +56,7 @@ def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
     return draft.finish(model)
 
 
-def _below_critical(
-    model: Model, at: NDArray[np.intp], v: Array, key: str, target: Array, draft: Draft
-) -> None:
+def _below_critical(model: Model, at: NDArray[np.intp], v: Array, key: str, target: Array, draft: Draft) -> None:
     """Keeps the lanes whose single-phase state lies outside the dome, solves the others inside it."""
     T = draft.T[at]
     sat = saturation_at_T(model, np.clip(T, model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)))

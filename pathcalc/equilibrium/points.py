@@ -98,9 +98,7 @@ class Draft:
 
     def finish(self, model: Model) -> Points:
         """The finished points: failed lanes blanked, phases named."""
-        bad = (self.reason == 0) & ~(
-            np.isfinite(self.T) & np.isfinite(self.p) & np.isfinite(self.v) & (self.v > 0.0)
-        )
+        bad = (self.reason == 0) & ~(np.isfinite(self.T) & np.isfinite(self.p) & np.isfinite(self.v) & (self.v > 0.0))
         if bad.any():
             self.reason[bad] = NOT_CONVERGED
         failed = self.reason != 0

@@ -35,9 +35,7 @@ def scanned(
             at = np.flatnonzero(defined[inner, np.arange(n)] & (inner + step >= 0) & (inner + step < k))
             if at.size:
                 i, o = inner[at], inner[at] + step
-                nodes[o, at], f[o, at] = _edge(
-                    fun, nodes[i, at], nodes[o, at], f[i, at], tuple(a[at] for a in args)
-                )
+                nodes[o, at], f[o, at] = _edge(fun, nodes[i, at], nodes[o, at], f[i, at], tuple(a[at] for a in args))
         nodes, f = _with_turning_point(fun, nodes, f, args)
         change = (f[:-1] * f[1:] < 0.0) | ((f[:-1] == 0.0) & (f[1:] == f[1:]))
         change[-1] |= f[-1] == 0.0
@@ -49,9 +47,7 @@ def scanned(
         if has.size:
             at = np.argmax(np.cumsum(change, axis=0)[:, has] >= order, axis=0)
             low, high = nodes[at, has], nodes[at + 1, has]
-            found = bracketed(
-                fun, low, high, f[at, has], f[at + 1, has], tuple(a[has] for a in args), unit=unit
-            )
+            found = bracketed(fun, low, high, f[at, has], f[at + 1, has], tuple(a[has] for a in args), unit=unit)
             x[has], ok[has] = found.x, found.ok
         roots.append(Root(x, ok))
     return roots[0], roots[1], count.astype(np.float64)
@@ -89,9 +85,7 @@ def _with_turning_point(
     return np.take_along_axis(nodes, order, 0), np.take_along_axis(f, order, 0)
 
 
-def _turning_point(
-    fun: Callable[..., Array], x: Array, y: Array, args: tuple[Array, ...]
-) -> tuple[Array, Array]:
+def _turning_point(fun: Callable[..., Array], x: Array, y: Array, args: tuple[Array, ...]) -> tuple[Array, Array]:
     """The least |f| inside three nodes (3, n) of one sign, or the first point met where the sign differs."""
     (a, b, c), (fa, fb, fc) = x, y
     settled = np.zeros(b.size, dtype=np.bool_)

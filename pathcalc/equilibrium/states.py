@@ -66,9 +66,7 @@ def state_properties(model: Model, points: Points) -> States:
     return States(points=points, T=points.T, p=points.p, v=points.v, rho=rho, x=points.x, **out)
 
 
-def _one_phase(
-    model: Model, points: Points, at: NDArray[np.intp], out: dict[str, Array], every: bool
-) -> None:
+def _one_phase(model: Model, points: Points, at: NDArray[np.intp], out: dict[str, Array], every: bool) -> None:
     T, p, v = (points.T, points.p, points.v) if every else (points.T[at], points.p[at], points.v[at])
     f = full(model, T, v, p)
     for name in (*_MIXED, *_SINGLE, "Z"):

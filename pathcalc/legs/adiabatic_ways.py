@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable
 
 import numpy as np
-from pathcalc.equilibrium.flash import flash
 
 from pathcalc.equations.contract import Array
+from pathcalc.equilibrium.flash import flash
 from pathcalc.legs.integration.bracket import scanned_root
 from pathcalc.legs.integration.segments import Integrals
 from pathcalc.legs.polytropic_path import follow

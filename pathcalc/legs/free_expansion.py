@@ -48,7 +48,6 @@ MODEL = FreeExpansion
 
 FORMULAS = {
     "holds": r"u=u_1",
-    "ds": r"\Delta s=\int\left[\frac{c_v}{T}\,\mathrm{d}T+\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v\right]_u",
     "work_flow": r"w=0",
     "work_closed": r"w=0",
     "boundary": r"0",

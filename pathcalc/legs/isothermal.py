@@ -108,7 +108,8 @@ def solve(leg: Isothermal, run: LegRun) -> Outcome:
         else:
             work = -i["p_dv"] if against is None else -against * (b.v - a.v)
             heat = i["du"] - work
-        return Exchange(work, heat, heat / a.T)
+        reservoir = run.value("reservoir")
+        return Exchange(work, heat, heat / (a.T if reservoir is None else reservoir))
 
     reversible = against is None and efficiency is None
     return Outcome(b, [isotherm(a, b)], exchange, reversible)

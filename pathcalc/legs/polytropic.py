@@ -45,9 +45,7 @@ class PolytropicTo(OneOf):
     @model_validator(mode="after")
     def _independent(self) -> PolytropicTo:
         if self.v is not None and self.rho is not None:
-            raise_problems(
-                Problem("dependent-pair", "v and rho say the same; give one of them", ("rho",), True)
-            )
+            raise_problems(Problem("dependent-pair", "v and rho say the same; give one of them", ("rho",), True))
         return self
 
 
@@ -126,8 +124,8 @@ def solve(leg: Polytropic, run: LegRun) -> Outcome:
 def _end_of(run: LegRun, targets: dict[str, Array], n: Array) -> dict[str, Array]:
     """The pair (p, v) of the end from one target and the exponent."""
     import numpy as np
-    from pathcalc.equilibrium.flash import flash
 
+    from pathcalc.equilibrium.flash import flash
     from pathcalc.legs.integration.bracket import scanned_root
 
     a = run.inlet

@@ -10,9 +10,9 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
-from pathcalc.equilibrium.flash import flash
 
 from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p
 from pathcalc.legs.integration.bracket import bracketed_root
@@ -67,9 +67,7 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     factor = np.where(p >= a.p, 1.0 / efficiency, efficiency)
     goal = np.log(p)
     x = a.points.x
-    front = _Front(
-        np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p)
-    )
+    front = _Front(np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p))
     segments: list[Segment] = []
     start = a.points
     for _ in range(MAX_STRETCHES):
@@ -111,9 +109,7 @@ def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
     return inside
 
 
-def _in_one_phase(
-    run: LegRun, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points
-) -> Segment:
+def _in_one_phase(run: LegRun, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points) -> Segment:
     model = run.model
     y_a, y_b = front.y[lanes], goal[lanes].copy()
     initial = np.stack([front.T[lanes], front.v[lanes]])
@@ -247,7 +243,9 @@ def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lan
     front.x[lanes] = np.where(leaves, np.where(dry, 1.0, 0.0), end.x)
     front.open[lanes] = leaves & ~bad
     front.into_dome[lanes] = False
-    return Segment(DomeCurve(solution), take_points(start, lanes), take_points(start, lanes), lanes=lanes, region="dome")
+    return Segment(
+        DomeCurve(solution), take_points(start, lanes), take_points(start, lanes), lanes=lanes, region="dome"
+    )
 
 
 def _points_at(model: Model, front: _Front) -> Points:
@@ -269,8 +267,6 @@ def _with_end(segments: list[Segment], front: _Front, end: Place) -> list[Segmen
     for segment in reversed(segments):
         assert segment.lanes is not None
         b = take_points(following, segment.lanes)
-        finished.append(
-            Segment(segment.family, segment.a, b, own=True, lanes=segment.lanes, region=segment.region)
-        )
+        finished.append(Segment(segment.family, segment.a, b, own=True, lanes=segment.lanes, region=segment.region))
         following = replace_points(following, segment.lanes, segment.a)
     return finished[::-1]

@@ -8,10 +8,10 @@ from typing import TYPE_CHECKING, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
-from pathcalc.equilibrium.flash import flash
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
+from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.reasons import REASONS
 from pathcalc.errors import Trouble

@@ -34,7 +34,9 @@ def basis_of(solution: Solution) -> Basis:
             constants.append(Constant(symbol, text, item.value, unit, source))
     info = model.info
     assert info is not None
-    parameters = tuple(Constant(p.symbol, "parameter of the equation", p.value, p.unit, p.source) for p in info.parameters)
+    parameters = tuple(
+        Constant(p.symbol, "parameter of the equation", p.value, p.unit, p.source) for p in info.parameters
+    )
     ideal = model.ideal
     form = getattr(ideal, "form", "given")
     source = getattr(ideal, "source", "")

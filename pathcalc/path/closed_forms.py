@@ -41,7 +41,7 @@ def _constants(solution: Solution) -> tuple[float, float, float]:
     model = solution.path.model
     M = model.M
     a, b = 0.0, 0.0
-    if model.equation == "van-der-waals":
+    if model.equation == "van-der-waals" and model.info is not None:
         parameters = {p.symbol: p.value for p in model.info.parameters}
         a, b = parameters["a_c"] / M**2, parameters["b"] / M
     return model.R / M, a, b
@@ -87,9 +87,7 @@ def _energy(solution: Solution, solved: SolvedLeg) -> Step:
     numbers = shown(caloric, "energy")
     if a > 0.0:
         formula += r"-a_c\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
-        numbers += (
-            rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
-        )
+        numbers += rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
     return Step(
         title="Closed form of this equation",
         formula=formula,
@@ -115,15 +113,11 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
     value = -R * T * float(np.log((v2 - b) / (v1 - b)))
     if real:
         formula += r"-a_c\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
-        numbers += (
-            rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
-        )
+        numbers += rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
         value -= a * (1.0 / v2 - 1.0 / v1)
         if solution.path.setting.flow:
             formula += r"+p_2\,v_2-p_1\,v_1"
-            numbers += (
-                rf"+{shown(p2, 'p')}\times {number(v2)}-{signed(p1 * 1e-3)}\times {number(v1)}"
-            )
+            numbers += rf"+{shown(p2, 'p')}\times {number(v2)}-{signed(p1 * 1e-3)}\times {number(v1)}"
             value += p2 * v2 - p1 * v1
     return [
         Step("Closed form of this equation", formula, numbers, with_unit(value, "energy"), source=_source(solution))

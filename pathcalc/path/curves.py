@@ -64,12 +64,12 @@ def _in_dome(path: SolvedPath, piece: Piece, k: int) -> tuple[Array, ...]:
         v = ends.v_a[k] + x * (ends.v_b[k] - ends.v_a[k])
     else:
         lane = piece.local[np.array([k], dtype=np.intp)]
-        columns = (Side(*(a[:, None] for a in side)) for side in (liquid, vapour))
-        v = piece.family.dome_volume(*columns, lane)[:, 0]
+        low, high = (Side(*(a[:, None] for a in side)) for side in (liquid, vapour))
+        v = piece.family.dome_volume(low, high, lane)[:, 0]
     quality = (v - liquid.v) / (vapour.v - liquid.v)
 
     def mixed(low: Array, high: Array) -> Array:
-        return (1.0 - quality) * low + quality * high
+        return np.asarray((1.0 - quality) * low + quality * high)
 
     return (
         T,

@@ -136,9 +136,7 @@ def _energy(solution: Solution, solved: SolvedLeg, key: str) -> list[Step]:
         rf"-{shown(a.p, 'p')}\times {number(a.v)}",
         result=with_unit(leg["delta"]["u"] + b.p * b.v - a.p * a.v, "energy"),
     )
-    first = _route_1(
-        solution, solved, "h", r"\Delta h=\int\left(T\,\mathrm{d}s+v\,\mathrm{d}p\right)", None
-    )
+    first = _route_1(solution, solved, "h", r"\Delta h=\int\left(T\,\mathrm{d}s+v\,\mathrm{d}p\right)", None)
     return [*first, step, _route_2(solution, solved, "h")]
 
 
@@ -321,11 +319,12 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
             ("entropy", True): r"\mathrm{kW/K}",
             ("entropy", False): r"\mathrm{kJ/K}",
         }[(kind, flow)]
-        amount = rf"\dot m" if flow else "m"
+        amount = r"\dot m" if flow else "m"
         found[f"totals.{key}"] = [
             Step(
                 title="Sum over the legs",
-                formula=rf"{amount}\sum_i {symbol}_i" if not symbol.startswith("s_") and not symbol.startswith("e_")
+                formula=rf"{amount}\sum_i {symbol}_i"
+                if not symbol.startswith("s_") and not symbol.startswith("e_")
                 else rf"{amount}\sum_i \left({symbol}\right)_i",
                 numbers=rf"{number(mass)}\times\left(" + "+".join(bracketed(p, kind) for p in parts) + r"\right)",
                 result=rf"{signed(solution.totals[key] * 1e-3)}\ {unit}".replace("(", "").replace(")", ""),

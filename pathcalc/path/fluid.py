@@ -17,7 +17,6 @@ if TYPE_CHECKING:
     from pathcalc.quantities.values import Quantity
 
 
-
 def card_of(case: Case) -> Card:
     """The substance card of a case: built in, or the user's own."""
     fluid = case.fluid
@@ -94,5 +93,3 @@ def _check_correlation(case: Case, card: Card, name: str) -> None:
         where = _place(case, "fluid", "heat_capacity", "correlation")
         text = f"the card of {card.name} has no heat capacity {name!r}; it has {', '.join(known)}"
         raise InvalidCaseError([Finding(*where, text, "unknown-name")])
-
-

@@ -73,7 +73,9 @@ def _shaped(value: Any, shape: tuple[int, ...], scalar: bool) -> Any:
     return value.reshape(shape)
 
 
-def fluid(name: str | Path, equation: str = "peng-robinson", datum: str = "ideal-gas-298", **options: Any) -> FluidHandle:
+def fluid(
+    name: str | Path, equation: str = "peng-robinson", datum: str = "ideal-gas-298", **options: Any
+) -> FluidHandle:
     """A built-in substance (by name) or a card file with an equation of state.
 
     ``options`` are those of :func:`pathcalc.equations.build.build_model` (``heat_capacity``, ``volume_shift``, …),

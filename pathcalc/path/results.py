@@ -42,8 +42,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
         "amount": {"value": mass, "unit": "kg/s" if flow else "kg"},
         "surroundings": {"T": float(setting.T0[0]), "p": float(setting.p0[0])},
         "states": [
-            {"name": name, **{key: plain(state[key]) for key in STATE_KEYS}}
-            for name, state in solution.states.items()
+            {"name": name, **{key: plain(state[key]) for key in STATE_KEYS}} for name, state in solution.states.items()
         ],
         "legs": [_leg(solution, name) for name in solution.legs],
         "totals": {

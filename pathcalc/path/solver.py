@@ -54,9 +54,7 @@ class SolvedPath:
     legs: tuple[SolvedLeg, ...]
 
 
-def solve_path(
-    case: Case, lanes: Mapping[str, Any] | None = None, equation: str | None = None
-) -> SolvedPath:
+def solve_path(case: Case, lanes: Mapping[str, Any] | None = None, equation: str | None = None) -> SolvedPath:
     """Solve a case; ``lanes`` maps addresses to arrays of one length, SI per kilogram (see :func:`pathcalc.solve`).
 
     A lane that fails is marked in ``setting.status`` and never stops the others. Raises UsageError for lanes that

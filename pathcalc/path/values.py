@@ -6,6 +6,7 @@ from collections.abc import Iterator, Mapping
 from typing import Any, TypeAlias
 
 import numpy as np
+from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array
 from pathcalc.equilibrium.points import PHASES
@@ -89,7 +90,12 @@ def state_values(path: SolvedPath, name: str, place: Place, dead: Place) -> dict
                 value = getattr(states, key)
                 if key in PER_MASS:
                     value = value / M
-            values[key] = np.where(path.setting.status.ok, value, None if key == "phase" else np.nan)
+            ok = path.setting.status.ok
+            values[key] = (
+                np.array([name if good else None for name, good in zip(value, ok, strict=True)], dtype=object)
+                if key == "phase"
+                else np.where(ok, value, np.nan)
+            )
     return values
 
 
@@ -133,7 +139,7 @@ def leg_values(path: SolvedPath, solved: SolvedLeg) -> dict[str, Any]:
     return _blank(values, setting.status.ok)
 
 
-def _blank(values: dict[str, Any], ok: Array) -> dict[str, Any]:
+def _blank(values: dict[str, Any], ok: NDArray[np.bool_]) -> dict[str, Any]:
     blanked: dict[str, Any] = {}
     for key, value in values.items():
         if isinstance(value, dict):
@@ -172,7 +178,8 @@ def rounding_of(path: SolvedPath, solved: SolvedLeg) -> Array:
     a, b = solved.inlet, solved.end
     sizes = np.stack([np.abs(a.s) + np.abs(b.s), np.abs(a.u) + np.abs(b.u), np.abs(a.h) + np.abs(b.h)])
     kinetic = path.model.R * np.stack([np.ones_like(a.T), a.T + b.T, a.T + b.T])
-    return 64.0 * np.finfo(float).eps * ((sizes + kinetic) / scales(path, solved)).max(axis=0)
+    rounding: Array = 64.0 * np.finfo(float).eps * ((sizes + kinetic) / scales(path, solved)).max(axis=0)
+    return rounding
 
 
 def piece_values(path: SolvedPath, solved: SolvedLeg, lane: int) -> list[dict[str, Any]]:
@@ -204,7 +211,7 @@ def piece_phase(path: SolvedPath, piece: Any, k: int) -> str:
     ends = piece.ends
     T = 0.5 * (float(ends.T_a[k]) + float(ends.T_b[k]))
     v = float(np.sqrt(ends.v_a[k] * ends.v_b[k]))
-    if T >= model.T_c:
+    if model.T_c <= T:
         p = float(model.residual.pressure(np.array([T]), np.array([v])).p[0])
         return "supercritical" if p >= model.p_c else "gas"
     return "liquid" if v < model.v_c else "vapour"

@@ -1,7 +1,7 @@
 """What a reader must know beside the numbers: ranges left, phases, shortcomings of the equation.
 
-Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic, virial-dense,
-quantum-gas, datum-dependent, no-dead-state, check-failed, comparison-failed, unsourced-inputs.
+Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
+virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed.
 """
 
 from __future__ import annotations

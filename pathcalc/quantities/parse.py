@@ -11,14 +11,13 @@ from typing import Any, Literal
 
 from pathcalc.quantities.limits import POSITIVE, implausible
 from pathcalc.quantities.units import ATM, UNITS, Unit, advice, spellings
-from pathcalc.quantities.values import Quantity, Relative
+from pathcalc.quantities.values import Quantity
 
 _NUMBER = re.compile(r"[-+]?(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][-+]?[0-9]+)?")
 _NOT_FINITE = re.compile(r"[-+]?\.?(?:nan|inf|infinity)\b.*", re.IGNORECASE)
 
 Shape = Literal["normal", "rectangular", "triangular"]
 QUANTITY_KEYS = ("value", "u", "U", "k", "half_width", "shape", "source", "note")
-RELATIVE_KEYS = ("ratio", "rise", "drop", "same_as")
 
 EXAMPLE = {
     "pressure": "4.5 barg", "pressure-difference": "0.15 bar", "temperature": "35 degC",
@@ -84,9 +83,7 @@ def split(text: str) -> tuple[float, str]:
         if _NOT_FINITE.fullmatch(stripped):
             raise QuantityError(Problem("bad-number", f"{stripped!r} is not a finite number"))
         if stripped[:1] in ("−", "–", "—"):
-            raise QuantityError(
-                Problem("bad-number", f"{stripped!r} begins with a dash; write a minus sign -")
-            )
+            raise QuantityError(Problem("bad-number", f"{stripped!r} begins with a dash; write a minus sign -"))
         raise QuantityError(Problem("bad-quantity", f"{stripped!r} does not begin with a number"))
     number, rest = float(match.group()), stripped[match.end() :]
     if re.match(r"[,_'][0-9]", rest):
@@ -149,9 +146,7 @@ def _mismatch(spelling: str, unit: Unit, dimensions: Collection[str]) -> Problem
             f"{spelling} is a volume at unknown conditions; "
             f"write {wanted(dimensions)}, or a normal volume such as 100 Nm3/h",
         )
-    return Problem(
-        "wrong-dimension", f"{spelling} is {_article(_named(unit.dimension))}; write {wanted(dimensions)}"
-    )
+    return Problem("wrong-dimension", f"{spelling} is {_article(_named(unit.dimension))}; write {wanted(dimensions)}")
 
 
 def _deg(spelling: str) -> str:
@@ -166,9 +161,7 @@ def to_si(number: str, unit: Unit, ambient: float = ATM) -> float:
     return float(exact)
 
 
-def parse_text(
-    text: str, dimensions: Collection[str], *, ambient: float = ATM, any_sign: bool = False
-) -> Quantity:
+def parse_text(text: str, dimensions: Collection[str], *, ambient: float = ATM, any_sign: bool = False) -> Quantity:
     """Quantity of a scalar's text, of one of the dimensions; ``ambient`` (Pa) is the zero of gauge pressures.
 
     Raises QuantityError: bad-number, bad-quantity, bad-unit, missing-unit, wrong-dimension, implausible.
@@ -195,9 +188,7 @@ def parse_text(
 
 def difference_of(dimension: str) -> str:
     """Dimension of a difference of two values of ``dimension``."""
-    return {"temperature": "temperature-difference", "pressure": "pressure-difference"}.get(
-        dimension, dimension
-    )
+    return {"temperature": "temperature-difference", "pressure": "pressure-difference"}.get(dimension, dimension)
 
 
 def nearest(name: str, known: Collection[str], tail: str = "") -> str:
@@ -275,9 +266,7 @@ def _spread(data: Mapping[str, Any], base: Quantity | None, problems: list[Probl
         return {}
     shape = data["shape"]
     if shape not in ("rectangular", "triangular"):
-        problems.append(
-            Problem("unknown-name", f"shape is rectangular or triangular, not {shape!r}", ("shape",))
-        )
+        problems.append(Problem("unknown-name", f"shape is rectangular or triangular, not {shape!r}", ("shape",)))
         return {}
     return {"u": spread.value / math.sqrt(3 if shape == "rectangular" else 6), "shape": str(shape)}
 
@@ -320,18 +309,14 @@ def unknown_source(name: str, sources: Collection[str], at: tuple[str, ...] = ()
     """Problem of a source id that is not in record.sources."""
     if not sources:
         return Problem("unknown-source", f"source {name!r} is not in record.sources, which is empty", at)
-    return Problem(
-        "unknown-source", f"source {name!r} is not in record.sources; {nearest(name, sources)}", at
-    )
+    return Problem("unknown-source", f"source {name!r} is not in record.sources; {nearest(name, sources)}", at)
 
 
 def parse(value: Any, dimensions: Collection[str], **more: Any) -> Quantity:
     """Quantity of a scalar (text or number) or a mapping; raises QuantityError."""
     if isinstance(value, Quantity):
         if value.dimension not in dimensions:
-            raise QuantityError(
-                Problem("wrong-dimension", f"a {value.dimension} is given; write {wanted(dimensions)}")
-            )
+            raise QuantityError(Problem("wrong-dimension", f"a {value.dimension} is given; write {wanted(dimensions)}"))
         return value
     text = _scalar_text(value)
     if text is not None:
@@ -340,48 +325,3 @@ def parse(value: Any, dimensions: Collection[str], **more: Any) -> Quantity:
     if isinstance(value, Mapping):
         return parse_mapping(value, dimensions, **more)
     raise QuantityError(Problem("wrong-type", f"write {wanted(dimensions)}, not a list"))
-
-
-def _moved(at: tuple[str, ...], kind: str, beside: Collection[str]) -> tuple[str, ...]:
-    return at if at and at[0] in beside else (kind, *(at[1:] if beside and at[:1] == ("value",) else at))
-
-
-def parse_relative(
-    data: Mapping[str, Any], dimensions: Collection[str], ratio: bool, **more: Any
-) -> Relative:
-    """Relative target of a mapping with one of ratio, rise, drop, same_as; raises QuantityError."""
-    keys = list(data)
-    kind = next(k for k in keys if k in RELATIVE_KEYS)
-    value = data[kind]
-    beside = {k: data[k] for k in ("source", "note") if k in data and kind != "same_as"}
-    if len(keys) > 1 + len(beside):
-        other = next(k for k in keys if k != kind and k not in beside)
-        raise QuantityError(Problem("one-of", f"{kind} stands alone; remove {other!r}", (other,), True))
-    if kind == "same_as":
-        if not isinstance(value, str):
-            raise QuantityError(Problem("wrong-type", "same_as holds the name of an earlier state", (kind,)))
-        return Relative("same_as", None, str(value))
-    if kind == "ratio" and not ratio:
-        raise QuantityError(
-            Problem(
-                "one-of",
-                "ratio has no meaning where the zero is a convention; use rise or drop",
-                (kind,),
-                True,
-            )
-        )
-    meant = ("fraction",) if kind == "ratio" else tuple(difference_of(d) for d in dimensions)
-    more = {k: v for k, v in more.items() if k != "any_sign"}
-    if beside and not isinstance(value, Quantity):
-        value = {**(value if isinstance(value, Mapping) else {"value": value}), **beside}
-    try:
-        amount = parse(value, meant, any_sign=True, **more)
-    except QuantityError as error:
-        raise QuantityError(*(replace(p, at=_moved(p.at, kind, beside)) for p in error.problems)) from None
-    if amount.value <= 0:
-        if kind == "ratio":
-            raise QuantityError(Problem("out-of-range", "ratio must be above 0", (kind,)))
-        if amount.value < 0:
-            other = "drop" if kind == "rise" else "rise"
-            raise QuantityError(Problem("out-of-range", f"{kind} must not be negative; use {other}", (kind,)))
-    return Relative("ratio" if kind == "ratio" else "rise" if kind == "rise" else "drop", amount)

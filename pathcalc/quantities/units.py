@@ -14,6 +14,7 @@ from typing import Literal
 
 SI = "BIPM, The International System of Units (SI Brochure), 9th edition, 2019"
 SP811 = "Thompson and Taylor, Guide for the Use of the International System of Units, NIST SP 811, 2008, B.8"
+DIN1343 = "DIN 1343:1990, Reference conditions, normal conditions, normal volume"
 ISO13443 = "ISO 13443:1996, Natural gas: standard reference conditions"
 USUAL = "common practice, no source: the reference condition is stated in the description of the format"
 
@@ -67,7 +68,7 @@ _VOLUME = {
     "ft3": (FT**3, SP811), "in3": (INCH**3, SP811), "gal_US": (231 * INCH**3, SP811),
 }  # fmt: skip
 _NORMAL = {
-    "Nm3": (_moles(1.0, 273.15, 101325.0), ISO13443),
+    "Nm3": (_moles(1.0, 273.15, 101325.0), DIN1343),
     "Sm3": (_moles(1.0, 288.15, 101325.0), ISO13443),
     "scf": (_moles(FT**3, 288.70555555555555, 14.696 * PSI), USUAL),
 }
@@ -243,9 +244,7 @@ def advice(spelling: str) -> str:
         return _SAID[flat]
     if flat.lower() in _SAID:
         return _SAID[flat.lower()]
-    loose = re.fullmatch(
-        r"(m?bar|[kM]?Pa|psi)\s*[(\[ _]?\s*(g|a|ga|abs|gauge|gage)\s*[)\]]?", flat, re.IGNORECASE
-    )
+    loose = re.fullmatch(r"(m?bar|[kM]?Pa|psi)\s*[(\[ _]?\s*(g|a|ga|abs|gauge|gage)\s*[)\]]?", flat, re.IGNORECASE)
     if loose:
         base = next(b for b in _PRESSURE if b.lower() == loose.group(1).lower())
         return f"write {base}{loose.group(2)[0].lower()}"

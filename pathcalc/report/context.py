@@ -98,9 +98,7 @@ class Context:
         self._figures += 1
         return self._figures
 
-    def table(
-        self, caption: str, columns: Sequence[Column], rows: Iterable[Sequence[Cell]], head: int = 0
-    ) -> Table:
+    def table(self, caption: str, columns: Sequence[Column], rows: Iterable[Sequence[Cell]], head: int = 0) -> Table:
         """A numbered table whose numeric columns are lined up at the decimal point."""
         grid = [list(row) for row in rows]
         for i, column in enumerate(columns):
@@ -137,9 +135,7 @@ class Context:
         if head in ("totals", "cycle"):
             places: list[Any] = [self.result.get(head)]
         else:
-            places = [
-                next((x for x in group if x["name"] == head), None) for group in (self.legs, self.states)
-            ]
+            places = [next((x for x in group if x["name"] == head), None) for group in (self.legs, self.states)]
         for place in places:
             for key in keys:
                 place = place.get(key) if isinstance(place, Mapping) else None

@@ -93,9 +93,7 @@ class Drawing:
         parts = [line[axis] for line in self.lines] + [np.array([p[axis] for p in self.points], dtype=float)]
         dome = self._dome()
         if dome is not None and self._touches():
-            lowest = min(
-                float(np.nanmin(p.p)) for c in self.ctx.solution.curves for p in c.pieces if p.p.size
-            )
+            lowest = min(float(np.nanmin(p.p)) for c in self.ctx.solution.curves for p in c.pieces if p.p.size)
             keep = np.asarray(self.ctx.solution.dome.p) >= lowest  # type: ignore[union-attr]
             mask = np.concatenate([keep, [True], keep[::-1]])
             parts.append(dome[axis][mask])
@@ -104,9 +102,7 @@ class Drawing:
 
     def _is_log(self, key: str, axis: int) -> bool:
         values = self._values(axis)
-        return (
-            key in "pv" and values.size > 0 and values.min() > 0 and values.max() / values.min() > _LOG_FROM
-        )
+        return key in "pv" and values.size > 0 and values.min() > 0 and values.max() / values.min() > _LOG_FROM
 
     def _limits(self, axis: int, log: bool) -> tuple[float, float]:
         values = self._values(axis)
@@ -230,8 +226,7 @@ class Drawing:
         from matplotlib.lines import Line2D
 
         handles = [
-            Line2D([], [], label=name, **self._style(i))
-            for i, name in enumerate(self._names()[: len(self.lines)])
+            Line2D([], [], label=name, **self._style(i)) for i, name in enumerate(self._names()[: len(self.lines)])
         ]
         if self.dome_shown:
             handles.append(Line2D([], [], label=say("diagrams.dome"), color=_DOME, linewidth=0.9))

@@ -27,6 +27,7 @@ def environment() -> Environment:
         finalize=_finalize,
     )
     env.filters["math"] = maths.mathml
+    env.filters["lines"] = maths.mathml_lines
     env.filters["result"] = maths.result_html
     env.filters["symbol"] = symbol
     env.globals["say"] = say

@@ -51,9 +51,7 @@ def head(column: Column) -> str:
     parts = [textsafe.markdown(column.words)]
     if column.symbol:
         base, _, below = column.symbol.partition("_")
-        parts.append(
-            f"*{textsafe.markdown(base)}*" + (f"<sub>{textsafe.markdown(below)}</sub>" if below else "")
-        )
+        parts.append(f"*{textsafe.markdown(base)}*" + (f"<sub>{textsafe.markdown(below)}</sub>" if below else ""))
     text = " ".join(parts)
     return f"{text}, {textsafe.markdown(column.unit)}" if column.unit else text
 

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import html
+import math
 import re
+from collections.abc import Iterator
 from functools import lru_cache
 from xml.etree import ElementTree
 
@@ -76,6 +78,9 @@ _ATTRIBUTES = frozenset(
     ]
 )
 _ROMAN = re.compile(r"&#x000([46][0-9A-F]|[57][0-9A]);")
+_LONG = 48
+_SIGNS = frozenset("−+±")
+_OPENERS = frozenset("([{=≈<>≤≥×·+−/,;:")
 _NAMESPACE = "http://www.w3.org/1998/Math/MathML"
 _LATEX_SIGNS = re.compile(r"[\\^_{}]")
 
@@ -85,24 +90,62 @@ def mathml(latex: str, display: bool = False) -> Markup:
     return Markup(_mathml(latex, display))
 
 
+def mathml_lines(latex: str) -> Markup:
+    """A formula that may break before its plus and minus signs, as several MathML elements where it is long."""
+    return Markup(_mathml(latex, True, _LONG))
+
+
 @lru_cache(maxsize=2048)
-def _mathml(latex: str, display: bool) -> str:
+def _mathml(latex: str, display: bool, longest: float = math.inf) -> str:
     source = clean(latex)
     try:
         from latex2mathml.converter import convert_to_element
 
         tree = convert_to_element(source, display="block" if display else "inline")
         _tidy(tree)
-        body = ElementTree.tostring(tree, encoding="unicode")
+        if len("".join(tree.itertext())) > longest:
+            return "<wbr>".join(_serialised(part) for part in _parts(tree))
+        body = _serialised(tree)
     except Exception:  # any failure of the converter has the same remedy: show the source
         return f'<code class="latex">{escape(source)}</code>'
     return body
 
 
+def _serialised(tree: ElementTree.Element) -> str:
+    return ElementTree.tostring(tree, encoding="unicode")
+
+
+def _parts(tree: ElementTree.Element) -> list[ElementTree.Element]:
+    """The top row cut before every binary plus and minus."""
+    parts = [_part()]
+    for node in _flat(tree):
+        if node.tag == "mo" and node.text in _SIGNS and node.get("form") != "prefix" and len(parts[-1][0]):
+            parts.append(_part())
+            node.set("form", "infix")
+        parts[-1][0].append(node)
+    return parts
+
+
+def _flat(row: ElementTree.Element) -> Iterator[ElementTree.Element]:
+    """The nodes of a row, long rows within it opened up."""
+    for node in row:
+        if node.tag == "mrow" and len("".join(node.itertext())) > _LONG // 2:
+            yield from _flat(node)
+        else:
+            yield node
+
+
+def _part() -> ElementTree.Element:
+    part = ElementTree.Element("math", {"xmlns": _NAMESPACE, "display": "inline", "displaystyle": "true"})
+    ElementTree.SubElement(part, "mrow")
+    return part
+
+
 def _tidy(tree: ElementTree.Element) -> None:
     tree.attrib.pop("xmlns", None)
     tree.set("xmlns", _NAMESPACE)
-    for node in tree.iter():
+    nodes = list(tree.iter())
+    for node in nodes:
         if node.tag not in _TAGS:
             raise ValueError(f"unexpected element {node.tag!r}")
         if node.tag == "mi" and node.text and _ROMAN.fullmatch(node.text):
@@ -116,6 +159,19 @@ def _tidy(tree: ElementTree.Element) -> None:
             node.text = html.unescape(node.text)
             if node.tag != "mtext" and node.text.startswith("\\"):
                 raise ValueError(f"unknown command {node.text!r}")
+    for node in nodes:
+        _signs(node)
+
+
+def _signs(row: ElementTree.Element) -> None:
+    """Mark signs that are no subtraction, as in ``(-3)``, so that no space is set after them."""
+    before = ""
+    for node in row:
+        text = node.text or ""
+        if node.tag == "mo" and text in _SIGNS and (not before or before in _OPENERS):
+            node.set("form", "prefix")
+        if node.tag != "mspace":
+            before = text if node.tag == "mo" else "operand"
 
 
 def is_latex(text: str) -> bool:

@@ -48,8 +48,7 @@ WORDS: Final[dict[str, str]] = {
     "verdict.side.min": "at least",
     "verdict.side.max": "at most",
     "verdict.checks.passed": "{n} of {n} of the program’s own checks passed.",
-    "verdict.checks.failed": "{failed} of {n} of the program’s own checks failed: {names}. Do not use the "
-    "results.",
+    "verdict.checks.failed": "{failed} of {n} of the program’s own checks failed: {names}. Do not use the results.",
     "verdict.checks.none": "No checks were recorded.",
     "verdict.warnings.none": "No warnings.",
     "verdict.warnings.one": "1 warning; it stands at the head of the results.",
@@ -105,8 +104,7 @@ WORDS: Final[dict[str, str]] = {
     "default.amount": "no amount is given",
     "default.amount.value": "totals are not worked out",
     "default.boundary_temperature": "temperature at which heat crosses the boundary",
-    "default.boundary_temperature.value": "the fluid’s own (so heat transfer itself generates no entropy "
-    "here)",
+    "default.boundary_temperature.value": "the fluid’s own (so heat transfer itself generates no entropy here)",
     "default.units": "units of this document",
     # fluid
     "fluid.title": "Fluid and equation of state",
@@ -191,10 +189,8 @@ WORDS: Final[dict[str, str]] = {
     "checks.passed": "passed",
     "checks.failed": "failed",
     "checks.maxwell": "Maxwell integrals",
-    "checks.caption.maxwell": "Changes integrated along each leg (route 1), error estimate, closure against "
-    "route 2",
-    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration "
-    "turns",
+    "checks.caption.maxwell": "Changes integrated along each leg (route 1), error estimate, closure against route 2",
+    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration turns",
     "checks.error": "Error estimates are those of the quadrature, kept apart from the uncertainty of inputs "
     "and of the equation of state. Error and closure are relative: the largest of the three integrals’, "
     "each against the size of its integrand along the leg.",
@@ -245,8 +241,7 @@ WORDS: Final[dict[str, str]] = {
     "caution.cold.text": "The fluid goes down to {T}. Carbon steels and elastomers turn brittle; bare "
     "surfaces burn skin. Check the minimum design metal temperature.",
     "caution.air": "Condensing air",
-    "caution.air.text": "Below about −183 °C air condenses on bare surfaces, and the liquid is rich in "
-    "oxygen.",
+    "caution.air.text": "Below about −183 °C air condenses on bare surfaces, and the liquid is rich in oxygen.",
     "caution.hot": "Hot surfaces",
     "caution.hot.text": "The fluid reaches {T}. Guard or insulate what people can touch.",
     "caution.trapped": "Trapped liquid",
@@ -259,8 +254,7 @@ WORDS: Final[dict[str, str]] = {
     "caution.flammable.text": "Leaks burn or explode. Ignition sources, ventilation, hazardous areas and "
     "relief disposal are settled under local rules.",
     "caution.toxic": "Toxic",
-    "caution.toxic.text": "Exposure limits, detection, containment and relief disposal are settled under "
-    "local rules.",
+    "caution.toxic.text": "Exposure limits, detection, containment and relief disposal are settled under local rules.",
     "caution.hydrogen": "Hydrogen",
     "caution.hydrogen.text": "It leaks readily, burns with a flame that is hard to see, and embrittles "
     "steels: materials and joints are chosen for the service.",
@@ -273,8 +267,7 @@ WORDS: Final[dict[str, str]] = {
     "caution.asphyxiant.text": "A leak or vent displaces oxygen without warning. Ventilate, and measure "
     "oxygen before entry.",
     "caution.corrosive": "Corrosive",
-    "caution.corrosive.text": "Materials and seals are chosen for the fluid and the temperatures of this "
-    "path.",
+    "caution.corrosive.text": "Materials and seals are chosen for the fluid and the temperatures of this path.",
     "caution.none": "No particular caution follows from the fluid or the states; local rules still apply.",
     # provenance
     "made.title": "What produced this document",

@@ -123,9 +123,7 @@ def test_cycles_end(top: Path) -> None:
     write(top / "shared" / "b.yaml", "include: a.yaml")
     (line, *_) = refused(main(top, "../shared/a.yaml"))
     cycle = [s for s in refused(main(top, "../shared/a.yaml")) if "include-cycle" in s]
-    assert cycle == [
-        "shared/b.yaml:1:10: error: included file 'a.yaml' includes itself in the end (include-cycle)"
-    ]
+    assert cycle == ["shared/b.yaml:1:10: error: included file 'a.yaml' includes itself in the end (include-cycle)"]
     assert line
 
 

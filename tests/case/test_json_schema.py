@@ -69,9 +69,7 @@ def nodes(schema: Any) -> list[dict[str, Any]]:
 
 
 def test_every_key_is_described_and_has_an_example() -> None:
-    models = [SCHEMA] + [
-        d for name, d in SCHEMA["$defs"].items() if not name.startswith(("quantity--", "text--"))
-    ]
+    models = [SCHEMA] + [d for name, d in SCHEMA["$defs"].items() if not name.startswith(("quantity--", "text--"))]
     for model in models:
         for key, prop in model.get("properties", {}).items():
             plain = key in ("name", "path", "to", "legs") or "examples" in prop

@@ -47,9 +47,7 @@ def test_whole_case() -> None:
     case = load(WHOLE, root=WHOLE.parent)
     assert (case.id, case.title) == ("whole", "Nitrogen purge booster, two stages with an intercooler")
     assert case.record.date == "2026-03-02"
-    assert case.record.purpose == (
-        "Discharge temperatures, cooler duty and shaft power for the booster data sheet."
-    )
+    assert case.record.purpose == ("Discharge temperatures, cooler duty and shaft power for the booster data sheet.")
     assert (case.fluid.substance, case.fluid.equation) == ("nitrogen", "peng-robinson")
     assert case.surroundings.p.value == 101300.0
     assert (case.surroundings.T_given, case.surroundings.p_given) == (True, True)
@@ -164,9 +162,7 @@ def test_amounts_of_a_closed_mass(amount: str, dimension: str) -> None:
 
 
 def test_aliases_are_followed() -> None:
-    case = loads(
-        SMALL.replace("{p: 2 bar}", "&there {p: 2 bar}") + "  - {name: b, path: throttling, to: *there}\n"
-    )
+    case = loads(SMALL.replace("{p: 2 bar}", "&there {p: 2 bar}") + "  - {name: b, path: throttling, to: *there}\n")
     assert case.legs[1].to.given()["p"].value == 2e5  # type: ignore[attr-defined]
 
 

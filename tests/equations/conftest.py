@@ -26,7 +26,7 @@ def cubic_model(request: pytest.FixtureRequest) -> Model:
     return build_model(read_card("propane"), request.param, volume_shift=4e-6)
 
 
-@pytest.fixture()
+@pytest.fixture
 def octane() -> Callable[[str], Model]:
     """n-octane with the constants of the worked examples of Y. V. C. Rao (Tc 569.4 K, pc 24.97 bar, ω 0.398)."""
     card = read_card("octane")

@@ -10,7 +10,7 @@ from hypothesis import strategies as st
 
 from pathcalc.case.codes import CODES
 from pathcalc.quantities import ATM, UNITS, Quantity, QuantityError, convert, parse, parse_text
-from pathcalc.quantities.parse import parse_relative
+from pathcalc.quantities.relative import parse_relative
 from pathcalc.quantities.units import advice, spellings
 
 
@@ -197,9 +197,7 @@ def test_relative_targets() -> None:
 
 
 def test_a_relative_target_may_name_its_source() -> None:
-    target = parse_relative(
-        {"ratio": "3.1", "source": "lab", "note": "n"}, ("pressure",), True, sources=["lab"]
-    )
+    target = parse_relative({"ratio": "3.1", "source": "lab", "note": "n"}, ("pressure",), True, sources=["lab"])
     assert target.amount is not None
     assert (target.amount.value, target.amount.source, target.amount.note) == (3.1, "lab", "n")
     with pytest.raises(QuantityError) as caught:

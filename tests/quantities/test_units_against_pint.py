@@ -104,6 +104,6 @@ def test_normal_volumes_are_moles_of_ideal_gas(registry: pint.UnitRegistry, spel
 
 
 def test_molar_volumes_that_are_published() -> None:
-    """CODATA 2018 (Tiesinga et al., Rev. Mod. Phys. 93, 025010, 2021, table XXXI): 22.413 969 54… l/mol at
-    273.15 K and 101.325 kPa."""
+    """CODATA recommended values 2018 (Tiesinga et al., Rev. Mod. Phys. 93, 025010, 2021), molar volume of an
+    ideal gas at 273.15 K and 101.325 kPa: 22.413 969 54... e-3 m3/mol. The digits are from memory."""
     assert 1.0 / UNITS["Nm3"].factor == pytest.approx(22.41396954e-3, rel=1e-9)

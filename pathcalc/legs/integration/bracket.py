@@ -44,9 +44,7 @@ def bracketed_root(f: Callable[[Array], Array], low: Array, high: Array, rtol: f
             finished = (limit > 0.5) | (fa == 0.0)
             xi, phi = (a - b) / (c - b), (fa - fb) / (fc - fb)
             smooth = (phi * phi < xi) & ((1.0 - phi) ** 2 < 1.0 - xi)
-            quadratic = fa / (fb - fa) * (fc / (fb - fc)) + (c - a) / (b - a) * (fa / (fc - fa)) * (
-                fb / (fc - fb)
-            )
+            quadratic = fa / (fb - fa) * (fc / (fb - fc)) + (c - a) / (b - a) * (fa / (fc - fa)) * (fb / (fc - fb))
         best = np.where(done, best, closest)
         done = done | finished
         t = np.where(smooth & np.isfinite(quadratic), quadratic, 0.5)
@@ -58,25 +56,26 @@ def bracketed_root(f: Callable[[Array], Array], low: Array, high: Array, rtol: f
 def scanned_root(f: Callable[[Array], Array], start: Array, offsets: Array, rtol: float = 4e-16) -> Array:
     """Root of ``f`` nearest to ``start`` (n,), looked for at ``start + offsets`` outwards; NaN where none is met.
 
-    ``offsets`` ascend and hold 0. Values of ``f`` that are not finite end the search on that side.
+    ``offsets`` ascend and hold 0. A value of ``f`` that is not finite ends the search of its lane on that side.
     """
-    values = np.stack([f(start + step) for step in offsets])
     middle = int(np.argmin(np.abs(offsets)))
+    here = f(start)
+    edges = {True: (here, np.isfinite(here)), False: (here, np.isfinite(here))}
     low, high = np.full(start.shape, np.nan), np.full(start.shape, np.nan)
-    open_up = open_down = np.ones(start.shape, dtype=bool)
     for k in range(1, max(middle, offsets.size - 1 - middle) + 1):
         for up in (True, False):
             inner, outer = (middle + k - 1, middle + k) if up else (middle - k + 1, middle - k)
-            if not 0 <= outer < offsets.size:
+            last, open_ = edges[up]
+            if not 0 <= outer < offsets.size or not (open_ & np.isnan(low)).any():
                 continue
-            a, b = values[inner], values[outer]
-            usable = np.isfinite(a) & np.isfinite(b) & (open_up if up else open_down)
-            hit = usable & (a * b <= 0.0) & np.isnan(low)
+            value = f(start + offsets[outer])
+            open_ = open_ & np.isfinite(value)
+            hit = open_ & (last * value <= 0.0) & np.isnan(low)
             low = np.where(hit, start + offsets[inner], low)
             high = np.where(hit, start + offsets[outer], high)
-            if up:
-                open_up = open_up & usable
-            else:
-                open_down = open_down & usable
+            edges[up] = (value, open_)
     missing = np.isnan(low)
-    return np.where(missing, np.nan, bracketed_root(f, np.where(missing, start, low), np.where(missing, start, high), rtol))
+    if missing.all():
+        return low
+    root = bracketed_root(f, np.where(missing, start, low), np.where(missing, start, high), rtol)
+    return np.where(missing, np.nan, root)

@@ -67,9 +67,7 @@ def differentials(model: Model, nodes: Nodes) -> tuple[Array, Array, Array]:
     dh = T_ds + v_dp
     values = np.stack([T_ds / T, T_ds - p_dv, dh, p_dv, v_dp, T_ds, dh / T])
     h_size = heat_size + push_size
-    sizes = np.stack(
-        [heat_size / T, heat_size + np.abs(p_dv), h_size, np.abs(p_dv), push_size, heat_size, h_size / T]
-    )
+    sizes = np.stack([heat_size / T, heat_size + np.abs(p_dv), h_size, np.abs(p_dv), push_size, heat_size, h_size / T])
     slip = cv_error * np.abs(dT)
     zero = np.zeros_like(slip)
     inherited = np.stack([slip / T, slip, slip, zero, zero, slip, slip / T])

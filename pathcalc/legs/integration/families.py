@@ -179,7 +179,6 @@ class Isotherm:
         return {"T": ends.T_a, "v": np.sqrt(ends.v_a * ends.v_b)}
 
 
-
 @dataclass(frozen=True)
 class Isochore:
     """v constant (``v``, m3/mol, (lanes,)), T linear in x."""
@@ -213,7 +212,6 @@ class Isochore:
     def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
         """See :class:`Family`."""
         return {"T": 0.5 * (ends.T_a + ends.T_b), "v": ends.v_a}
-
 
 
 @dataclass(frozen=True)
@@ -251,7 +249,6 @@ class Constant:
         return {"v": np.sqrt(ends.v_a * ends.v_b), self.key: self.value[lanes]}
 
 
-
 @dataclass(frozen=True)
 class Polytrope:
     """p v^n constant, ln v linear in x; ``exponent`` and ``log_constant`` = ln p + n ln v, both (lanes,)."""
@@ -286,7 +283,6 @@ class Polytrope:
         """See :class:`Family`."""
         v = np.sqrt(ends.v_a * ends.v_b)
         return {"v": v, "p": np.exp(self.log_constant[lanes] - self.exponent[lanes] * np.log(v))}
-
 
 
 def _along_volume(
@@ -397,4 +393,3 @@ class HeatedWithDrop:
     def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
         """See :class:`Family`."""
         return {"p": 0.5 * (self.p_a + self.p_b)[lanes], "h": 0.5 * (self.h_a + self.h_b)[lanes]}
-

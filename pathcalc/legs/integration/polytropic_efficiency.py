@@ -48,12 +48,13 @@ def _integration_matrix() -> tuple[Array, Array]:
     matrix = np.linalg.solve(vandermonde.T, integrals.T).T
     gaps = z[:, None] - z[None, :]
     np.fill_diagonal(gaps, 1.0)
-    return matrix, 1.0 / gaps.prod(axis=1)
+    weights: Array = 1.0 / gaps.prod(axis=1)
+    return np.asarray(matrix, dtype=np.float64), weights
 
 
 def _accumulate(matrix: Array, values: Array) -> Array:
     """``matrix`` applied to the nodes of ``values`` (nodes, n), one term after the other in every lane."""
-    total = matrix[:, :1] * values[0]
+    total: Array = matrix[:, :1] * values[0]
     for j in range(1, values.shape[0]):
         total = total + matrix[:, j : j + 1] * values[j]
     return total
@@ -157,7 +158,7 @@ def dome_slopes(model: Model, factor: Array) -> Slopes:
         _, liquid, vapour = kept[0]
         quality = (unknown[0] - liquid.h) / (vapour.h - liquid.h)
         v = liquid.v + quality * (vapour.v - liquid.v)
-        return (factor * np.exp(y) * v)[None]
+        return np.asarray((factor * np.exp(y) * v)[None])
 
     return slopes
 
@@ -227,7 +228,8 @@ class DomeCurve:
     def dome_volume(self, liquid: Side, vapour: Side, lanes: Lanes) -> Array:
         """See :class:`Family`."""
         (h,) = self.solution.at(np.log(liquid.p), lanes)
-        return liquid.v + (h - liquid.h) / (vapour.h - liquid.h) * (vapour.v - liquid.v)
+        v: Array = liquid.v + (h - liquid.h) / (vapour.h - liquid.h) * (vapour.v - liquid.v)
+        return v
 
     def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
         """See :class:`Family`."""

@@ -99,9 +99,7 @@ def estimate(kronrod: Array, gauss: Array, spread: Array, magnitude: Array) -> A
     return np.maximum(error, 50.0 * EPS * magnitude)
 
 
-def integrate(
-    integrand: Integrand, quantities: int, lanes: int, floors: Array, rtol: float = 1e-11
-) -> Quadrature:
+def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, rtol: float = 1e-11) -> Quadrature:
     """Integrate over [0, 1] in every lane, halving the panels of a lane until its own error is small enough.
 
     ``integrand(x, lane)`` takes abscissas (15, k) and lane numbers (k,) and returns values, magnitudes and

@@ -7,13 +7,13 @@ from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
-from pathcalc.equilibrium.flash import flash
 
 from pathcalc.equations.contract import Array, Model
+from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
-from pathcalc.legs.integration.families import Ends, Family, Isotherm, Lanes
+from pathcalc.legs.integration.families import Ends, Family, HeatedWithDrop, Isotherm, Lanes, Polytrope
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
 from pathcalc.legs.integration.saturation_line import MARGIN, Cuts, SaturationLine, Side, sorted_cuts
 from pathcalc.legs.integration.two_phase import level_piece, sloping_piece
@@ -124,11 +124,16 @@ def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]
     return pieces
 
 
+_WARM = 1.25
+"""Lanes up to this multiple of the critical temperature are looked at where the temperature may dip between the ends."""
+
+
 def _may_meet_dome(model: Model, segment: Segment) -> NDArray[np.bool_]:
-    """Lanes of which at least a part lies below the critical temperature."""
+    """Lanes of which at least a part may lie below the critical temperature."""
     if not model.has_dome:
         return np.zeros(segment.a.T.shape, dtype=bool)
-    return np.minimum(segment.a.T, segment.b.T) < model.T_c
+    steady = not isinstance(segment.family, Polytrope | HeatedWithDrop) or segment.family.level_in_dome
+    return np.minimum(segment.a.T, segment.b.T) < model.T_c * (1.0 if steady else _WARM)
 
 
 def _progress(segment: Segment, side: Side, lane: Lanes) -> Array:

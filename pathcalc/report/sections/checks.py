@@ -12,6 +12,9 @@ from pathcalc.report.units import kind_of
 from pathcalc.report.view import Block, Cell, Column, Heading, Paragraph, Section, Table
 from pathcalc.report.words import say
 
+_ABREAST = 2
+"""Other equations in one table, so that it fits a printed page."""
+
 
 def section(ctx: Context) -> Section:
     """Checks and Maxwell integrals."""
@@ -97,6 +100,13 @@ def comparison(ctx: Context) -> Section | None:
     others: Sequence[Mapping[str, Any]] = ctx.result["comparison"]
     if not others:
         return None
+    blocks: list[Block] = [Paragraph(say("comparison.lead"))]
+    for i in range(0, len(others), _ABREAST):
+        blocks.append(_compared(ctx, others[i : i + _ABREAST]))
+    return Section("comparison", say("comparison.title"), tuple(blocks))
+
+
+def _compared(ctx: Context, others: Sequence[Mapping[str, Any]]) -> Table:
     addresses = list(dict.fromkeys(a for o in others for a in (o["quantities"] or {})))
     columns = [Column(say("col.quantity")), Column(say("col.unit"))]
     columns.append(Column(str(ctx.result["fluid"]["equation"]), numeric=True))
@@ -111,16 +121,10 @@ def comparison(ctx: Context) -> Section | None:
         for other in others:
             value = (other["quantities"] or {}).get(address)
             gap = None if value is None or own is None else value - own
-            row.append(
-                ctx.cell(kind, value) if value is not None else Cell(say("comparison.absent"), "absent")
-            )
+            row.append(ctx.cell(kind, value) if value is not None else Cell(say("comparison.absent"), "absent"))
             row.append(_gap(ctx, kind, own, gap))
         rows.append(row)
-    blocks = (
-        Paragraph(say("comparison.lead")),
-        ctx.table(say("comparison.caption"), columns, rows),
-    )
-    return Section("comparison", say("comparison.title"), blocks)
+    return ctx.table(say("comparison.caption"), columns, rows)
 
 
 def _gap(ctx: Context, kind: str, own: float | None, gap: float | None) -> Cell:

@@ -48,9 +48,7 @@ def _limits(ctx: Context) -> Outcome:
         return Outcome(label, say("verdict.limits.none"), "plain")
     missed = [x for x in limits if not x["passed"]]
     if missed:
-        names = ", ".join(
-            f"{x['quantity']} = {ctx.measure(kind_of(x['quantity']), x['value'])}" for x in missed
-        )
+        names = ", ".join(f"{x['quantity']} = {ctx.measure(kind_of(x['quantity']), x['value'])}" for x in missed)
         text = say("verdict.limits.missed", missed=len(missed), n=len(limits), names=names)
         return Outcome(label, text, "bad")
     text = say("verdict.limits.met", n=len(limits))

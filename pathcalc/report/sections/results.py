@@ -50,9 +50,7 @@ def section(ctx: Context) -> Section:
     cycle = ctx.result["cycle"]
     if cycle:
         columns = [Column(say("col.quantity")), Column(say("col.value"), numeric=True)]
-        rows = [
-            (Cell(say(f"cycle.{key}")), _plain(value)) for key, value in cycle.items() if value is not None
-        ]
+        rows = [(Cell(say(f"cycle.{key}")), _plain(value)) for key, value in cycle.items() if value is not None]
         blocks += [Heading(say("results.cycle")), ctx.table(say("results.caption.cycle"), columns, rows)]
     return Section("results", say("results.title"), tuple(blocks))
 

@@ -11,7 +11,7 @@ from pathcalc.report.words import say
 def section(ctx: Context) -> Section:
     """Every explanation of the solution, under the state or leg it belongs to; equal ones are shown once.
 
-    Explanations without numbers put in only say that a value comes from the equation of state: they are left out.
+    Explanations without numbers put in only name the equation of state: they are left out.
     """
     groups: dict[str, dict[tuple[Step, ...], list[str]]] = {}
     for address, steps in ctx.solution.explanations.items():
