@@ -134,6 +134,3 @@ def _where_from(solution: Solution, address: str) -> list[str]:
     if near:
         lines.append(f"Worked steps are there for: {', '.join(near)}")
     return lines
-
-
-

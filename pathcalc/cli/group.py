@@ -47,13 +47,11 @@ class Group(click.Group):
         self, ctx: click.Context, args: list[str]
     ) -> tuple[str | None, click.Command | None, list[str]]:
         """The command that the arguments begin with."""
-        try:
-            return super().resolve_command(ctx, args)
-        except click.UsageError as error:
+        if args and args[0] not in COMMANDS and not args[0].startswith("-"):
             near = difflib.get_close_matches(args[0], COMMANDS, 1)
-            if near and "No such command" in error.message:
-                error.message += f" Did you mean '{near[0]}'?"
-            raise
+            hint = f" Did you mean '{near[0]}'?" if near else ""
+            ctx.fail(f"No such command '{args[0]}'.{hint}")
+        return super().resolve_command(ctx, args)
 
     def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
         """The list of commands, from the table rather than from their modules."""
@@ -78,11 +76,14 @@ def _version(context: click.Context, parameter: click.Parameter, value: bool) ->
 
 @click.group(
     cls=Group,
+    no_args_is_help=False,
     context_settings={"help_option_names": ["-h", "--help"]},
     epilog="Exit codes: 0 all well; 1 a limit or check missed; 2 wrong usage; 3 a case is invalid; "
     "4 a valid case has no solution; 5 an internal error.",
 )
-@click.option("--version", is_flag=True, expose_value=False, is_eager=True, callback=_version, help="Show it.")
+@click.option(
+    "--version", is_flag=True, expose_value=False, is_eager=True, callback=_version, help="Show the version and leave."
+)
 @loudness
 def cli() -> None:
     """Thermodynamic path calculations for real fluids, from a case file to a checkable report."""

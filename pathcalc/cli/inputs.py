@@ -96,6 +96,10 @@ def places(case: Case) -> Iterator[tuple[str, tuple[str, int, int]]]:
 
 def place_of(case: Case, at: str) -> tuple[str, int, int] | None:
     """File, line and column of what an address or a name of a leg stands for; None where it has none."""
+    for limit in case.limits:
+        if limit.quantity == at and limit.line:
+            file = case.positions.get(("limits",))
+            return str(file[0]) if file else "", limit.line, limit.column
     name = at
     known = dict(places(case))
     while name and name not in known:

@@ -141,7 +141,7 @@ class _Reader:
             return self.function(name) if name in FUNCTIONS else SIGNS[name]
         if name in SPACED:
             return f" {SPACED[name]} "
-        return SPACES[name] if name in SPACES else f"{name} "
+        return SPACES.get(name, f"{name} ")
 
     def function(self, name: str) -> str:
         """A function's name, set apart from what it is taken of; a fraction gets brackets."""

@@ -32,9 +32,7 @@ OUTCOMES = {
 @click.argument("paths", nargs=-1, required=True, type=PATH, metavar="PATH...")
 @click.option("--json", "as_json", is_flag=True, help="Print the results as JSON, in SI units.")
 @click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, or html,md.")
-@click.option(
-    "-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/."
-)
+@click.option("-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/.")
 @root_option
 @loudness
 @click.pass_obj
@@ -95,7 +93,7 @@ class Solving:
         text = self._text(solution, result, many)
         written, failed = self.reports.write(solution, case)
         self._print(text, written, many)
-        missed = _missed(result)
+        missed = _missed(solution, result)
         for line in missed:
             self.talk.error(f"{item.shown}: {line}")
         if failed:
@@ -132,14 +130,22 @@ class Solving:
         self.printed += 1
 
 
-def _missed(result: dict[str, Any]) -> list[str]:
-    """What was not met, a line each."""
+def _missed(solution: Solution, result: dict[str, Any]) -> list[str]:
+    """What was not met, a line each; limits in the case's units."""
     lines = []
-    for row in result["limits"]:
-        if not row["passed"]:
+    if not all(row["passed"] for row in result["limits"]):
+        from pathcalc.cli.tables import plain
+        from pathcalc.report.context import Context
+        from pathcalc.report.units import kind_of
+
+        ctx = Context(solution)
+        for row in result["limits"]:
+            if row["passed"]:
+                continue
+            kind = kind_of(row["quantity"])
             low = row["min"] is not None and row["value"] < row["min"]
-            bound = f"at least {row['min']!r}" if low else f"at most {row['max']!r}"
-            lines.append(f"limit missed: {row['quantity']} = {row['value']!r}, {bound} wanted (SI)")
+            bound = f"at least {ctx.brief(kind, row['min'])}" if low else f"at most {ctx.brief(kind, row['max'])}"
+            lines.append(plain(f"limit missed: {row['quantity']} = {ctx.measure(kind, row['value'])}, not {bound}"))
     for row in result["checks"]:
         if not row["passed"]:
             at = f" at {row['at']}" if row["at"] else ""

@@ -102,9 +102,7 @@ def _legs(page: Page, ctx: Context) -> None:
     page.table("Legs", heads, rows, words=(0, 1))
     keys = ("u", "h", "s", "a", "g")
     heads = ["change over the leg", *(_unit(ctx, f"Δ{key}", DELTA_KINDS[key]) for key in keys)]
-    rows = [
-        [leg["name"], *_cells(ctx, ((DELTA_KINDS[key], leg["delta"][key]) for key in keys))] for leg in ctx.legs
-    ]
+    rows = [[leg["name"], *_cells(ctx, ((DELTA_KINDS[key], leg["delta"][key]) for key in keys))] for leg in ctx.legs]
     page.table("", heads, rows, words=(0,))
 
 

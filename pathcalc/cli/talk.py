@@ -115,7 +115,7 @@ def loudness(command: F) -> F:
         ("--verbose", "-v", "Tell more; show where an internal error came from."),
         ("--quiet", "-q", "Only data and errors."),
     ):
-        command = click.option(
-            flag, short, is_flag=True, expose_value=False, callback=_set(flag[2:]), help=text
-        )(command)
+        command = click.option(flag, short, is_flag=True, expose_value=False, callback=_set(flag[2:]), help=text)(
+            command
+        )
     return command

@@ -29,6 +29,9 @@ from pathcalc.substances.card import Card, VirialCorrelation
 P_MAX_CUBIC = 1.0e8
 """Pressure (Pa) above which a cubic equation draws a warning (common practice, no source)."""
 
+_VIRIAL_LEAST_TR = 0.6
+"""Reduced temperature below which virial correlations draw a warning (common practice, no source)."""
+
 _CODATA_SOURCE = "CODATA 2018, E. Tiesinga et al., Rev. Mod. Phys. 93 (2021) 025010"
 _ALPHA = r"\alpha=\left[1+m\left(1-\sqrt{T/T_c}\right)\right]^2"
 _NO_LIMIT = (
@@ -146,9 +149,7 @@ def van_der_waals(card: Card, options: Options) -> Built:
     critical = None
     if options.constants == "card":
         if card.van_der_waals is None:
-            raise UsageError(
-                f"the card of {card.name!r} gives no van der Waals a and b; use those from T_c, p_c"
-            )
+            raise UsageError(f"the card of {card.name!r} gives no van der Waals a and b; use those from T_c, p_c")
         a, b = card.van_der_waals.a, card.van_der_waals.b
         critical = (8.0 * a / (27.0 * R_CODATA * b), a / (27.0 * b * b))
     elif options.constants != "critical":
@@ -251,6 +252,7 @@ def virial(card: Card, options: Options) -> Built:
     else:
         omega = card.acentric.value
         B, C = tsonopoulos_b(T_c, p_c, omega), orbey_vera_c(T_c, p_c, omega)
+        stated = (_VIRIAL_LEAST_TR * T_c, math.inf)
     rho_c = card.rho_c.value if card.has("rho_c") else p_c / (0.29 * R_CODATA * T_c)
     residual = VirialGas(B, C, rho_c)
     source = B.source or "coefficients given in the case"

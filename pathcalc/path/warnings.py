@@ -1,7 +1,8 @@
 """What a reader must know beside the numbers: ranges left, phases, shortcomings of the equation.
 
 Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
-virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed.
+virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed,
+comparison-without-shift.
 """
 
 from __future__ import annotations
@@ -101,6 +102,9 @@ def _of_legs(solution: Solution) -> list[Warning_]:
         if any(piece.in_dome for piece in solved.integrals.pieces):
             text = "the leg passes through the two-phase region; it is integrated piece by piece, in equilibrium"
             rows.append(_warning("two-phase", solved.leg.name, text))
+    if solution.case.fluid.volume_shift is not None and solution.case.report.compare_with:
+        text = "the other equations are solved without the volume shift of the case: their dense states are not alike"
+        rows.append(_warning("comparison-without-shift", "comparison", text))
     for equation in solution.case.report.compare_with:
         from pathcalc.path.comparison import solved_with
 

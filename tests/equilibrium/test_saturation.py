@@ -62,6 +62,7 @@ def test_against_an_independent_library(backend: str, form: Form, m_of: Callable
     eos = TwoConstantCubic(form, SoaveAlpha(T_c, m_of(w)), T_c, p_c, R=R)
     base = build_model(read_card("propane"), "peng-robinson")
     m = replace(base, residual=eos, T_c=T_c, p_c=p_c, v_c=eos.v_c, R=R, T_limits=(120.0, 1200.0))
+    tolerance = 1e-8 if backend == "SRK" else 1e-11  # it keeps δ2 of the first a little off zero
     rng = np.random.default_rng(11)
     T = rng.uniform(0.45, 0.97, 40) * T_c
     sat = saturation_at_T(m, T)
@@ -76,8 +77,8 @@ def test_against_an_independent_library(backend: str, form: Form, m_of: Callable
     for k in range(T.size):
         other.update(CoolProp.DmolarT_INPUTS, 1.0 / float(points.v[k]), float(T[k]))
         assert other.p() == pytest.approx(p[k], rel=1e-8)
-        assert d.d00[k] == pytest.approx(other.alphar(), rel=1e-9, abs=1e-12)
-        assert -d.d10[k] == pytest.approx(-other.tau() * other.dalphar_dTau(), rel=1e-9, abs=1e-12)
+        assert d.d00[k] == pytest.approx(other.alphar(), rel=tolerance)
+        assert d.d10[k] == pytest.approx(other.tau() * other.dalphar_dTau(), rel=tolerance)
 
 
 def test_equal_pressure_and_gibbs_energy_up_to_the_critical_point(cubic_model: Model) -> None:

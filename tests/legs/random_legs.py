@@ -78,9 +78,9 @@ def _leg(draw: st.DrawFn, kind: str) -> tuple[str, str]:
         eta = draw(st.sampled_from([0.6, 0.8, 0.95]))
         return f"path: adiabatic, to: {{p: {{ratio: {ratio}}}}}, polytropic_efficiency: {eta}", "flow"
     if kind == "throttling":
-        return f"path: throttling, to: {{p: {{ratio: {round(ratio / 4.0, 4)}}}}}", "flow"
+        return f"path: throttling, to: {{p: {{ratio: {round(ratio / 4.2, 4)}}}}}", "flow"
     if kind == "free-expansion":
-        return f"path: free-expansion, to: {{v: {{ratio: {4.0 * ratio}}}}}", "closed"
+        return f"path: free-expansion, to: {{v: {{ratio: {5.0 * ratio}}}}}", "closed"
     assert kind == "workless"
     drop = draw(st.sampled_from([0.98, 0.9]))
     T_ratio = round(0.75 + ratio / 4.0, 4)

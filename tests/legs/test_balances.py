@@ -12,7 +12,7 @@ from solving import R
 from pathcalc.path.values import scales
 
 TOLERANCE = 1e-9
-quick = settings(max_examples=80, deadline=None, derandomize=True)
+quick = settings(max_examples=50, deadline=None, derandomize=True)
 
 
 def molar(solution):

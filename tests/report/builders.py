@@ -91,9 +91,7 @@ def ideal_state(name: str, t: float, p: float) -> dict[str, Any]:
     }
 
 
-def leg(
-    name: str, path: str, a: dict[str, Any], b: dict[str, Any], heat: float, flow: float
-) -> dict[str, Any]:
+def leg(name: str, path: str, a: dict[str, Any], b: dict[str, Any], heat: float, flow: float) -> dict[str, Any]:
     delta = {k: b[k] - a[k] for k in ("T", "p", "v", "u", "h", "s", "a", "g")}
     work = delta["h"] - heat
     generated = max(delta["s"], 0.0) if heat == 0 else 0.0

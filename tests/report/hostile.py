@@ -8,8 +8,7 @@ from pathcalc.path.steps import Step
 
 SCRIPT = "<script>window.broken = 1</script>"
 HOSTILE = (
-    SCRIPT
-    + ' <img src=x onerror="window.broken=2"> | pipe `tick` $x^2$ $$y$$ [link](javascript:alert(1)) ![i](x) '
+    SCRIPT + ' <img src=x onerror="window.broken=2"> | pipe `tick` $x^2$ $$y$$ [link](javascript:alert(1)) ![i](x) '
     "*star* _low_ # head &amp; \u202eback \x1b[31m \x00 </style></title> {{ 7*7 }} {% raw %} @name"
 )
 MULTI = "first line\n# second line\n- third | line\n```\nfenced\r\n"

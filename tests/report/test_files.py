@@ -35,9 +35,7 @@ def test_writes_all_formats(tmp_path: Path) -> None:
     assert stat.S_IMODE(written[0].stat().st_mode) == 0o666 & ~old
 
 
-def test_failure_leaves_the_old_report_and_nothing_else(
-    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_failure_leaves_the_old_report_and_nothing_else(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     target = tmp_path / "a.html"
     target.write_text("old")
     calls: list[int] = []

@@ -61,12 +61,8 @@ def test_structure_for_readers_and_screen_readers(browser: Any, page: Path) -> N
     assert levels[0] == 1
     assert levels.count(1) == 1
     assert all(b - a <= 1 for a, b in itertools.pairwise(levels))
-    assert tab.evaluate(
-        "[...document.querySelectorAll('table')].every(t => t.caption && t.caption.innerText)"
-    )
-    assert tab.evaluate(
-        "[...document.querySelectorAll('th')].every(t => t.scope === 'col' || t.scope === 'row')"
-    )
+    assert tab.evaluate("[...document.querySelectorAll('table')].every(t => t.caption && t.caption.innerText)")
+    assert tab.evaluate("[...document.querySelectorAll('th')].every(t => t.scope === 'col' || t.scope === 'row')")
     assert tab.evaluate(
         "[...document.querySelectorAll('svg')].every(s => s.getAttribute('role') === 'img'"
         " && s.querySelector(':scope > title').textContent && s.querySelector(':scope > desc').textContent)"
@@ -146,7 +142,7 @@ def test_hostile_text_stays_text() -> None:
     assert not any(ord(c) < 32 and c not in "\n\t" for c in html)
     assert "\u202e" not in html
     assert "[U+202E]" in html
-    assert "49" not in re.findall(r"back .{0,80}", html)
+    assert "{{ 7*7 }} {% raw %}" in html
 
 
 def test_drawings_and_formulas_are_well_formed() -> None:
@@ -179,9 +175,7 @@ def render_elsewhere(**environment: str) -> str:
 def test_same_bytes_every_time(tmp_path: Path) -> None:
     """Twice, in another process with other hashes, another locale and a user's own style of drawing."""
     style = tmp_path / "matplotlibrc"
-    style.write_text(
-        "axes.facecolor: pink\nfont.size: 20\nsvg.fonttype: none\naxes.formatter.use_locale: True\n"
-    )
+    style.write_text("axes.facecolor: pink\nfont.size: 20\nsvg.fonttype: none\naxes.formatter.use_locale: True\n")
     first = render_html(two_stages())
     assert render_html(two_stages()) == first
     assert render_elsewhere(PYTHONHASHSEED="1", LC_ALL="C.UTF-8", TZ="Asia/Tokyo") == first
@@ -296,3 +290,15 @@ def test_cautions_follow_fluid_and_states(
         assert f"{word}" in section, word
     for word in absent:
         assert f"<strong>{word}." not in section, word
+
+
+def test_long_sums_can_break_before_their_signs() -> None:
+    from pathcalc.report.maths import mathml_lines
+
+    long = r"0.5 \times \left(" + " + ".join(f"{n}.12345" for n in range(1, 13)) + r" - (-3.5)\right)"
+    parts = str(mathml_lines(long)).split("<wbr>")
+    assert len(parts) == 13
+    assert all(ElementTree.fromstring(p) is not None for p in parts)
+    assert "".join("".join(ElementTree.fromstring(p).itertext()) for p in parts).count("+") == 11
+    assert '<mo form="prefix">−</mo><mn>3.5</mn>' in parts[-1]
+    assert "<wbr>" not in str(mathml_lines("a + b"))

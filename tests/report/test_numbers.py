@@ -137,9 +137,7 @@ def test_kinds_of_addresses(address: str, kind: str) -> None:
 
 
 def test_pretty_units() -> None:
-    assert [
-        pretty(u) for u in ("degC", "m3/kg", "kJ/(kg K)", "delta_degF", "Nm3/h", "kgf/cm2", "m6/mol2")
-    ] == [
+    assert [pretty(u) for u in ("degC", "m3/kg", "kJ/(kg K)", "delta_degF", "Nm3/h", "kgf/cm2", "m6/mol2")] == [
         "°C",
         "m³/kg",
         "kJ/(kg K)",

@@ -117,3 +117,20 @@ def test_page_fits_narrow_screens(solved: Any, browser: Any, tmp_path: Path) -> 
         tab.goto(path.as_uri())
         assert tab.evaluate("document.documentElement.scrollWidth <= document.documentElement.clientWidth")
     tab.close()
+
+
+@pytest.mark.parametrize("width", [680, 703])
+def test_nothing_is_cut_off_in_print(solved: Any, browser: Any, tmp_path: Path, width: int) -> None:
+    """A4 (210 mm) and Letter (215.9 mm) less two margins of 15 mm, at 96 px to 25.4 mm."""
+    path = tmp_path / "report.html"
+    path.write_text(render_html(solved[1]), encoding="utf-8")
+    tab = browser.new_page(viewport={"width": width, "height": 900})
+    tab.emulate_media(media="print")
+    tab.goto(path.as_uri())
+    cut = tab.evaluate(
+        "w => [...document.querySelectorAll('table, math, pre, svg')]"
+        ".filter(e => e.getBoundingClientRect().right > w + 1).map(e => e.textContent.slice(0, 60))",
+        width,
+    )
+    assert cut == []
+    tab.close()
