@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import unicodedata
 from collections.abc import Iterator
 
 SIGNS = {
@@ -132,7 +133,7 @@ class _Reader:
             return self.argument() if self.peek() == "{" else ""
         if name in ACCENTS:
             inner = self.argument()
-            return inner[:1] + ACCENTS[name] + inner[1:]
+            return unicodedata.normalize("NFC", inner[:1] + ACCENTS[name]) + inner[1:]
         if name in NOTHING:
             if self.peek() == ".":
                 self.take()

@@ -21,6 +21,18 @@ _CONSTANTS = (
 )
 
 
+_PARAMETERS = {
+    "R": "molar gas constant",
+    "T_c": "critical temperature",
+    "p_c": "critical pressure",
+    r"\omega": "acentric factor",
+    "m": "slope of the attraction function",
+    "a_c": "attraction at the critical temperature",
+    "b": "co-volume",
+    "c": "volume shift, v = v(equation) - c",
+}
+
+
 def basis_of(solution: Solution) -> Basis:
     """Constants of the card, the equation with its parameters, the heat capacity, each with its source."""
     card, model = solution.path.card, solution.path.model
@@ -35,7 +47,8 @@ def basis_of(solution: Solution) -> Basis:
     info = model.info
     assert info is not None
     parameters = tuple(
-        Constant(p.symbol, "parameter of the equation", p.value, p.unit, p.source) for p in info.parameters
+        Constant(p.symbol, _PARAMETERS.get(p.symbol, "parameter of the equation"), p.value, p.unit, p.source)
+        for p in info.parameters
     )
     ideal = model.ideal
     form = getattr(ideal, "form", "given")

@@ -15,7 +15,7 @@ from pathcalc.path.solver import SolvedPath, solve_path
 from pathcalc.path.values import (
     DELTA_KEYS,
     EXCHANGE_KEYS,
-    EXTENSIVE,
+    EXTENSIVE_ENERGIES,
     Record,
     Value,
     dead_state,
@@ -105,13 +105,17 @@ class Solution:
             for leg in self._leg_arrays.values():
                 total = total + leg[key] * mass
             totals[key] = total
-        delta: dict[str, Any] = {}
-        for key in DELTA_KEYS:
-            change = np.zeros(setting.n)
-            for leg in self._leg_arrays.values():
-                change = change + leg["delta"][key] * (mass if key in EXTENSIVE else 1.0)
-            delta[key] = change
-        return {**totals, "delta": delta}
+        ends = {"T": (self.path.start.T, self._last.T), "p": (self.path.start.p, self._last.p)}
+        delta: dict[str, Any] = {key: last - first for key, (first, last) in ends.items()}
+        delta["v"] = (self._last.v - self.path.start.v) / M * mass
+        for key in EXTENSIVE_ENERGIES:
+            delta[key] = sum((leg["delta"][key] * mass for leg in self._leg_arrays.values()), np.zeros(setting.n))
+        ok = setting.status.ok
+        return {**totals, "delta": {key: np.where(ok, delta[key], np.nan) for key in DELTA_KEYS}}
+
+    @property
+    def _last(self) -> Place:
+        return self.path.legs[-1].end
 
     @cached_property
     def totals(self) -> Record:

@@ -23,7 +23,7 @@ STATE_KEYS = (
 )  # fmt: skip
 DELTA_KEYS = ("T", "p", "v", "u", "h", "s", "a", "g")
 EXCHANGE_KEYS = ("heat", "work", "entropy_generated", "exergy_destroyed")
-EXTENSIVE = frozenset({"v", "u", "h", "s", "a", "g"})
+EXTENSIVE_ENERGIES = ("u", "h", "s", "a", "g")
 PER_MASS = frozenset({"u", "h", "s", "a", "g", "cv", "cp"})
 
 

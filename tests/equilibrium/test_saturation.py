@@ -76,7 +76,7 @@ def test_against_an_independent_library(backend: str, form: Form, m_of: Callable
     d = eos.reduced(T, 1.0 / points.v)
     for k in range(T.size):
         other.update(CoolProp.DmolarT_INPUTS, 1.0 / float(points.v[k]), float(T[k]))
-        assert other.p() == pytest.approx(p[k], rel=1e-8)
+        assert other.p() == pytest.approx(p[k], rel=100 * tolerance)
         assert d.d00[k] == pytest.approx(other.alphar(), rel=tolerance)
         assert d.d10[k] == pytest.approx(other.tau() * other.dalphar_dTau(), rel=tolerance)
 

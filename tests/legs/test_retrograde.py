@@ -13,7 +13,7 @@ def phases(solution, leg="a"):
 def test_compression_of_saturated_vapour_wets_it():
     solution = solve(FLUID, "T: 400 K, x: 1", "name: a, path: adiabatic, to: {p: {ratio: 3}}")
     assert phases(solution) == ["two-phase"]
-    assert 0.8 < solution.states["a"].x < 1.0
+    assert 0.5 < solution.states["a"].x < 1.0
     assert failed_checks(solution) == []
 
 
