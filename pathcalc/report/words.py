@@ -88,6 +88,7 @@ WORDS: Final[dict[str, str]] = {
     "basis.relative.rise": "inlet + {amount}",
     "basis.relative.drop": "inlet − {amount}",
     "basis.relative.same_as": "as at {state}",
+    "basis.source.state": "a state of this path",
     "basis.u.normal": "u = {u}",
     "basis.u.expanded": "U = {U}, k = {k}",
     "basis.u.rectangular": "± {half}, rectangular",

@@ -17,6 +17,9 @@ from pathcalc.report.words import say
 _SI_DIGITS = 8
 
 
+_WITH_HEAT = frozenset({"isothermal", "isobaric", "isochoric", "polytropic", "workless"})
+
+
 @dataclass(frozen=True)
 class Input:
     """One input of the case as the input table shows it."""
@@ -59,7 +62,8 @@ def _inputs_in(address: str, thing: Any, source: str | None) -> Iterator[Input]:
             written = say(f"basis.relative.{value.kind}", amount=_text(value.amount))
             yield dataclasses.replace(_of_quantity(place, value.amount, source), written=written)
         else:
-            yield Input(place, say("basis.relative.same_as", state=value.state), "", "", source or "", "")
+            written, own = say("basis.relative.same_as", state=value.state), say("basis.source.state")
+            yield Input(place, written, "", "", source or own, "")
 
 
 def _walk(address: str, thing: Any) -> Iterator[tuple[str, Quantity | Relative]]:
@@ -182,7 +186,8 @@ def _defaults(ctx: Context) -> Iterator[tuple[str, str, str]]:
         yield "amount", say("default.amount"), say("default.amount.value")
     for leg in pick(ctx.case, "legs", []):
         yield from _leg_defaults(ctx, leg)
-    if any(pick(leg, "reservoir") is None for leg in pick(ctx.case, "legs", [])):
+    heated = [leg for leg in pick(ctx.case, "legs", []) if pick(leg, "path") in _WITH_HEAT]
+    if any(pick(leg, "reservoir") is None for leg in heated):
         yield (
             "reservoir",
             say("default.boundary_temperature"),
