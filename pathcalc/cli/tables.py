@@ -81,7 +81,10 @@ class Page:
         if heading:
             self.heading(heading)
         needed = Measurement.get(self.console, self.console.options.update(width=10_000), table).maximum
-        self.console.print(table, width=max(needed, 1), overflow="ignore", crop=False, no_wrap=True)
+        usual = self.console.width
+        self.console.width = max(needed, usual)  # a narrow terminal wraps lines; the library would cut digits off
+        self.console.print(table, crop=False)
+        self.console.width = usual
 
     def text(self) -> str:
         """All of it, without blanks at line ends."""

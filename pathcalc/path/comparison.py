@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from pathcalc.errors import NoSolutionError
+from pathcalc.path.results import plain
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
@@ -16,7 +17,7 @@ def compared(solution: Solution) -> list[dict[str, Any]]:
     for equation in solution.case.report.compare_with:
         other = solved_with(solution, equation)
         addresses = compared_addresses(solution)
-        quantities = {a: None if isinstance(other, str) else _plain(other.quantity(a)) for a in addresses}
+        quantities = {a: None if isinstance(other, str) else plain(other.quantity(a)) for a in addresses}
         rows.append({"equation": equation, "quantities": quantities})
     return rows
 
@@ -52,7 +53,3 @@ def _solve(solution: Solution, equation: str) -> Solution | str:
         return str(error)
     trouble = path.setting.status.trouble_of(0)
     return Solved(path, lanes=False) if trouble is None else str(trouble)
-
-
-def _plain(value: Any) -> Any:
-    return None if isinstance(value, float) and value != value else value

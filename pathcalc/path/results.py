@@ -66,7 +66,7 @@ def _leg(solution: Solution, name: str) -> dict[str, Any]:
         "amount": plain(leg["amount"]),
         "total": {key: plain(leg["total"][key]) for key in EXCHANGE_KEYS},
         "maxwell": {key: plain(leg["maxwell"][key]) for key in ("ds", "du", "dh", "error", "closure")},
-        "pieces": solution.pieces(name),
+        "pieces": [{k: plain(v) for k, v in piece.items()} for piece in solution.pieces(name)],
     }
 
 

@@ -139,12 +139,12 @@ def test_quiet_keeps_to_errors(run: Run, cases: Path) -> None:
     assert done.stderr.count("\n") == 1
 
 
-@pytest.mark.parametrize(("more", "colour"), [({}, True), ({"NO_COLOR": "1"}, False), ({"TERM": "dumb"}, False)])
-def test_colour_only_on_a_terminal_that_wants_it(cases: Path, more: dict[str, str], colour: bool) -> None:
+def _on_a_terminal(cases: Path, *args: str, **more: str) -> bytes:
+    """What a command writes to a terminal."""
     pty = pytest.importorskip("pty", reason="no pseudo-terminals on this system")
     main, side = pty.openpty()
     child = subprocess.Popen(
-        [sys.executable, "-m", "pathcalc", "solve", "good.yaml"],
+        [sys.executable, "-m", "pathcalc", *args],
         cwd=cases, stdin=subprocess.DEVNULL, stdout=side, stderr=side, env=environment(TERM="xterm") | more,
     )  # fmt: skip
     os.close(side)
@@ -159,7 +159,21 @@ def test_colour_only_on_a_terminal_that_wants_it(cases: Path, more: dict[str, st
         chunks.append(chunk)
     os.close(main)
     assert child.wait(60) == 0
-    assert (b"\x1b[" in b"".join(chunks)) is colour
+    return b"".join(chunks)
+
+
+@pytest.mark.parametrize(("more", "colour"), [({}, True), ({"NO_COLOR": "1"}, False), ({"TERM": "dumb"}, False)])
+def test_colour_only_on_a_terminal_that_wants_it(cases: Path, more: dict[str, str], colour: bool) -> None:
+    assert (b"\x1b[" in _on_a_terminal(cases, "solve", "good.yaml", **more)) is colour
+
+
+def test_a_narrow_terminal_cuts_no_digit_off(run: Run, cases: Path) -> None:
+    shown = _on_a_terminal(cases, "solve", "good.yaml", COLUMNS="40", NO_COLOR="1").decode()
+    assert "…" not in shown
+    wide = run("solve", "good.yaml").stdout
+    numbers = re.findall(r"-?\d+\.\d+", wide)
+    assert len(numbers) > 40
+    assert set(numbers) <= set(re.findall(r"-?\d+\.\d+", shown))
 
 
 def test_no_escape_codes_in_a_pipe(run: Run, cases: Path) -> None:
@@ -183,21 +197,24 @@ def test_a_reader_that_goes_away_is_no_error(cases: Path, args: tuple[str, ...])
 
 @pytest.mark.skipif(sys.platform == "win32", reason="signals differ on Windows")
 def test_an_interrupt_ends_with_130(cases: Path) -> None:
-    child = subprocess.Popen(
-        [sys.executable, "-m", "pathcalc", "check", "-"],
+    code = (  # a process started in the background would ignore the signal
+        "import signal; signal.signal(signal.SIGINT, signal.default_int_handler)\n"
+        "from pathcalc.cli import main; main(['check', '-'])\n"
+    )
+    with subprocess.Popen(
+        [sys.executable, "-c", code],
         cwd=cases, stdin=subprocess.PIPE, stdout=subprocess.PIPE, stderr=subprocess.PIPE, env=environment(),
-    )  # fmt: skip
-    assert child.stdin is not None
-    assert child.stderr is not None
-    assert child.stdout is not None
-    _wait_until_it_reads(child.pid)
-    child.send_signal(signal.SIGINT)
-    said = child.stderr.read()
-    assert child.wait(30) == 130
+    ) as child:  # fmt: skip
+        assert child.stderr is not None
+        _wait_until_it_reads(child.pid)
+        child.send_signal(signal.SIGINT)
+        try:
+            assert child.wait(30) == 130
+        finally:
+            child.kill()
+        said = child.stderr.read()
     assert b"Traceback" not in said
     assert b"interrupted" in said
-    for stream in (child.stdin, child.stdout, child.stderr):
-        stream.close()
 
 
 def _wait_until_it_reads(pid: int) -> None:

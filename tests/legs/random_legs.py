@@ -17,7 +17,8 @@ REGIONS = ("vapour", "supercritical", "dense", "two-phase")
 
 HONEST_REASONS = {
     "above-range", "below-range", "below-triple-point", "no-root", "target-not-reached", "wrong-side",
-    "above-critical", "quality-out-of-range", "not-a-state", "at-saturation", "path-not-followed", "integral-not-converged",
+    "above-critical", "quality-out-of-range", "not-a-state", "at-saturation", "path-not-followed",
+    "integral-not-converged",
 }  # fmt: skip
 """Reasons that a random leg may have to end in; anything else is a fault of the solver."""
 
@@ -48,13 +49,12 @@ class RandomLeg:
     def solve(self, *more_legs: str) -> Any:
         """Solution, or None where the case honestly has none."""
         try:
-            return solve(
-                self.fluid, self.start, f"name: a, {self.leg}", *more_legs, boundary=self.boundary
-            )
+            return solve(self.fluid, self.start, f"name: a, {self.leg}", *more_legs, boundary=self.boundary)
         except NoSolutionError as error:
-            assert error.trouble.code in HONEST_REASONS, error
-            assert error.trouble.remedy
-            return None
+            trouble = error.trouble
+        assert trouble.code in HONEST_REASONS, trouble
+        assert trouble.remedy
+        return None
 
 
 def _leg(draw: st.DrawFn, kind: str) -> tuple[str, str]:

@@ -61,7 +61,7 @@ def test_inside_the_dome_p_and_T_stay_together(substance, equation):
         state = solution.states[name]
         assert state.phase == "two-phase"
         assert state.x == pytest.approx(x, rel=1e-12)
-        assert state.T == pytest.approx(low.T, rel=1e-11)
+        assert state["T"] == pytest.approx(low.T, rel=1e-11)
         for key in ("v", "h", "s", "u"):
             assert state[key] == pytest.approx((1.0 - x) * low[key] + x * high[key], rel=1e-9)
     assert solution.legs["a"].heat == pytest.approx(0.5 * (high.h - low.h), rel=1e-9)

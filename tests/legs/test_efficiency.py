@@ -45,10 +45,7 @@ def test_small_steps_of_isentropic_efficiency_tend_to_the_polytropic_one(p):
 
     def stepped(n):
         ratio = (p / 8e5) ** (1.0 / n)
-        text = (
-            f"repeat: {n}, legs: "
-            f"[{{name: s, path: adiabatic, to: {{p: {{ratio: {ratio!r}}}}}, efficiency: 0.7}}]"
-        )
+        text = f"repeat: {n}, legs: [{{name: s, path: adiabatic, to: {{p: {{ratio: {ratio!r}}}}}, efficiency: 0.7}}]"
         solution = solve(PR, START, text)
         return solution.states[list(solution.states)[-1]].T
 

@@ -1,7 +1,8 @@
 """The reported ``maxwell.error`` against the true error, for which the closed form stands in.
 
 Both routes are in double precision: beside the estimate, 5e-11 of the sizes along the leg is allowed for
-rounding (a leg of no length is measured against a thousandth of R). Legs that keep away from saturation, where nothing but the quadrature is at work.
+rounding (a leg of no length is measured against a thousandth of R).
+Legs that keep away from saturation, where nothing but the quadrature is at work.
 """
 
 import numpy as np
@@ -38,9 +39,7 @@ def test_error_bounds_the_true_error_over_many_lanes():
         "a.p": 10.0 ** rng.uniform(-1.0, 1.0, n),
     }
     legs_ = "name: a, path: isothermal, to: {p: {ratio: 2}}"
-    solution = solve(
-        "substance: carbon-dioxide, equation: soave", "T: 400 K, p: 1 bar", legs_, lanes=lanes
-    )
+    solution = solve("substance: carbon-dioxide, equation: soave", "T: 400 K, p: 1 bar", legs_, lanes=lanes)
     maxwell = solution.legs["a"].maxwell
     assert solution.ok.all()
     assert (maxwell.closure <= maxwell.error + ROUNDING).all()
