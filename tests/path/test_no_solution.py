@@ -130,6 +130,38 @@ def test_refused_with_place_reason_and_remedy(name):
     assert "\n" not in str(caught.value)
 
 
+@pytest.mark.xfail(
+    strict=True, reason="p and v inside the dome below the triple-point pressure give a warm single phase"
+)
+@pytest.mark.parametrize(
+    ("fluid", "start"),
+    [
+        ("substance: water, equation: peng-robinson", "p: 300 Pa, v: 0.02 m3/kg"),
+        ("substance: water, equation: peng-robinson", "p: 300 Pa, v: 0.0012 m3/kg"),
+        (CO2, "p: 4.8 bar, v: 0.00135 m3/kg"),
+        ("substance: carbon-dioxide, equation: peng-robinson", "p: 4.8 bar, v: 0.00135 m3/kg"),
+    ],
+)
+def test_pressure_and_volume_below_the_triple_point(fluid, start):
+    """The pressure lies below that of the triple point (611.7 Pa; 5.18 bar): between ice and vapour, no liquid."""
+    leg = f"name: a, path: isochoric, to: {{T: {350 if 'water' in fluid else 250} K}}"
+    with pytest.raises(NoSolutionError) as caught:
+        solve(fluid, start, leg, boundary="closed")
+    assert caught.value.trouble.at == "start"
+
+
+@pytest.mark.xfail(strict=True, reason="the same fault at the end of a leg; closure 0.39")
+def test_polytrope_below_the_triple_point():
+    """From CO2 at 220 K, x 0.01, along p v^1.2 to 4.66 bar."""
+    with pytest.raises(NoSolutionError):
+        solve(
+            "substance: carbon-dioxide, equation: peng-robinson",
+            "T: 220.08 K, x: 0.01",
+            "name: a, path: polytropic, exponent: 1.2, to: {v: {ratio: 1.23}}",
+            boundary="closed",
+        )
+
+
 def test_limit_on_a_quality_that_is_not_defined():
     limit = "limits:\n  - {quantity: a.x, max: 0.9}\n"
     solution = solve(PROPANE, "T: 340 K, p: 5 bar", "name: a, path: isobaric, to: {T: 350 K}", more=limit)

@@ -167,3 +167,28 @@ def test_lanes_of_the_amount():
 def test_a_result_object_is_of_one_solve():
     with pytest.raises(pathcalc.errors.UsageError):
         run("throttling", arrays(CASES["throttling"], 3)).to_dict()
+
+
+@pytest.mark.xfail(strict=True, reason="lane values are not held to the range of their field")
+@pytest.mark.parametrize("efficiency", [-1.0, 2.0])
+def test_an_efficiency_that_cannot_be_is_refused_in_its_lane(efficiency):
+    """A case file may not say so either: above 0 and at most 1."""
+    solution = run("compression with efficiency", {"a.efficiency": np.array([0.8, efficiency])})
+    assert solution.ok.tolist() == [True, False]
+
+
+@pytest.mark.xfail(strict=True, reason="a bare ValueError of numpy")
+def test_limits_of_many_lanes():
+    """Either a value a lane, or a refusal that says so."""
+    solution = solve(
+        COMPRESSION.fluid,
+        COMPRESSION.start,
+        *COMPRESSION.legs,
+        more="limits:\n  - {quantity: a.T, max: 380 K}\n",
+        lanes={"start.T": np.array([330.0, 350.0])},
+    )
+    try:
+        (row,) = solution.limits
+    except pathcalc.errors.UsageError as refusal:
+        row = {"passed": None, "why": str(refusal)}
+    assert row["passed"] is None or np.shape(row["passed"]) == (2,)
