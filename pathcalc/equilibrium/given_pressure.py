@@ -19,6 +19,10 @@ AT_SATURATION = 1e-9
 """(T, p) closer to the saturation line than this part of the pressure does not fix a state."""
 
 
+_ON_BRANCH = 1e-6
+"""A volume further than this from the stable one at the T found for it lies inside the spinodal."""
+
+
 def range_reason(model: Model, T: Array) -> NDArray[np.int16]:
     """0 where T (K) lies within the limits of the model, else the reason."""
     reason = np.zeros(T.size, dtype=np.int16)
@@ -193,7 +197,10 @@ def _single_phase(
         root = guarded_newton(at_volume if key == "v" else fun, x, lo, hi, args, unit=1.0 if logarithmic else None)
         T = np.clip(np.exp(root.x) if logarithmic else root.x, T_low, T_high)
         v = _root(model, T, q, b)
+    ok = root.ok
     if key == "v":
+        with np.errstate(all="ignore"):
+            ok = ok & (np.abs(v / target[todo] - 1.0) < _ON_BRANCH)
         v = target[todo].copy()
     middle = 0.5 * (T_low + T_high)
     failed = np.where(middle > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
@@ -201,7 +208,7 @@ def _single_phase(
         with np.errstate(all="ignore"):
             dense = np.isnan(_root(model, T * (1.0 - 1e-6), q, b))
         failed = np.where(dense, reasons.NO_ROOT, failed)
-    draft.put(todo, T, q, v, np.where(root.ok, 0, failed).astype(np.int16))
+    draft.put(todo, T, q, v, np.where(ok, 0, failed).astype(np.int16))
 
 
 def _root(model: Model, T: Array, p: Array, branch: Array) -> Array:

@@ -16,25 +16,22 @@ from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p
 from pathcalc.legs.integration.bracket import bracketed_root
+from pathcalc.legs.integration.dome_entry import beyond_boundary, first_entry
 from pathcalc.legs.integration.families import Lanes
 from pathcalc.legs.integration.pick import replace_points, take_points
 from pathcalc.legs.integration.polytropic_efficiency import (
     DomeCurve,
     OnePhaseCurve,
-    Solution,
     dome_slopes,
     one_phase_slopes,
     solve,
 )
-from pathcalc.legs.integration.quadrature import NODES
-from pathcalc.legs.integration.saturation_line import SaturationLine, side_of
+from pathcalc.legs.integration.saturation_line import side_of
 from pathcalc.legs.integration.segments import Segment
 from pathcalc.legs.run import LegRun, Place
 
 MAX_STRETCHES = 6
 MAX_HALVINGS = 40
-_SCREEN = 2e-3
-"""Relative distance from the tabled saturation temperature within which the temperature itself is solved for."""
 
 
 @dataclass(frozen=True)
@@ -116,32 +113,32 @@ def _in_one_phase(run: LegRun, front: _Front, goal: Array, factor: Array, lanes:
     slopes = one_phase_slopes(model, factor[lanes])
     solution = solve(slopes, y_a, y_b, initial)
     meets = np.zeros(lanes.size, dtype=bool)
+    wet_side = np.zeros(lanes.size, dtype=bool)
+    short = np.zeros(lanes.size, dtype=bool)
     if model.has_dome:
-        liquid = front.v[lanes] < model.v_c
+        line, every = run.setting.boundary.line(), np.arange(lanes.size, dtype=np.intp)
         for _ in range(MAX_HALVINGS):
-            low, high, lost = _first_sign_change(model, run.setting.boundary.line(), solution, liquid)
-            if not lost.any():
+            entry = first_entry(model, line, solution)
+            if not entry.lost.any():
                 break
-            y_b = np.where(lost, 0.5 * (y_a + y_b), y_b)
+            y_b = np.where(entry.lost, 0.5 * (y_a + y_b), y_b)
             solution = solve(slopes, y_a, y_b, initial)
-        meets = np.isfinite(low)
+        meets, wet_side = np.isfinite(entry.low), entry.liquid
         if meets.any():
             root = bracketed_root(
-                lambda y: _above_saturation(model, solution, y, np.arange(lanes.size)),
-                np.where(meets, low, y_a),
-                np.where(meets, high, y_a),
+                lambda y: beyond_boundary(model, solution, y, wet_side, every),
+                np.where(meets, entry.low, y_a),
+                np.where(meets, entry.high, y_a),
             )
             y_b = np.where(meets, root, y_b)
             solution = solve(slopes, y_a, y_b, initial)
         short = ~meets & (np.abs(y_b - goal[lanes]) > 1e-12)
-    else:
-        short = np.zeros(lanes.size, dtype=bool)
     T, v = solution.last
     bad = ~solution.converged | ~np.isfinite(T + v)
     h = _enthalpy(model, T, v)
     front.y[lanes], front.T[lanes], front.v[lanes] = y_b, T, v
     front.h[lanes] = np.where(bad, np.nan, h)
-    front.x[lanes] = np.where(meets, np.where(front.v[lanes] < model.v_c, 0.0, 1.0), np.nan)
+    front.x[lanes] = np.where(meets, np.where(wet_side, 0.0, 1.0), np.nan)
     front.open[lanes] = (meets | short) & ~bad
     front.into_dome[lanes] = meets
     return Segment(
@@ -160,46 +157,6 @@ def _enthalpy(model: Model, T: Array, v: Array) -> Array:
     with np.errstate(invalid="ignore", divide="ignore", over="ignore"):
         h: Array = thermal(model, T, v).h
     return h
-
-
-def _above_saturation(model: Model, solution: Solution, y: Array, lanes: Lanes) -> Array:
-    """T minus the saturation temperature at the same pressure; NaN above the critical pressure."""
-    T = solution.at(y[None, :], lanes)[0, 0]
-    sat = saturation_at_p(model, np.exp(y))
-    return np.where(sat.reason == 0, T - sat.T, np.nan)
-
-
-def _first_sign_change(
-    model: Model, line: SaturationLine, solution: Solution, liquid: NDArray[np.bool_]
-) -> tuple[Array, Array, NDArray[np.bool_]]:
-    """Bracket of ln p in which each lane enters the dome (NaN: it does not), and lanes lost before any.
-
-    The saturation temperature is read off the table, and solved for only where the table cannot decide.
-    """
-    panels, lanes = solution.values.shape[1], liquid.size
-    width = (solution.y_b - solution.y_a) / panels
-    y = (solution.y_a + width * (np.arange(panels)[:, None, None] + NODES[:, None])).reshape(-1, lanes)
-    T = solution.values[0].reshape(-1, lanes)
-    p = np.exp(y)
-    near = (p < model.p_c) & (model.T_c * 1.2 > T)
-    gap = np.full(y.shape, np.nan)
-    if near.any():
-        gap[near] = T[near] - line.temperature(y[near])
-        close = near & (np.abs(gap) < _SCREEN * T)
-        if close.any():
-            sat = saturation_at_p(model, p[close])
-            gap[close] = np.where(sat.reason == 0, T[close] - sat.T, np.nan)
-    wrong = np.where(liquid, gap > 0.0, gap < 0.0)
-    broken = ~np.isfinite(T)
-    first_wrong = np.where(wrong.any(axis=0), wrong.argmax(axis=0), y.shape[0])
-    first_broken = np.where(broken.any(axis=0), broken.argmax(axis=0), y.shape[0])
-    lost = (first_broken <= first_wrong) & (first_broken < y.shape[0])
-    lost |= ~solution.converged & (first_wrong == y.shape[0])
-    meets = (first_wrong < first_broken) & (first_wrong < y.shape[0])
-    column = np.arange(lanes)
-    high = np.where(meets, y[np.minimum(first_wrong, y.shape[0] - 1), column], np.nan)
-    before = np.where(first_wrong > 0, y[np.maximum(first_wrong - 1, 0), column], solution.y_a)
-    return np.where(meets, before, np.nan), high, lost
 
 
 def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lanes, start: Points) -> Segment:

@@ -11,6 +11,7 @@ import numpy as np
 from pathcalc.case.model import Case
 from pathcalc.errors import NoSolutionError, UsageError
 from pathcalc.legs.run import Place
+from pathcalc.path.lanes import mark_open_lanes
 from pathcalc.path.solver import SolvedPath, solve_path
 from pathcalc.path.values import (
     DELTA_KEYS,
@@ -173,9 +174,16 @@ class Solution:
         solved = next(item for item in self.path.legs if item.leg.name == leg)
         return piece_values(self.path, solved, lane)
 
+    def _of_one_lane(self, what: str) -> None:
+        if self._lanes:
+            raise UsageError(
+                f"{what} are of an ordinary solve; of a solve with lanes read ok, reasons, states and legs"
+            )
+
     @cached_property
     def checks(self) -> list[dict[str, Any]]:
         """Self-checks of an ordinary solve: name, at, passed, value, tolerance."""
+        self._of_one_lane("checks")
         from pathcalc.path.checks import all_checks
 
         return all_checks(self)
@@ -183,6 +191,7 @@ class Solution:
     @cached_property
     def limits(self) -> list[dict[str, Any]]:
         """Acceptance limits with their margins (SI)."""
+        self._of_one_lane("limits")
         from pathcalc.path.limits import evaluated_limits
 
         return evaluated_limits(self)
@@ -190,6 +199,7 @@ class Solution:
     @cached_property
     def warnings(self) -> list[dict[str, str]]:
         """What a reader must know beside the numbers: code, at, text."""
+        self._of_one_lane("warnings")
         from pathcalc.path.warnings import all_warnings
 
         return all_warnings(self)
@@ -197,6 +207,7 @@ class Solution:
     @cached_property
     def comparison(self) -> list[dict[str, Any]]:
         """The same path with other equations, where the case asks for it."""
+        self._of_one_lane("comparisons")
         from pathcalc.path.comparison import compared
 
         return compared(self)
@@ -262,7 +273,9 @@ def solve(case: Case, lanes: Mapping[str, Any] | None = None) -> Solution:
     that has no solution is marked; without lanes NoSolutionError is raised.
     """
     path = solve_path(case, lanes)
-    if not lanes:
+    if lanes:
+        mark_open_lanes(path)
+    else:
         trouble = path.setting.status.trouble_of(0)
         if trouble is not None:
             raise NoSolutionError(trouble)

@@ -16,6 +16,7 @@ from pathcalc.errors import Trouble, UsageError
 from pathcalc.legs.integration.segments import BoundaryOf, Integrals, integrate_segments
 from pathcalc.legs.run import Exchange, LegRun, Outcome, Place, Setting, Status
 from pathcalc.path.fluid import card_of, model_of
+from pathcalc.path.lanes import lane_arrays, mark_out_of_range
 from pathcalc.path.start import moles_of, start_place
 from pathcalc.substances import Card
 
@@ -60,10 +61,11 @@ def solve_path(case: Case, lanes: Mapping[str, Any] | None = None, equation: str
     A lane that fails is marked in ``setting.status`` and never stops the others. Raises UsageError for lanes that
     name nothing, InvalidCaseError and NoSolutionError from the choice of fluid and datum.
     """
-    arrays, n = _lane_arrays(lanes)
+    arrays, n = lane_arrays(lanes)
     card = card_of(case)
     model = model_of(case, card, equation)
     setting = _setting(case, model, arrays, n)
+    mark_out_of_range(arrays, setting.status)
     with np.errstate(invalid="ignore", divide="ignore", over="ignore", under="ignore"):
         start = start_place(case, setting)
         setting.moles = moles_of(case, model, start, setting)
@@ -84,17 +86,6 @@ def solve_path(case: Case, lanes: Mapping[str, Any] | None = None, equation: str
             "name start.<key>, surroundings.T, surroundings.p, amount, or <leg>.<key> for a key the leg gives"
         )
     return SolvedPath(case, card, model, setting, start, tuple(solved))
-
-
-def _lane_arrays(lanes: Mapping[str, Any] | None) -> tuple[dict[str, Array], int]:
-    if not lanes:
-        return {}, 1
-    arrays = {address: np.atleast_1d(np.asarray(value, dtype=float)) for address, value in lanes.items()}
-    sizes = {a.size for a in arrays.values()} - {1}
-    if len(sizes) > 1 or any(a.ndim != 1 for a in arrays.values()):
-        raise UsageError("lane values must be one-dimensional and of one length")
-    n = sizes.pop() if sizes else 1
-    return {address: np.broadcast_to(a, (n,)).copy() for address, a in arrays.items()}, n
 
 
 def _setting(case: Case, model: Model, arrays: dict[str, Array], n: int) -> Setting:
@@ -133,6 +124,15 @@ def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -
     run = LegRun(setting, leg, inlet, inlet_name)
     outcome = leg_solver(leg)(leg, run)
     integrals = integrate_segments(setting.model, setting.boundary, outcome.segments, setting.n)
+    setting.status.fail(
+        np.isnan(integrals["ds"]) & np.isfinite(outcome.end.T),
+        Trouble(
+            "path-leaves-range",
+            leg.name,
+            "between its ends the leg passes through states that the equation does not have",
+            "end the leg before it leaves the range (triple point, highest temperature, density), or go another way",
+        ),
+    )
     setting.status.fail(
         ~integrals.converged & np.isfinite(outcome.end.T),
         Trouble(

@@ -66,9 +66,7 @@ JANAF: list[tuple[str, str, str, float, float, float, float, float, str]] = [
 
 def janaf(species: str) -> list[dict[str, float]]:
     lines = (REFERENCE / "janaf_ideal_gas.csv").read_text(encoding="utf-8").splitlines()
-    rows = [
-        row for row in csv.DictReader(x for x in lines if not x.startswith("#")) if row["species"] == species
-    ]
+    rows = [row for row in csv.DictReader(x for x in lines if not x.startswith("#")) if row["species"] == species]
     return [{key: float(row[key]) for key in ("T", "Cp", "S", "H_minus_HTr")} for row in rows]
 
 
@@ -162,9 +160,7 @@ def test_nine_constants_integrate_as_the_report_says(species: dict[str, Any]) ->
         b1, b2 = part["b"]
         x = math.log(T)
         cp = a1 / T**2 + a2 / T + a3 + a4 * T + a5 * T**2 + a6 * T**3 + a7 * T**4
-        h = T * (
-            -a1 / T**2 + a2 * x / T + a3 + a4 * T / 2 + a5 * T**2 / 3 + a6 * T**3 / 4 + a7 * T**4 / 5 + b1 / T
-        )
+        h = T * (-a1 / T**2 + a2 * x / T + a3 + a4 * T / 2 + a5 * T**2 / 3 + a6 * T**3 / 4 + a7 * T**4 / 5 + b1 / T)
         s = -a1 / T**2 / 2 - a2 / T + a3 * x + a4 * T + a5 * T**2 / 2 + a6 * T**3 / 3 + a7 * T**4 / 4 + b2
         return cp, h, s
 

@@ -21,7 +21,6 @@ def right_or_refused(*args, **words):
     assert maxwell.closure <= maxwell.error + 1e-9
 
 
-@pytest.mark.xfail(strict=True, reason="integrated over part of the way only; closure 0.75")
 def test_polytrope_that_dips_below_the_triple_point():
     """From wet CO2 at 227 K to dry at 250 K and half the pressure: p v^n passes below 216.6 K in between."""
     right_or_refused(
@@ -31,7 +30,6 @@ def test_polytrope_that_dips_below_the_triple_point():
     )
 
 
-@pytest.mark.xfail(strict=True, reason="the end lies on another branch than the way; closure 0.13")
 def test_isentrope_of_a_virial_gas_past_its_own_saturation():
     right_or_refused(
         "substance: heptane, equation: virial",
@@ -40,7 +38,6 @@ def test_isentrope_of_a_virial_gas_past_its_own_saturation():
     )
 
 
-@pytest.mark.xfail(strict=True, reason="the entry into the dome is not cut; closure 0.006 to 0.06")
 @pytest.mark.parametrize("ratio", [0.2, 0.25, 0.3])
 def test_polytropic_turbine_from_supercritical_into_the_dome(ratio):
     """Close by the critical point: T/T_c 1.18, p/p_c 3.2 down to a quality of 0.6."""
@@ -51,7 +48,6 @@ def test_polytropic_turbine_from_supercritical_into_the_dome(ratio):
     )
 
 
-@pytest.mark.xfail(strict=True, reason="the little liquid at the end is not cut off; closure 3e-4")
 def test_polytropic_turbine_that_ends_just_inside_the_dome():
     right_or_refused(
         "substance: helium, equation: soave",
@@ -69,7 +65,6 @@ def test_polytropic_turbine_of_dilute_vapour_into_the_dome(ratio):
     )
 
 
-@pytest.mark.xfail(strict=True, reason="closure 2e-11 and 1e-10 against tolerances of 6e-12 and 1e-13")
 @pytest.mark.parametrize(
     ("fluid", "start", "leg"),
     [

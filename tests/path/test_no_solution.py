@@ -130,9 +130,6 @@ def test_refused_with_place_reason_and_remedy(name):
     assert "\n" not in str(caught.value)
 
 
-@pytest.mark.xfail(
-    strict=True, reason="p and v inside the dome below the triple-point pressure give a warm single phase"
-)
 @pytest.mark.parametrize(
     ("fluid", "start"),
     [
@@ -150,7 +147,6 @@ def test_pressure_and_volume_below_the_triple_point(fluid, start):
     assert caught.value.trouble.at == "start"
 
 
-@pytest.mark.xfail(strict=True, reason="the same fault at the end of a leg; closure 0.39")
 def test_polytrope_below_the_triple_point():
     """From CO2 at 220 K, x 0.01, along p v^1.2 to 4.66 bar."""
     with pytest.raises(NoSolutionError):

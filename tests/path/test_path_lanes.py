@@ -169,7 +169,6 @@ def test_a_result_object_is_of_one_solve():
         run("throttling", arrays(CASES["throttling"], 3)).to_dict()
 
 
-@pytest.mark.xfail(strict=True, reason="lane values are not held to the range of their field")
 @pytest.mark.parametrize("efficiency", [-1.0, 2.0])
 def test_an_efficiency_that_cannot_be_is_refused_in_its_lane(efficiency):
     """A case file may not say so either: above 0 and at most 1."""
@@ -177,7 +176,6 @@ def test_an_efficiency_that_cannot_be_is_refused_in_its_lane(efficiency):
     assert solution.ok.tolist() == [True, False]
 
 
-@pytest.mark.xfail(strict=True, reason="a bare ValueError of numpy")
 def test_limits_of_many_lanes():
     """Either a value a lane, or a refusal that says so."""
     solution = solve(

@@ -137,11 +137,7 @@ def test_rejected(case: tuple[str, str, int, int, str, str], tmp_path: Path) -> 
 
 
 def test_all_findings_come_in_one_run(tmp_path: Path) -> None:
-    text = (
-        GOOD.replace("unit: K", "unit: degC")
-        .replace("form: constant", "form: flat")
-        .replace("a: 0.2", "a: big")
-    )
+    text = GOOD.replace("unit: K", "unit: degC").replace("form: constant", "form: flat").replace("a: 0.2", "a: big")
     findings = findings_of(text, tmp_path)
     assert [f.code for f in findings] == ["wrong-unit", "bad-value", "wrong-type"]
     assert [f.line for f in findings] == sorted(f.line for f in findings)
@@ -190,9 +186,7 @@ def test_impossible_order_of_constants(tmp_path: Path) -> None:
     assert "T_triple (190) must be below T_c (180)" in findings[0].message
 
 
-@pytest.mark.parametrize(
-    ("data", "code"), [(b"", "empty-file"), (b"\xff\xfe\x00", "encoding"), (b"[1]", "wrong-type")]
-)
+@pytest.mark.parametrize(("data", "code"), [(b"", "empty-file"), (b"\xff\xfe\x00", "encoding"), (b"[1]", "wrong-type")])
 def test_files_that_are_no_cards(data: bytes, code: str, tmp_path: Path) -> None:
     path = tmp_path / "mine.yaml"
     path.write_bytes(data)

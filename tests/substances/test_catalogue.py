@@ -38,9 +38,7 @@ def test_spellings(spelling: str, name: str) -> None:
 
 
 def test_an_unknown_name_brings_the_nearest() -> None:
-    with pytest.raises(
-        UnknownSubstance, match=r"^no substance is called 'nitrogne'; did you mean nitrogen"
-    ) as caught:
+    with pytest.raises(UnknownSubstance, match=r"^no substance is called 'nitrogne'; did you mean nitrogen") as caught:
         resolve("nitrogne")
     assert caught.value.nearest[0] == "nitrogen"
     assert caught.value.findings[0].code == "unknown-substance"
@@ -104,9 +102,7 @@ sources: {lab: Laboratory sheet 7 (2026)}
 """
 
 
-def test_another_package_may_bring_cards(
-    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, fresh_tables: None
-) -> None:
+def test_another_package_may_bring_cards(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, fresh_tables: None) -> None:
     (tmp_path / "plant-gas.yaml").write_text(MINE, encoding="utf-8")
 
     class Point:

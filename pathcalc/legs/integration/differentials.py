@@ -50,9 +50,16 @@ def _inner(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
 
 
 def differentials(model: Model, nodes: Nodes) -> tuple[Array, Array, Array]:
-    """Integrands, their magnitudes and inherited errors, each (7, nodes, k), in the order of QUANTITIES."""
+    """Integrands, their magnitudes and inherited errors, each (7, nodes, k), in the order of QUANTITIES.
+
+    NaN at nodes that are no states: outside the temperature limits, or mechanically unstable (beyond rounding next
+    to the critical point).
+    """
     T, v, dT, dv = nodes
     t = model.residual.pressure(T, v)
+    low, high = model.T_limits
+    with np.errstate(invalid="ignore"):
+        state = (low * (1.0 - 1e-9) <= T) & (high * (1.0 + 1e-9) >= T) & (t.p_v * v < 1e-6 * np.abs(t.p))
     if np.any(dT):
         cv, cv_error = isochoric_heat_capacity(model, T, v)
     else:
@@ -60,7 +67,7 @@ def differentials(model: Model, nodes: Nodes) -> tuple[Array, Array, Array]:
     heat_by_T, heat_by_v = cv * dT, T * t.p_T * dv
     p_dv = t.p * dv
     pressure_by_T, pressure_by_v = v * t.p_T * dT, v * t.p_v * dv
-    T_ds = heat_by_T + heat_by_v
+    T_ds = np.where(state, heat_by_T + heat_by_v, np.nan)
     v_dp = pressure_by_T + pressure_by_v
     heat_size = np.abs(heat_by_T) + np.abs(heat_by_v)
     push_size = np.abs(pressure_by_T) + np.abs(pressure_by_v)

@@ -64,6 +64,8 @@ def _accumulate(matrix: Array, values: Array) -> Array:
 class Solution:
     """Values of m unknowns along y = ln p from ``y_a`` to ``y_b`` (n,): nodes (m, PANELS, 15, n), ends (m, n).
 
+    ``first`` and ``last`` are the values at the two ends.
+
     ``error`` (m, n) is the estimate of the end values; ``converged`` (n,).
     """
 
@@ -73,6 +75,13 @@ class Solution:
     last: Array
     error: Array
     converged: NDArray[np.bool_]
+    first: Array
+
+    @property
+    def first_volume(self) -> Array:
+        """The second unknown (v, where the unknowns are T and v) at ``y_a``, (n,)."""
+        volume: Array = self.first[1]
+        return volume
 
     def at(self, y: Array, lanes: Lanes) -> Array:
         """Unknowns (m, nodes, k) at ``y`` (nodes, k) of ``lanes`` (k,), by barycentric interpolation."""
@@ -125,7 +134,7 @@ def solve(slopes: Slopes, y_a: Array, y_b: Array, start: Array) -> Solution:
         size = np.maximum(np.abs(end), 1e-300)
         error += size * np.minimum(1.0, (200.0 * np.abs(end - low) / size) ** 1.5)
         here = here + end
-    return Solution(y_a, y_b, values, here, error, converged)
+    return Solution(y_a, y_b, values, here, error, converged, start)
 
 
 def one_phase_slopes(model: Model, factor: Array) -> Slopes:
@@ -199,6 +208,23 @@ class OnePhaseCurve:
     def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
         """See :class:`Family`."""
         return {"T": ends.T_a, "v": ends.v_a}
+
+
+def end_mismatch(model: Model, curve: OnePhaseCurve, ends: Ends, lanes: Lanes) -> Array:
+    """What the integrals along a curve owe to its ends being solved for, in the order of QUANTITIES, (7, k).
+
+    The curve ends where its differential equation was solved to; the state there is found again from p and h.
+    """
+    nodes = curve.nodes(model, ends, np.array([0.0, 1.0])[:, None] + np.zeros(lanes.size), lanes)
+    total = np.zeros((7, lanes.size))
+    for k, (T, v) in enumerate(((ends.T_a, ends.v_a), (ends.T_b, ends.v_b))):
+        t = thermal(model, T, v)
+        dT, dv = np.abs(nodes.T[k] - T), np.abs(nodes.v[k] - v)
+        heat = t.cv * dT + T * t.p_T * dv
+        push = v * (t.p_T * dT + np.abs(t.p_v) * dv)
+        p_dv = t.p * dv
+        total += np.stack([heat / T, heat + p_dv, heat + push, p_dv, push, heat, (heat + push) / T])
+    return total
 
 
 @dataclass(frozen=True)

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
-from pathcalc.equilibrium.saturation import Saturation, saturation_at_T
+from pathcalc.equilibrium.saturation import NEAR_CRITICAL, Saturation, saturation_at_T
 from pathcalc.legs.integration.bracket import bracketed_root
 
 POINTS = 96
@@ -36,7 +36,8 @@ class Cuts:
     """Where the paths of n lanes meet the boundary, up to K times each, in order along the path.
 
     ``progress`` (K, n) is the coordinate of the cut, infinite where there is none; ``T``, ``p``, ``v`` the
-    state there; ``count`` (n,) the number of cuts of each lane.
+    state there; ``count`` (n,) the number of cuts of each lane. ``at_start`` and ``at_end`` (n,): the path begins or
+    ends on the boundary, within MARGIN.
     """
 
     progress: Array
@@ -45,6 +46,8 @@ class Cuts:
     v: Array
     vapour: NDArray[np.bool_]
     count: NDArray[np.intp]
+    at_start: NDArray[np.bool_]
+    at_end: NDArray[np.bool_]
 
 
 def side_of(model: Model, sat: Saturation, vapour: bool) -> Side:
@@ -88,12 +91,15 @@ class SaturationLine:
         lanes: int,
         mismatch: Callable[[Side, NDArray[np.intp] | None], Array],
         progress: Callable[[Side, NDArray[np.intp]], Array],
+        inside: Callable[[Side, Side, NDArray[np.intp]], Array],
     ) -> Cuts:
         """Cuts of the paths with the boundary.
 
         ``mismatch(side, lane)`` is zero where the boundary meets the path of a lane: arrays (G, 1) of a side
         against all lanes when ``lane`` is None, else arrays (k,) against those lanes. ``progress`` is the
-        coordinate of a boundary state along the path; cuts within MARGIN of an end are left out.
+        coordinate of a boundary state along the path; cuts within MARGIN of an end are not cut. Where a path
+        passes the critical point itself, no saturated state lies on it in floating point: it is cut at the last
+        temperature that has a saturation, at the overall volume that ``inside`` gives there.
         """
         found: list[tuple[NDArray[np.intp], Array, Side, bool]] = []
         for vapour, table in ((False, self.liquid), (True, self.vapour)):
@@ -104,8 +110,9 @@ class SaturationLine:
             if lane.size == 0:
                 continue
             side = self._refine(vapour, table.T[cell], table.T[cell + 1], lane.astype(np.intp), mismatch)
+            side = self._at_critical_point(side, cell == table.T.size - 2, lane.astype(np.intp), inside)
             along = progress(side, lane.astype(np.intp))
-            keep = (along > MARGIN) & (along < 1.0 - MARGIN) & np.isfinite(along)
+            keep = np.isfinite(along)
             kept = Side(*(a[keep] for a in side))
             found.append((lane[keep].astype(np.intp), along[keep], kept, vapour))
         return sorted_cuts(lanes, found)
@@ -126,22 +133,49 @@ class SaturationLine:
         def miss(T: Array) -> Array:
             return np.broadcast_to(mismatch(at(T), lane), T.shape)
 
-        ceiling = self.model.T_c * (1.0 - 1e-9)
-        return at(bracketed_root(miss, low, np.minimum(high, ceiling)))
+        return at(bracketed_root(miss, low, np.minimum(high, self._ceiling)))
+
+    @property
+    def _ceiling(self) -> float:
+        """The highest temperature at which saturation is solved for."""
+        return self.model.T_c * (1.0 - 2.0 * NEAR_CRITICAL)
+
+    def _at_critical_point(
+        self,
+        side: Side,
+        last_cell: NDArray[np.bool_],
+        lane: NDArray[np.intp],
+        inside: Callable[[Side, Side, NDArray[np.intp]], Array],
+    ) -> Side:
+        lost = np.isnan(side.T) & last_cell
+        if not lost.any():
+            return side
+        sat = saturation_at_T(self.model, np.full(int(lost.sum()), self._ceiling))
+        liquid, gas = side_of(self.model, sat, False), side_of(self.model, sat, True)
+        v = inside(liquid, gas, lane[lost])
+        x = np.clip((v - liquid.v) / (gas.v - liquid.v), 0.0, 1.0)
+        merged = [np.array(a) for a in side]
+        for k, (low, high) in enumerate(zip(liquid, gas, strict=True)):
+            merged[k][lost] = (1.0 - x) * low + x * high
+        return Side(*merged)
 
 
 def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, bool]]) -> Cuts:
     """Cuts of all lanes from lists of (lanes, coordinates, states, vapour or liquid), in order along each path."""
     count = np.zeros(lanes, dtype=np.intp)
+    at_start, at_end = np.zeros(lanes, dtype=bool), np.zeros(lanes, dtype=bool)
     if not found:
         empty = np.empty((0, lanes))
-        return Cuts(empty, empty, empty, empty, np.empty((0, lanes), dtype=bool), count)
+        return Cuts(empty, empty, empty, empty, np.empty((0, lanes), dtype=bool), count, at_start, at_end)
     lane = np.concatenate([item[0] for item in found])
     along = np.concatenate([item[1] for item in found])
+    at_start[lane[np.abs(along) <= MARGIN]] = True
+    at_end[lane[np.abs(along - 1.0) <= MARGIN]] = True
     T, p, v = (np.concatenate([getattr(item[2], key) for item in found]) for key in ("T", "p", "v"))
     vapour = np.concatenate([np.full(item[0].size, item[3]) for item in found])
-    np.add.at(count, lane, 1)
-    order = np.lexsort((along, lane))
+    keep = np.flatnonzero((along > MARGIN) & (along < 1.0 - MARGIN))
+    np.add.at(count, lane[keep], 1)
+    order = keep[np.lexsort((along[keep], lane[keep]))]
     column = lane[order]
     row = np.arange(column.size) - np.searchsorted(column, column)
 
@@ -157,4 +191,6 @@ def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, boo
         table(v, np.nan),
         table(vapour.astype(float), 0.0) > 0.5,
         count,
+        at_start,
+        at_end,
     )

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
 import numpy as np
@@ -14,8 +14,9 @@ from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
 from pathcalc.legs.integration.families import Ends, Family, HeatedWithDrop, Isotherm, Lanes, Polytrope
+from pathcalc.legs.integration.polytropic_efficiency import OnePhaseCurve, end_mismatch
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
-from pathcalc.legs.integration.saturation_line import MARGIN, Cuts, SaturationLine, Side, sorted_cuts
+from pathcalc.legs.integration.saturation_line import Cuts, SaturationLine, Side, sorted_cuts
 from pathcalc.legs.integration.two_phase import level_piece, sloping_piece
 
 COUNT = len(QUANTITIES)
@@ -112,6 +113,7 @@ def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]
         return [_piece(model, segment, ends, lanes, segment.region == "dome")]
     cuts = _level_cuts(model, segment) if segment.family.level_in_dome else _cuts(boundary, segment, ends)
     inside = _starts_inside(model, segment, ends, cuts, at_risk)
+    ends = _without_contradictions(segment, ends, cuts, inside)
     pieces: list[Piece] = []
     for j in range(int(cuts.count.max(initial=0)) + 1):
         here = lanes[cuts.count >= j]
@@ -125,7 +127,7 @@ def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]
 
 
 _WARM = 1.25
-"""Lanes up to this multiple of the critical temperature are looked at where the temperature may dip between the ends."""
+"""Up to this multiple of the critical temperature a lane is looked at where the temperature may dip on the way."""
 
 
 def _may_meet_dome(model: Model, segment: Segment) -> NDArray[np.bool_]:
@@ -147,7 +149,8 @@ def _cuts(boundary: BoundaryOf, segment: Segment, ends: Ends) -> Cuts:
     def progress(side: Side, lane: Lanes) -> Array:
         return _progress(segment, side, lane)
 
-    return boundary.line().cuts(ends.T_a.size, segment.family.mismatch, progress)
+    family = segment.family
+    return boundary.line().cuts(ends.T_a.size, family.mismatch, progress, family.dome_volume)
 
 
 def _level_cuts(model: Model, segment: Segment) -> Cuts:
@@ -162,7 +165,7 @@ def _level_cuts(model: Model, segment: Segment) -> Cuts:
         none = np.full(lanes.size, np.nan)
         side = Side(sat.T[lanes], sat.p[lanes], v[lanes], none, none, none, sat.dp_dT[lanes])
         along = _progress(segment, side, lanes)
-        keep = (along > MARGIN) & (along < 1.0 - MARGIN)
+        keep = np.isfinite(along)
         found.append((lanes[keep], along[keep], Side(*(x[keep] for x in side)), vapour))
     return sorted_cuts(a.T.size, found)
 
@@ -180,15 +183,13 @@ def _starts_inside(
 ) -> NDArray[np.bool_]:
     """Whether the first piece of each lane lies in the dome."""
 
-    def strictly_inside(points: Points) -> NDArray[np.bool_]:
-        return (points.x > 0.0) & (points.x < 1.0)
-
+    inside_a, outside_a = _sure(segment.a, cuts.at_start)
+    inside_b, outside_b = _sure(segment.b, cuts.at_end)
     odd = cuts.count % 2 == 1
-    outside_a, outside_b = np.isnan(segment.a.x), np.isnan(segment.b.x)
-    inside = strictly_inside(segment.a)
-    from_b = ~outside_a & ~inside & (strictly_inside(segment.b) | outside_b)
-    inside = np.where(from_b, strictly_inside(segment.b) ^ odd, inside)
-    unknown = ~outside_a & ~strictly_inside(segment.a) & ~from_b & at_risk
+    unknown = ~inside_a & ~outside_a
+    from_b = unknown & (inside_b | outside_b)
+    inside = np.where(from_b, inside_b ^ odd, inside_a)
+    unknown &= ~from_b & at_risk
     if unknown.any():
         lanes = np.flatnonzero(unknown).astype(np.intp)
         first = _part(ends, cuts, 0, lanes)
@@ -196,6 +197,26 @@ def _starts_inside(
         inside[lanes] = ~np.isnan(middle.x)
     result: NDArray[np.bool_] = inside & at_risk
     return result
+
+
+def _sure(points: Points, on_boundary: NDArray[np.bool_]) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+    """Which lanes surely lie inside the dome, and which surely outside: neither, where they lie on its boundary."""
+    inside = (points.x > 0.0) & (points.x < 1.0) & ~on_boundary
+    return inside, np.isnan(points.x) & ~on_boundary
+
+
+def _without_contradictions(segment: Segment, ends: Ends, cuts: Cuts, inside: NDArray[np.bool_]) -> Ends:
+    """NaN ends in lanes whose cuts do not lead from the phase of the start to that of the end.
+
+    Then a cut lies where there is no saturation (below the triple point): the path leaves the range in between.
+    """
+    inside_a, outside_a = _sure(segment.a, cuts.at_start)
+    inside_b, outside_b = _sure(segment.b, cuts.at_end)
+    ends_inside = inside ^ (cuts.count % 2 == 1)
+    wrong = (inside_a & ~inside) | (outside_a & inside) | (inside_b & ~ends_inside) | (outside_b & ends_inside)
+    if not wrong.any():
+        return ends
+    return ends._replace(T_b=np.where(wrong, np.nan, ends.T_b), v_b=np.where(wrong, np.nan, ends.v_b))
 
 
 def _part(ends: Ends, cuts: Cuts, j: int, lanes: Lanes) -> Ends:
@@ -226,6 +247,8 @@ def _piece(model: Model, segment: Segment, ends: Ends, local: Lanes, in_dome: bo
 
     if not in_dome:
         total = integrate(integrand, COUNT, local.size, _floors(model, ends))
+        if isinstance(family, OnePhaseCurve):
+            total = replace(total, error=total.error + end_mismatch(model, family, ends, local))
     elif family.level_in_dome:
         total = level_piece(model, ends)
     else:

@@ -67,21 +67,25 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
     near_b = np.where(vapour, last.v_vapour, last.v_liquid)
     out = _Crossing.of(ends.T_a, first.p, first.dp_dT, ends.v_a, near_a)
     back = _Crossing.of(ends.T_b, last.p, last.dp_dT, near_b, ends.v_b)
-    span = ends.T_b - ends.T_a
+    # the boundary volumes have a square-root singularity at the critical point: x is linear in sqrt(T_c - T)
+    root_a, root_b = (np.sqrt(np.maximum(model.T_c - T, 0.0)) for T in (ends.T_a, ends.T_b))
+    span = root_b - root_a
 
     def integrand(x: Array, k: NDArray[np.intp]) -> tuple[Array, Array, Array]:
-        T = ends.T_a[k] + x * span[k]
+        root = root_a[k] + x * span[k]
+        T = model.T_c - root * root
         sat = saturation_at_T(model, T.reshape(-1))
         liquid, gas = (_shaped(side_of(model, sat, is_gas), T) for is_gas in (False, True))
         use = np.broadcast_to(vapour[k], T.shape)
         v = np.where(use, gas.v, liquid.v)
         terms = model.residual.pressure(T, v)
-        dT = np.broadcast_to(span[k], T.shape)
+        dT = -2.0 * root * span[k]
         dv = (liquid.dp_dT - terms.p_T) / terms.p_v * dT
         values, sizes, inherited = differentials(model, Nodes(T, v, dT, dv))
         push = family.dome_volume(liquid, gas, lanes[k]) * liquid.dp_dT * dT
-        values[4], sizes[4], inherited[4] = push, np.abs(push), 0.0
-        values[6], sizes[6], inherited[6] = push / T, np.abs(push) / T, 0.0
+        values[4], sizes[4] = push, np.abs(push)
+        values[6], sizes[6] = push / T, np.abs(push) / T
+        inherited = sizes * _looseness(model, T, liquid, gas, v, terms.p_v)
         return values, sizes, inherited
 
     along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10)
@@ -101,6 +105,17 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
     error[5], error[6] = error[1] + error[3], error[0] + along.error[6]
     good = along.converged & (first.reason == 0) & (last.reason == 0)
     return Quadrature(value, error, size, good, along.panels)
+
+
+def _looseness(model: Model, T: Array, liquid: Side, gas: Side, v: Array, p_v: Array) -> Array:
+    """Relative error of a boundary volume: equal Gibbs energy is met to 1e-14 R T, which fixes the pressure to
+
+    that over the change of volume, and the pressure fixes the volume by its compressibility.
+    """
+    change = np.maximum(gas.v - liquid.v, 1e-300)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        loose: Array = 1e-14 * model.R * T / change / np.abs(p_v * v)
+    return np.minimum(np.where(np.isfinite(loose), loose, 0.0), 1e-3)
 
 
 def _shaped(side: Side, like: Array) -> Side:
