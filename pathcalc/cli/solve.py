@@ -143,13 +143,21 @@ def _missed(solution: Solution, result: dict[str, Any]) -> list[str]:
             if row["passed"]:
                 continue
             kind = kind_of(row["quantity"])
+            if row["value"] is None:
+                lines.append(plain(f"limit missed: {row['quantity']} has no value in this state"))
+                continue
             low = row["min"] is not None and row["value"] < row["min"]
             bound = f"at least {ctx.brief(kind, row['min'])}" if low else f"at most {ctx.brief(kind, row['max'])}"
             lines.append(plain(f"limit missed: {row['quantity']} = {ctx.measure(kind, row['value'])}, not {bound}"))
+    if not all(row["passed"] for row in result["checks"]):
+        from pathcalc.path.checks import MEANING
     for row in result["checks"]:
         if not row["passed"]:
             at = f" at {row['at']}" if row["at"] else ""
-            lines.append(f"check failed: {row['name']}{at}, {row['value']!r} against {row['tolerance']!r}")
+            meaning = MEANING.get(row["name"], "")
+            lines.append(
+                f"check failed: {row['name']}{at}: {row['value']:.3g} against {row['tolerance']:.2g}; {meaning}"
+            )
     return lines
 
 

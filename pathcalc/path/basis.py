@@ -2,9 +2,14 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
+import numpy as np
+
+from pathcalc.equations.ideal_gas_text import coefficients
+from pathcalc.equations.ideal_gas_text import formula as formula_of
 from pathcalc.path.steps import Basis, Constant
+from pathcalc.substances import Card
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
@@ -51,10 +56,8 @@ def basis_of(solution: Solution) -> Basis:
         for p in info.parameters
     )
     ideal = model.ideal
-    form = getattr(ideal, "form", "given")
+    formula, rows = _ideal_gas(card, ideal)
     source = getattr(ideal, "source", "")
-    formula = getattr(ideal, "formula", "")
-    text = f"{form}" + (f": {formula}" if isinstance(formula, str) and formula else "")
     low, high = ideal.T_min, ideal.T_max
     reach = "constant, no range stated" if not high < 1e9 else f"{low:.6g} K to {high:.6g} K"
     return Basis(
@@ -67,7 +70,26 @@ def basis_of(solution: Solution) -> Basis:
         parameters=parameters,
         equation_source=info.source,
         range_text=info.range_text,
-        ideal_gas_text=text,
+        ideal_gas_text=str(getattr(ideal, "form", "given")),
         ideal_gas_source=card.sources.get(source, source) or "given in the case",
         ideal_gas_range=reach,
+        ideal_gas_formula=formula,
+        ideal_gas_parameters=rows,
+        remarks=tuple(card.remarks),
     )
+
+
+def _ideal_gas(card: Card, ideal: Any) -> tuple[str, tuple[Constant, ...]]:
+    """Formula and coefficients of the ideal-gas heat capacity; the R of its source among them."""
+    name = getattr(ideal, "name", "")
+    if name not in [item.name for item in card.ideal_gas]:
+        value = float(ideal.cp0_R(np.array([298.15]))[0])
+        return r"\frac{c_p^\circ}{R} = c_1", (Constant("c_1", "constant", value, "1", "given in the case"),)
+    item = card.correlation(name)
+    source = card.citation(item.source)
+    rows = [Constant("R", "gas constant of the source", item.gas_constant, "J/(mol K)", source)]
+    several = len(item.ranges) > 1
+    for c in coefficients(item):
+        reach = f"{c.T_min:g} K to {c.T_max:g} K" if several else "coefficient"
+        rows.append(Constant(c.symbol, reach, c.value, c.unit, source))
+    return formula_of(item), tuple(rows)

@@ -24,6 +24,21 @@ if TYPE_CHECKING:
 
 Check = dict[str, Any]
 
+MEANING = {
+    "closure": "the two routes to the changes of s, u and h differ by more than their error",
+    "first law": "heat and work do not add up to the change of energy",
+    "heat as integral of T ds": "the heat of a reversible leg is not the integral of T ds",
+    "second law": "entropy, J/(kg K), would be destroyed: heat would flow from a colder to a warmer body, or a machine "
+    "would be better than reversible; look at the reservoir and the target of the leg",
+    "heat flows to the colder body": "the fluid passes the temperature of the reservoir (by so many K), so that part "
+    "of the heat would flow from the colder to the warmer body; look at the temperature of the reservoir",
+    "exergy balance": "exergy brought in less exergy destroyed is not the change of exergy",
+    "path independence": "another way between the same states gives other changes of s, u and h",
+    "cycle closes": "the last state is not the first one",
+    "energy balance of the path": "heat and work of all legs do not add up to the change of energy",
+}
+"""What it means when a check fails, for messages."""
+
 
 def _row(name: str, at: str, value: float, tolerance: float, passed: bool | None = None) -> Check:
     good = bool(value <= tolerance) if passed is None else passed
@@ -56,6 +71,7 @@ def _leg_checks(solution: Solution, solved: SolvedLeg) -> list[Check]:
     if solved.outcome.reversible:
         rows.append(_heat_as_integral(solution, solved, rounding))
     rows.append(_second_law(solution, solved))
+    rows.extend(_reservoir_side(solution, solved))
     rows.append(_exergy_balance(solution, solved, rounding))
     rows.extend(_path_independence(solution, solved, rounding))
     return rows
@@ -103,6 +119,21 @@ def _second_law(solution: Solution, solved: SolvedLeg) -> Check:
     tolerance = error + float(rounding_of(solution.path, solved)[0]) * scale
     value = float(solved.entropy_generated[0]) / M
     return _row("second law", solved.leg.name, value, tolerance, passed=value >= -tolerance)
+
+
+def _reservoir_side(solution: Solution, solved: SolvedLeg) -> list[Check]:
+    """Heat flows from the warmer to the colder body all along the leg, not only in sum; K, largest wrong step.
+
+    Along a leg with heat the temperature is at its extremes at the ends.
+    """
+    reservoir = getattr(solved.leg, "reservoir", None)
+    if reservoir is None:
+        return []
+    T_res = float(np.asarray(solution.path.setting.molar(reservoir))[0])
+    ends = float(solved.inlet.T[0]), float(solved.end.T[0])
+    heat = float(solved.exchange.heat[0])
+    wrong = 0.0 if heat == 0.0 else max(ends) - T_res if heat > 0.0 else T_res - min(ends)
+    return [_row("heat flows to the colder body", solved.leg.name, max(wrong, 0.0), 1e-6 * T_res)]
 
 
 def _exergy_balance(solution: Solution, solved: SolvedLeg, rounding: float) -> Check:

@@ -235,6 +235,18 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
                 note="Every small step of the machine has this efficiency; solved along ln p by collocation.",
             )
         )
+        push = float(solved.integrals["v_dp"][0]) / model_M
+        up = b.p >= a.p
+        steps.append(
+            Step(
+                title="The same by the integral of v dp along the way",
+                formula=rf"w={sense}\int v\,\mathrm{{d}}p",
+                numbers=rf"\frac{{{shown(push, 'energy')}}}{{{number(poly.value)}}}"
+                if up
+                else rf"{number(poly.value)}\times {bracketed(push, 'energy')}",
+                result=with_unit(push / poly.value if up else push * poly.value, "energy"),
+            )
+        )
     steps.append(Step(title, formula, numbers, with_unit(leg.work, "energy"), note=note))
     return [*steps, *closed_form_steps(solution, solved, "work")]
 
@@ -281,7 +293,9 @@ def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
     carried = leg["delta"]["s"] - leg.entropy_generated
     return [
         Step(
-            title="Entropy generated, heat crossing at the fluid's own temperature",
+            title="Entropy generated, heat crossing at the fluid's own temperature"
+            if leg.heat
+            else "Entropy generated",
             formula=rf"s_\mathrm{{gen}}=\Delta s-{formulas['boundary']}",
             numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{bracketed(carried, 'entropy')}",
             result=with_unit(leg.entropy_generated, "entropy"),
@@ -321,6 +335,7 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
         }[(kind, flow)]
         amount = r"\dot m" if flow else "m"
         found[f"totals.{key}"] = [
+            _amount_step(solution),
             Step(
                 title="Sum over the legs",
                 formula=rf"{amount}\sum_i {symbol}_i"
@@ -329,6 +344,23 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
                 numbers=rf"{number(mass)}\times\left(" + "+".join(bracketed(p, kind) for p in parts) + r"\right)",
                 result=rf"{signed(solution.totals[key] * 1e-3)}\ {unit}".replace("(", "").replace(")", ""),
                 note="Legs in order: " + ", ".join(solution.legs) + ".",
-            )
+            ),
         ]
     return found
+
+
+def _amount_step(solution: Solution) -> Step:
+    """How the amount became a mass."""
+    path, q = solution.path, solution.case.amount
+    assert path.setting.moles is not None
+    flow, M = path.setting.flow, path.model.M
+    moles = float(path.setting.moles[0])
+    unit = r"\mathrm{kg/s}" if flow else r"\mathrm{kg}"
+    formula = r"\dot m=\dot n\,M" if flow else r"m=n\,M"
+    return Step(
+        title="Amount",
+        formula=formula,
+        numbers=rf"{number(moles)}\times {number(M)}",
+        result=rf"{number(moles * M)}\ {unit}",
+        note="" if q is None else f"amount: {q.text}",
+    )

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from pathcalc.errors import NoSolutionError, Trouble
-
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
     from pathcalc.quantities.values import Quantity
@@ -14,33 +12,27 @@ if TYPE_CHECKING:
 def evaluated_limits(solution: Solution) -> list[dict[str, Any]]:
     """One row a limit: quantity, value, min, max (SI, per kilogram), passed, margin.
 
-    The margin is the distance to the nearer bound, negative where it is missed. Raises NoSolutionError where the
-    quantity has no value (a quality outside the dome, a total without an amount).
+    The margin is the distance to the nearer bound, negative where it is missed. A quantity that has no value (a
+    quality outside the dome) does not meet its limit: value and margin are None.
     """
     rows: list[dict[str, Any]] = []
     M = solution.path.model.M
     for limit in solution.case.limits:
         value = solution.quantity(limit.quantity)
-        if value is None or isinstance(value, str) or value != value:
-            raise NoSolutionError(
-                Trouble(
-                    "limit-without-value",
-                    limit.quantity,
-                    "the limit is on a quantity that has no value in this state",
-                    "put the limit on another quantity, or give the case an amount if it is a total",
-                )
-            )
+        known = isinstance(value, float) and value == value
         low, high = _per_mass(limit.min, M), _per_mass(limit.max, M)
-        margins = [value - low] if low is not None else []
-        margins += [high - value] if high is not None else []
-        margin = min(margins)
+        margin = None
+        if known:
+            margins = [value - low] if low is not None else []
+            margins += [high - value] if high is not None else []
+            margin = min(margins)
         rows.append(
             {
                 "quantity": limit.quantity,
-                "value": value,
+                "value": value if known else None,
                 "min": low,
                 "max": high,
-                "passed": bool(margin >= 0.0),
+                "passed": margin is not None and margin >= 0.0,
                 "margin": margin,
             }
         )

@@ -56,5 +56,7 @@ def with_unit(value: float, kind: str, digits: int = DIGITS) -> str:
 
 
 def uncertain(value: float, error: float, kind: str) -> str:
-    """A value with its integration error (two digits)."""
+    """A value with its integration error (two digits); 0 where the value is within that error."""
+    if abs(value) <= error:
+        value = 0.0
     return rf"{with_unit(value, kind)}\quad(\text{{integration error}}\le {number(error * _SCALE[kind], 2)})"

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from pathcalc.equations.properties import thermal
+from pathcalc.legs.run import Place
 from pathcalc.path.maths import bracketed, number, shown, with_unit
 from pathcalc.path.steps import Step
 from pathcalc.quantities.values import Quantity, Relative
@@ -60,11 +62,13 @@ def state_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
     name, state = solved.leg.name, solution.states[solved.leg.name]
     fixed = _what_fixes(solution, solved)
     found: dict[str, list[Step]] = {}
+    if state.x == state.x:
+        found[f"{name}.x"] = _quality_steps(solution, name, solved.end)
     for key, (symbol, kind) in SHOWN.items():
         value = state[key]
         if value != value:
             continue
-        found[f"{name}.{key}"] = [
+        found[f"{name}.{key}"] = found.get(f"{name}.{key}", []) + [
             Step(
                 title="State at the end of the leg",
                 formula=rf"{symbol}_2",
@@ -73,6 +77,31 @@ def state_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
             )
         ]
     return found
+
+
+def _quality_steps(solution: Solution, name: str, place: Place) -> list[Step]:
+    """The coexisting phases and the lever rule."""
+    M, model = solution.path.model.M, solution.path.model
+    T = place.points.T
+    v_l, v_v = place.points.v_liquid, place.points.v_vapour
+    liquid, vapour = thermal(model, T, v_l), thermal(model, T, v_v)
+    state = solution.states[name]
+    low, high = float(v_l[0]) / M, float(v_v[0]) / M
+    phases = "; ".join(
+        f"{text}: v = {volume:.7g} m3/kg, h = {float(t.h[0]) / M / 1e3:.7g} kJ/kg, "
+        f"s = {float(t.s[0]) / M / 1e3:.7g} kJ/(kg K)"
+        for text, volume, t in (("saturated liquid", low, liquid), ("saturated vapour", high, vapour))
+    )
+    return [
+        Step(
+            title="Quality by the lever rule",
+            formula=r"x=\frac{v-v'}{v''-v'}",
+            numbers=rf"\frac{{{number(state.v)}-{number(low)}}}{{{number(high)}-{number(low)}}}",
+            result=with_unit(state.x, "none"),
+            note=f"Coexisting at {state.T:.7g} K and {state.p / 1e3:.7g} kPa, from equal pressure and equal Gibbs "
+            f"energy of the phases. {phases}.",
+        )
+    ]
 
 
 def _what_fixes(solution: Solution, solved: SolvedLeg) -> str:
@@ -126,6 +155,7 @@ def exergy_steps(solution: Solution, name: str) -> list[Step]:
             formula,
             numbers,
             with_unit(state.exergy, "energy"),
-            note=f"Surroundings: {T0:.6g} K, {p0:.6g} Pa; same composition.",
+            note=f"The dead state (index 0) is the fluid at the {T0:.6g} K and {p0 / 1e3:.6g} kPa of the surroundings; "
+            "its properties come from the equation of state there.",
         )
     ]

@@ -102,3 +102,6 @@ class Basis:
     ideal_gas_text: str
     ideal_gas_source: str
     ideal_gas_range: str
+    ideal_gas_formula: str = ""
+    ideal_gas_parameters: tuple[Constant, ...] = ()
+    remarks: tuple[str, ...] = ()

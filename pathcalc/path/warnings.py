@@ -2,7 +2,7 @@
 
 Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
 virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed,
-comparison-without-shift.
+comparison-without-shift, limit-without-value.
 """
 
 from __future__ import annotations
@@ -98,10 +98,16 @@ def _of_equation(solution: Solution) -> list[Warning_]:
 
 def _of_legs(solution: Solution) -> list[Warning_]:
     rows: list[Warning_] = []
-    for solved in solution.path.legs:
-        if any(piece.in_dome for piece in solved.integrals.pieces):
-            text = "the leg passes through the two-phase region; it is integrated piece by piece, in equilibrium"
-            rows.append(_warning("two-phase", solved.leg.name, text))
+    through = [leg.leg.name for leg in solution.path.legs if any(p.in_dome for p in leg.integrals.pieces)]
+    if through:
+        text = "passes through the two-phase region; integrated piece by piece, the phases in equilibrium"
+        rows.append(_warning("two-phase", ", ".join(through), text))
+    for row in solution.limits:
+        if row["value"] is None:
+            name = row["quantity"].rpartition(".")[0]
+            phase = solution.states[name].phase if name in solution.states else ""
+            text = f"the limit is on a quantity without a value here (phase: {phase}); it counts as missed"
+            rows.append(_warning("limit-without-value", row["quantity"], text))
     if solution.case.fluid.volume_shift is not None and solution.case.report.compare_with:
         text = "the other equations are solved without the volume shift of the case: their dense states are not alike"
         rows.append(_warning("comparison-without-shift", "comparison", text))

@@ -44,11 +44,14 @@ WORDS: Final[dict[str, str]] = {
     "verdict.limits.none": "No limits are stated in the case: nothing was accepted or refused.",
     "verdict.limits.met": "{n} of {n} met.",
     "verdict.limits.missed": "{missed} of {n} missed: {names}.",
+    "verdict.limits.miss": "{quantity} = {value}, allowed {side} {limit}",
+    "verdict.limits.undefined": "{quantity} has no value in this state",
     "verdict.tightest": "Tightest: {quantity} = {value}, {side} {limit}, margin {margin}.",
     "verdict.side.min": "at least",
     "verdict.side.max": "at most",
     "verdict.checks.passed": "{n} of {n} of the program’s own checks passed.",
-    "verdict.checks.failed": "{failed} of {n} of the program’s own checks failed: {names}. Do not use the results.",
+    "verdict.checks.failed": "{failed} of {n} of the program’s own checks failed: {names}. Do not use the results "
+    "before the cause is found.",
     "verdict.checks.none": "No checks were recorded.",
     "verdict.warnings.none": "No warnings.",
     "verdict.warnings.one": "1 warning; it stands at the head of the results.",
@@ -74,7 +77,7 @@ WORDS: Final[dict[str, str]] = {
     "basis.count": "{n} inputs: {sourced} with a source, {unsourced} without.",
     "basis.pressure": "Pressures are absolute unless marked gauge. Gauge readings were taken above the "
     "surroundings’ {ambient}.",
-    "basis.uncertainty": "Stated uncertainties are listed, not propagated, in this document.",
+    "basis.uncertainty": "Stated uncertainties of inputs are listed; results and margins do not include them.",
     "basis.caption.inputs": "Inputs as written in the case, and their SI values",
     "basis.caption.sources": "Sources named in the case",
     "basis.nosource": "no source given",
@@ -120,6 +123,9 @@ WORDS: Final[dict[str, str]] = {
     "fluid.equation": "equation of state",
     "fluid.ideal": "ideal-gas heat capacity",
     "fluid.caption.constants": "Constants of the fluid",
+    "fluid.caption.ideal": "Coefficients of the ideal-gas heat capacity",
+    "fluid.ideal.formula": "isobaric heat capacity of the ideal gas",
+    "fluid.remarks": "Remarks on the substance",
     "fluid.caption.parameters": "Parameters of the equation",
     # method
     "method.title": "Method",
@@ -131,7 +137,8 @@ WORDS: Final[dict[str, str]] = {
     "with route 1, but neither its formulas nor its quadrature. It cannot show that the equation of state "
     "suits the fluid.",
     "method.closure": "The difference of the routes is the closure of the leg. It must lie within the error "
-    "estimate of the quadrature, or the check fails.",
+    "estimate of the quadrature and what rounding may leave between the two (64 units in the last place of the "
+    "values that are subtracted), or the check fails; the table of checks gives the tolerance used.",
     "method.dsT": "entropy in T and v",
     "method.dsp": "entropy in T and p",
     "method.duT": "internal energy in T and v",
@@ -198,8 +205,9 @@ WORDS: Final[dict[str, str]] = {
     # worked
     "worked.title": "Formulas with numbers",
     "worked.none": "No worked steps were recorded.",
-    "worked.lead": "Each result as symbols, then numbers, then result. Properties that come from the "
-    "equation of state without a further step are in the state tables.",
+    "worked.lead": "Each result as symbols, then numbers, then result. All formulas use K, kPa, m³/kg, kJ/kg and "
+    "kJ/(kg K), which need no conversion factors. Properties that come from the equation of state without a further "
+    "step are in the state tables.",
     "worked.for": "For {quantities}",
     "worked.source": "Source: {source}",
     # comparison

@@ -75,8 +75,14 @@ def section(ctx: Context) -> Section:
         blocks.append(_symbols(ctx, "fluid.caption.constants", basis.constants, cited))
     if basis.parameters:
         blocks.append(_symbols(ctx, "fluid.caption.parameters", basis.parameters, cited))
+    if basis.ideal_gas_formula:
+        blocks.append(Formulas(((basis.ideal_gas_formula, say("fluid.ideal.formula")),)))
+    if basis.ideal_gas_parameters:
+        blocks.append(_symbols(ctx, "fluid.caption.ideal", basis.ideal_gas_parameters, cited))
     if cited.texts:
         blocks += [Paragraph(say("fluid.sources")), Bullets(tuple(cited.listed()))]
+    if basis.remarks:
+        blocks += [Paragraph(say("fluid.remarks")), Bullets(tuple(basis.remarks))]
     return Section("fluid", say("fluid.title"), tuple(blocks))
 
 

@@ -48,7 +48,7 @@ def _limits(ctx: Context) -> Outcome:
         return Outcome(label, say("verdict.limits.none"), "plain")
     missed = [x for x in limits if not x["passed"]]
     if missed:
-        names = ", ".join(f"{x['quantity']} = {ctx.measure(kind_of(x['quantity']), x['value'])}" for x in missed)
+        names = ", ".join(_miss(ctx, x) for x in missed)
         text = say("verdict.limits.missed", missed=len(missed), n=len(limits), names=names)
         return Outcome(label, text, "bad")
     text = say("verdict.limits.met", n=len(limits))
@@ -56,6 +56,20 @@ def _limits(ctx: Context) -> Outcome:
     if ranked:
         text += " " + _tightest(ctx, min(ranked, key=_share))
     return Outcome(label, text, "good")
+
+
+def _miss(ctx: Context, limit: dict[str, Any]) -> str:
+    kind = kind_of(limit["quantity"])
+    if limit["value"] is None:
+        return say("verdict.limits.undefined", quantity=limit["quantity"])
+    side, bound = _binding(limit)
+    return say(
+        "verdict.limits.miss",
+        quantity=limit["quantity"],
+        value=ctx.measure(kind, limit["value"]),
+        side=say(f"verdict.side.{side}"),
+        limit=ctx.measure(kind, bound),
+    )
 
 
 def _share(limit: dict[str, Any]) -> float:
