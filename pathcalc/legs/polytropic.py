@@ -93,9 +93,8 @@ def solve(leg: Polytropic, run: LegRun) -> Outcome:
     """End state on p v^n; work by the integral of p dv or v dp, heat by the balance."""
     import numpy as np
 
-    from pathcalc.legs.integration.families import Polytrope
-    from pathcalc.legs.integration.segments import Segment
     from pathcalc.legs.run import Exchange, Outcome
+    from pathcalc.legs.ways import polytrope
 
     a = run.inlet
     targets = run.targets(leg.to)
@@ -103,7 +102,7 @@ def solve(leg: Polytropic, run: LegRun) -> Outcome:
     if n is None:
         b = run.reach(**targets)
         with np.errstate(divide="ignore", invalid="ignore"):
-            n = np.log(b.p / a.p) / np.log(a.v / b.v)
+            n = np.where((b.p == a.p) & (b.v == a.v), 1.0, np.log(b.p / a.p) / np.log(a.v / b.v))
         run.wrong_side(
             ~np.isfinite(n) & np.isfinite(b.v),
             "the two ends have the same volume, so that no exponent joins them",
@@ -117,8 +116,7 @@ def solve(leg: Polytropic, run: LegRun) -> Outcome:
         heat = (i["dh"] if run.flow else i["du"]) - work
         return Exchange(work, heat, run.heat_boundary(i, heat))
 
-    family = Polytrope(n, np.log(a.p) + n * np.log(a.v))
-    return Outcome(b, [Segment(family, a.points, b.points)], exchange, reversible=True)
+    return Outcome(b, polytrope(a, b, n), exchange, reversible=True)
 
 
 def _end_of(run: LegRun, targets: dict[str, Array], n: Array) -> dict[str, Array]:

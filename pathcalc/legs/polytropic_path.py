@@ -30,7 +30,7 @@ from pathcalc.legs.integration.saturation_line import side_of
 from pathcalc.legs.integration.segments import Segment
 from pathcalc.legs.run import LegRun, Place
 
-MAX_STRETCHES = 6
+MAX_STRETCHES = 80
 MAX_HALVINGS = 40
 
 
@@ -112,33 +112,33 @@ def _in_one_phase(run: LegRun, front: _Front, goal: Array, factor: Array, lanes:
     initial = np.stack([front.T[lanes], front.v[lanes]])
     slopes = one_phase_slopes(model, factor[lanes])
     solution = solve(slopes, y_a, y_b, initial)
-    meets = np.zeros(lanes.size, dtype=bool)
-    wet_side = np.zeros(lanes.size, dtype=bool)
-    short = np.zeros(lanes.size, dtype=bool)
-    if model.has_dome:
-        line, every = run.setting.boundary.line(), np.arange(lanes.size, dtype=np.intp)
-        for _ in range(MAX_HALVINGS):
-            entry = first_entry(model, line, solution)
-            if not entry.lost.any():
-                break
-            y_b = np.where(entry.lost, 0.5 * (y_a + y_b), y_b)
-            solution = solve(slopes, y_a, y_b, initial)
-        meets, wet_side = np.isfinite(entry.low), entry.liquid
-        if meets.any():
-            root = bracketed_root(
-                lambda y: beyond_boundary(model, solution, y, wet_side, every),
-                np.where(meets, entry.low, y_a),
-                np.where(meets, entry.high, y_a),
-            )
-            y_b = np.where(meets, root, y_b)
-            solution = solve(slopes, y_a, y_b, initial)
-        short = ~meets & (np.abs(y_b - goal[lanes]) > 1e-12)
+    line = run.setting.boundary.line() if model.has_dome else None
+    entry = first_entry(model, line, solution)
+    for _ in range(MAX_HALVINGS):
+        again = np.flatnonzero(entry.lost | solution.rough)
+        if again.size == 0:
+            break
+        y_b[again] = 0.5 * (y_a[again] + y_b[again])
+        shorter = solve(one_phase_slopes(model, factor[lanes][again]), y_a[again], y_b[again], initial[:, again])
+        solution = solution.replaced(again, shorter)
+        entry = first_entry(model, line, solution)
+    meets = np.isfinite(entry.low)
+    if meets.any():
+        every = np.arange(lanes.size, dtype=np.intp)
+        root = bracketed_root(
+            lambda y: beyond_boundary(model, solution, y, entry.liquid, every),
+            np.where(meets, entry.low, y_a),
+            np.where(meets, entry.high, y_a),
+        )
+        y_b = np.where(meets, root, y_b)
+        solution = solve(slopes, y_a, y_b, initial)
+    short = ~meets & (np.abs(y_b - goal[lanes]) > 1e-12)
     T, v = solution.last
     bad = ~solution.converged | ~np.isfinite(T + v)
     h = _enthalpy(model, T, v)
     front.y[lanes], front.T[lanes], front.v[lanes] = y_b, T, v
     front.h[lanes] = np.where(bad, np.nan, h)
-    front.x[lanes] = np.where(meets, np.where(wet_side, 0.0, 1.0), np.nan)
+    front.x[lanes] = np.where(meets, np.where(entry.liquid, 0.0, 1.0), np.nan)
     front.open[lanes] = (meets | short) & ~bad
     front.into_dome[lanes] = meets
     return Segment(
@@ -166,6 +166,13 @@ def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lan
     initial = front.h[lanes][None]
     slopes = dome_slopes(model, factor[lanes])
     solution = solve(slopes, y_a, y_b, initial)
+    for _ in range(MAX_HALVINGS):
+        again = np.flatnonzero(solution.rough)
+        if again.size == 0:
+            break
+        y_b[again] = 0.5 * (y_a[again] + y_b[again])
+        shorter = solve(dome_slopes(model, factor[lanes][again]), y_a[again], y_b[again], initial[:, again])
+        solution = solution.replaced(again, shorter)
 
     def quality(y: Array) -> Array:
         sat = saturation_at_p(model, np.exp(y).reshape(-1))
@@ -198,8 +205,9 @@ def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lan
     front.T[lanes] = end.T
     front.v[lanes] = end.v
     front.x[lanes] = np.where(leaves, np.where(dry, 1.0, 0.0), end.x)
-    front.open[lanes] = leaves & ~bad
-    front.into_dome[lanes] = False
+    short = ~leaves & (np.abs(y_b - goal[lanes]) > 1e-12)
+    front.open[lanes] = (leaves | short) & ~bad
+    front.into_dome[lanes] = short
     return Segment(
         DomeCurve(solution), take_points(start, lanes), take_points(start, lanes), lanes=lanes, region="dome"
     )

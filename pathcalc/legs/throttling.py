@@ -10,6 +10,7 @@ from pathcalc.case.fields import TargetP, TargetT
 from pathcalc.case.leg_model import LegModel, OneOf
 
 if TYPE_CHECKING:
+    from pathcalc.equations.contract import Array
     from pathcalc.legs.run import LegRun, Outcome
 
 
@@ -51,12 +52,32 @@ FORMULAS = {
 
 
 def solve(leg: Throttling, run: LegRun) -> Outcome:
-    """End state from the enthalpy and the target; the state change is integrated along the isenthalp."""
+    """End state from the enthalpy and the target; the state change is integrated along the isenthalp.
+
+    Of several states with the target temperature the one is taken that is reached first as the pressure falls.
+    """
+    import numpy as np
+
+    from pathcalc.equilibrium.flash import flash
+    from pathcalc.legs.integration.bracket import scanned_root
     from pathcalc.legs.run import Outcome, nothing
     from pathcalc.legs.ways import constant
 
     a = run.inlet
-    b = run.reach(h=a.h, **run.targets(leg.to))
+    targets = run.targets(leg.to)
+    if "T" in targets:
+
+        def miss(log_p: Array) -> Array:
+            return np.asarray(flash(run.model, {"p": np.exp(log_p), "h": a.h}).T / targets["T"] - 1.0)
+
+        log_p = scanned_root(miss, np.log(a.p), -np.sinh(np.linspace(0.0, 4.2, 43))[::-1] / 2.0)
+        run.wrong_side(
+            np.isnan(log_p) & np.isfinite(a.p),
+            "throttling does not lead to the target temperature",
+            "give a pressure, or a temperature on the way (an ideal gas keeps its temperature)",
+        )
+        targets = {"p": np.exp(log_p)}
+    b = run.reach(h=a.h, **targets)
     run.wrong_side(
         b.p > a.p * (1.0 + 1e-12),
         "a throttling leg cannot raise the pressure",

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from pathcalc.equations.contract import Array
 from pathcalc.legs.integration.families import Constant, HeatedWithDrop, Isochore, Isotherm, Lanes, Polytrope
 from pathcalc.legs.integration.pick import take_points
 from pathcalc.legs.integration.segments import Segment
@@ -44,4 +45,17 @@ def heated(a: Place, b: Place) -> list[Segment]:
         else:
             family = HeatedWithDrop(a.p[lanes], a.h[lanes], b.p[lanes], b.h[lanes])
         segments.append(Segment(family, start, stop, lanes=lanes))
+    return segments
+
+
+def polytrope(a: Place, b: Place, exponent: Array) -> list[Segment]:
+    """Along p v^n; lanes with n = 0, which is an isobar, apart."""
+    constant = np.log(a.p) + exponent * np.log(a.v)
+    segments = []
+    for flat in (True, False):
+        lanes: Lanes = np.flatnonzero((exponent == 0.0) == flat).astype(np.intp)
+        if lanes.size:
+            family = Polytrope(exponent[lanes], constant[lanes])
+            start, stop = take_points(a.points, lanes), take_points(b.points, lanes)
+            segments.append(Segment(family, start, stop, lanes=lanes))
     return segments

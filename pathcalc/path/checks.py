@@ -81,7 +81,8 @@ def _energy_scale(solution: Solution, solved: SolvedLeg) -> float:
     row = 2 if solution.path.setting.flow else 1
     magnitude = solved.integrals.magnitude
     work = magnitude[QUANTITIES.index("v_dp" if solution.path.setting.flow else "p_dv")][0]
-    return float(max(scales(solution.path, solved)[row][0], work))
+    exchanged = np.abs(solved.exchange.work[0]), np.abs(solved.exchange.heat[0])
+    return float(max(scales(solution.path, solved)[row][0], work, *exchanged))
 
 
 def _first_law(solution: Solution, solved: SolvedLeg, rounding: float) -> Check:

@@ -20,6 +20,8 @@ from pathcalc.path.lanes import lane_arrays, mark_out_of_range
 from pathcalc.path.start import moles_of, start_place
 from pathcalc.substances import Card
 
+ROUGH = 1e-7
+"""An error estimate above this part of the magnitudes along a leg is no result."""
 CYCLE_TOLERANCE = 1e-7
 """How far the last state of a cycle may be from the first, relative in T, p and v."""
 
@@ -133,8 +135,9 @@ def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -
             "end the leg before it leaves the range (triple point, highest temperature, density), or go another way",
         ),
     )
+    rough = (integrals.error[:3] > ROUGH * np.maximum(integrals.magnitude[:3], _least(setting, inlet))).any(axis=0)
     setting.status.fail(
-        ~integrals.converged & np.isfinite(outcome.end.T),
+        (~integrals.converged | rough) & np.isfinite(outcome.end.T),
         Trouble(
             "integral-not-converged",
             leg.name,
@@ -148,6 +151,12 @@ def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -
     generated = np.zeros(setting.n) if own_temperature else ds - exchange.entropy_in
     generated = np.where(np.isfinite(ds), generated, np.nan)
     return SolvedLeg(leg, inlet_name, inlet, outcome, integrals, exchange, ds, generated)
+
+
+def _least(setting: Setting, inlet: Place) -> Array:
+    """Magnitudes below which the integrals of ds, du, dh are not judged: a thousandth of R, of R T."""
+    R = 1e-3 * setting.model.R
+    return np.stack([R + 0.0 * inlet.T, R * inlet.T, R * inlet.T])
 
 
 def _check_cycle(setting: Setting, start: Place, last: Place) -> None:

@@ -68,14 +68,15 @@ def state_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
         value = state[key]
         if value != value:
             continue
-        found[f"{name}.{key}"] = found.get(f"{name}.{key}", []) + [
+        steps = found.setdefault(f"{name}.{key}", [])
+        steps.append(
             Step(
                 title="State at the end of the leg",
                 formula=rf"{symbol}_2",
                 result=with_unit(value, kind),
                 note=f"fixed by {fixed}; phase {state.phase}",
             )
-        ]
+        )
     return found
 
 

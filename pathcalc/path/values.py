@@ -178,8 +178,30 @@ def rounding_of(path: SolvedPath, solved: SolvedLeg) -> Array:
     a, b = solved.inlet, solved.end
     sizes = np.stack([np.abs(a.s) + np.abs(b.s), np.abs(a.u) + np.abs(b.u), np.abs(a.h) + np.abs(b.h)])
     kinetic = path.model.R * np.stack([np.ones_like(a.T), a.T + b.T, a.T + b.T])
+    sizes = sizes + sum(_coexistence_rounding(path, place) for place in (a, b))
     rounding: Array = 64.0 * np.finfo(float).eps * ((sizes + kinetic) / scales(path, solved)).max(axis=0)
     return rounding
+
+
+def _coexistence_rounding(path: SolvedPath, place: Place) -> Array:
+    """What a two-phase state owes to how sharply equal Gibbs energy fixes the volumes, in s, u, h, (3, n).
+
+    g is met to about 5e-14 R T, which fixes the pressure to that over the change of volume, and the pressure fixes
+    the volume by its compressibility; in units of the 64 eps that the caller multiplies by.
+    """
+    points = place.points
+    mixed = np.flatnonzero(~np.isnan(points.x))
+    found = np.zeros((3, points.T.size))
+    if mixed.size:
+        T, change = points.T[mixed], points.v_vapour[mixed] - points.v_liquid[mixed]
+        stiffness = np.minimum(
+            *(np.abs(path.model.residual.pressure(T, v[mixed]).p_v) for v in (points.v_liquid, points.v_vapour))
+        )
+        loose = 4.0 * path.model.R * T / change / stiffness
+        slope = path.model.residual.pressure(T, points.v_vapour[mixed]).p_T
+        entropy = np.where(np.isfinite(loose), slope * loose, 0.0)
+        found[:, mixed] = np.stack([entropy, T * entropy, T * entropy])
+    return found
 
 
 def piece_values(path: SolvedPath, solved: SolvedLeg, lane: int) -> list[dict[str, Any]]:

@@ -2,7 +2,7 @@
 
 Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
 virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed,
-comparison-without-shift, limit-without-value.
+comparison-without-shift, limit-without-value, unchecked, past-equilibrium.
 """
 
 from __future__ import annotations
@@ -36,6 +36,11 @@ def all_warnings(solution: Solution) -> list[Warning_]:
         rows.extend(_of_state(solution, name, place))
     rows.extend(_of_equation(solution))
     rows.extend(_of_legs(solution))
+    with_other_way = {row["at"] for row in solution.checks if row["name"] == "path independence"}
+    for name in solution.legs:
+        if name not in with_other_way:
+            text = "path independence is not checked: there is no other way within the range of the equation"
+            rows.append(_warning("unchecked", name, text))
     for row in solution.checks:
         if not row["passed"]:
             text = f"the check {row['name']!r} failed: {row['value']:.3g} against {row['tolerance']:.3g}"
@@ -108,6 +113,7 @@ def _of_legs(solution: Solution) -> list[Warning_]:
             phase = solution.states[name].phase if name in solution.states else ""
             text = f"the limit is on a quantity without a value here (phase: {phase}); it counts as missed"
             rows.append(_warning("limit-without-value", row["quantity"], text))
+    rows.extend(_past_equilibrium(solution))
     if solution.case.fluid.volume_shift is not None and solution.case.report.compare_with:
         text = "the other equations are solved without the volume shift of the case: their dense states are not alike"
         rows.append(_warning("comparison-without-shift", "comparison", text))
@@ -117,4 +123,22 @@ def _of_legs(solution: Solution) -> list[Warning_]:
         other = solved_with(solution, equation)
         if isinstance(other, str):
             rows.append(_warning("comparison-failed", "comparison", f"{equation}: {other}"))
+    return rows
+
+
+def _past_equilibrium(solution: Solution) -> list[Warning_]:
+    """Legs against a pressure that end beyond it: left to itself the fluid would come to rest there."""
+    rows: list[Warning_] = []
+    for solved in solution.path.legs:
+        against = getattr(solved.leg, "against", None)
+        if against is None:
+            continue
+        p_ext, p = float(solution.path.setting.molar(against)[0]), float(solved.end.p[0])
+        grows = float(solved.end.v[0]) > float(solved.inlet.v[0])
+        if (grows and p < p_ext * (1.0 - 1e-9)) or (not grows and p > p_ext * (1.0 + 1e-9)):
+            text = (
+                f"ends at {p:.6g} Pa, beyond the {p_ext:.6g} Pa it moves against: left to itself the fluid would come "
+                "to rest there; the work stands only if something else carries it on"
+            )
+            rows.append(_warning("past-equilibrium", solved.leg.name, text))
     return rows

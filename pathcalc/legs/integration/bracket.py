@@ -13,6 +13,8 @@ import numpy as np
 from pathcalc.equations.contract import Array
 
 LIMIT = 120
+FLAT = 1e-13
+"""Magnitude below which a function counts as zero where the search begins."""
 
 
 def bracketed_root(f: Callable[[Array], Array], low: Array, high: Array, rtol: float = 4e-16) -> Array:
@@ -56,10 +58,13 @@ def bracketed_root(f: Callable[[Array], Array], low: Array, high: Array, rtol: f
 def scanned_root(f: Callable[[Array], Array], start: Array, offsets: Array, rtol: float = 4e-16) -> Array:
     """Root of ``f`` nearest to ``start`` (n,), looked for at ``start + offsets`` outwards; NaN where none is met.
 
-    ``offsets`` ascend and hold 0. A value of ``f`` that is not finite ends the search of its lane on that side.
+    ``offsets`` ascend and hold 0. A value of ``f`` that is not finite ends the search of its lane on that side. Where
+    ``f`` is zero all about the start, every point would do: NaN.
     """
     middle = int(np.argmin(np.abs(offsets)))
     here = f(start)
+    at_start = np.abs(here) <= FLAT
+    flat = at_start.copy()
     edges = {True: (here, np.isfinite(here)), False: (here, np.isfinite(here))}
     low, high = np.full(start.shape, np.nan), np.full(start.shape, np.nan)
     for k in range(1, max(middle, offsets.size - 1 - middle) + 1):
@@ -70,12 +75,13 @@ def scanned_root(f: Callable[[Array], Array], start: Array, offsets: Array, rtol
                 continue
             value = f(start + offsets[outer])
             open_ = open_ & np.isfinite(value)
+            if k == 1:
+                flat &= np.abs(value) <= FLAT
             hit = open_ & (last * value <= 0.0) & np.isnan(low)
             low = np.where(hit, start + offsets[inner], low)
             high = np.where(hit, start + offsets[outer], high)
             edges[up] = (value, open_)
     missing = np.isnan(low)
-    if missing.all():
-        return low
     root = bracketed_root(f, np.where(missing, start, low), np.where(missing, start, high), rtol)
-    return np.where(missing, np.nan, root)
+    root = np.where(at_start, start, np.where(missing, np.nan, root))
+    return np.where(flat, np.nan, root)

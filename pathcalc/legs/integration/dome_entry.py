@@ -34,9 +34,12 @@ class Entry:
     lost: NDArray[np.bool_]
 
 
-def first_entry(model: Model, line: SaturationLine, solution: Solution) -> Entry:
-    """The first entry of every lane of ``solution`` (unknowns T and v along ln p)."""
+def first_entry(model: Model, line: SaturationLine | None, solution: Solution) -> Entry:
+    """The first entry of every lane of ``solution`` (unknowns T and v along ln p); none without a ``line``."""
     panels, lanes = solution.values.shape[1], solution.y_a.size
+    if line is None:
+        none = np.full(lanes, np.nan)
+        return Entry(none, none, np.zeros(lanes, dtype=bool), np.zeros(lanes, dtype=bool))
     width = (solution.y_b - solution.y_a) / panels
     y = (solution.y_a + width * (np.arange(panels)[:, None, None] + NODES[:, None])).reshape(-1, lanes)
     v = solution.values[1].reshape(-1, lanes)

@@ -23,7 +23,7 @@ from pathcalc.legs.integration.saturation_line import Side
 Lanes = NDArray[np.intp]
 
 NEWTON_LIMIT = 40
-STEP_TOLERANCE = 4.0e-15
+STEP_TOLERANCE = 2.0e-13
 
 
 class Ends(NamedTuple):

@@ -12,7 +12,7 @@ by collocation at the nodes of the 15-point Kronrod rule on equal panels of ln p
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from functools import lru_cache
 
 import numpy as np
@@ -22,13 +22,15 @@ from numpy.typing import NDArray
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium.saturation import saturation_at_p
-from pathcalc.legs.integration.families import Coordinate, Ends, Lanes, Nodes
+from pathcalc.legs.integration.families import Coordinate, Ends, Family, Lanes, Nodes
 from pathcalc.legs.integration.quadrature import GAUSS_WEIGHTS, KRONROD_WEIGHTS, NODES, over_nodes
 from pathcalc.legs.integration.saturation_line import Side, side_of
 
 PANELS = 4
 ITERATIONS = 60
 TOLERANCE = 2e-13
+ACCURACY = 2e-12
+"""Relative accuracy asked of the end of a stretch; a rougher one is taken in shorter stretches."""
 
 Slopes = Callable[[Array, Array], Array]
 """From y = ln p (nodes, n) and unknowns (m, nodes, n) to their slopes by y, (m, nodes, n)."""
@@ -76,6 +78,22 @@ class Solution:
     error: Array
     converged: NDArray[np.bool_]
     first: Array
+
+    @property
+    def rough(self) -> NDArray[np.bool_]:
+        """Lanes whose end values are not accurate to ACCURACY, or that did not converge."""
+        with np.errstate(invalid="ignore"):
+            accurate = np.all(self.error <= ACCURACY * np.abs(self.last), axis=0)
+        return np.asarray(~(self.converged & accurate), dtype=np.bool_)
+
+    def replaced(self, lanes: Lanes, by: Solution) -> Solution:
+        """A copy in which the given lanes are those of ``by``."""
+        changed = {}
+        for item in fields(self):
+            values = getattr(self, item.name).copy()
+            values[..., lanes] = getattr(by, item.name)
+            changed[item.name] = values
+        return Solution(**changed)
 
     @property
     def first_volume(self) -> Array:
@@ -131,8 +149,7 @@ def solve(slopes: Slopes, y_a: Array, y_b: Array, start: Array) -> Solution:
         values[:, panel] = guess
         end = np.stack([over_nodes(KRONROD_WEIGHTS[:, None] * r) for r in rate]) * width
         low = np.stack([over_nodes(GAUSS_WEIGHTS[:, None] * r) for r in rate]) * width
-        size = np.maximum(np.abs(end), 1e-300)
-        error += size * np.minimum(1.0, (200.0 * np.abs(end - low) / size) ** 1.5)
+        error += 4.0 * np.abs(end - low)
         here = here + end
     return Solution(y_a, y_b, values, here, error, converged, start)
 
@@ -210,16 +227,18 @@ class OnePhaseCurve:
         return {"T": ends.T_a, "v": ends.v_a}
 
 
-def end_mismatch(model: Model, curve: OnePhaseCurve, ends: Ends, lanes: Lanes) -> Array:
+def end_mismatch(model: Model, curve: Family, ends: Ends, lanes: Lanes) -> Array:
     """What the integrals along a curve owe to its ends being solved for, in the order of QUANTITIES, (7, k).
 
-    The curve ends where its differential equation was solved to; the state there is found again from p and h.
+    A curve ends where its equation was solved to, which need not be the end state to the last digit.
     """
     nodes = curve.nodes(model, ends, np.array([0.0, 1.0])[:, None] + np.zeros(lanes.size), lanes)
     total = np.zeros((7, lanes.size))
     for k, (T, v) in enumerate(((ends.T_a, ends.v_a), (ends.T_b, ends.v_b))):
         t = thermal(model, T, v)
-        dT, dv = np.abs(nodes.T[k] - T), np.abs(nodes.v[k] - v)
+        dT, dv = 2.0 * np.abs(nodes.T[k] - T), 2.0 * np.abs(nodes.v[k] - v)
+        if k == 1 and isinstance(curve, OnePhaseCurve):
+            dT, dv = dT + curve.solution.error[0, lanes], dv + curve.solution.error[1, lanes]
         heat = t.cv * dT + T * t.p_T * dv
         push = v * (t.p_T * dT + np.abs(t.p_v) * dv)
         p_dv = t.p * dv

@@ -57,7 +57,7 @@ NODES, KRONROD_WEIGHTS, GAUSS_WEIGHTS = _unfold()
 """Abscissas on [0, 1], shape (15,), and the weights of the 15-point and the embedded 7-point rule."""
 
 EPS = float(np.finfo(float).eps)
-MAX_DEPTH = 14
+MAX_DEPTH = 40
 
 
 @dataclass(frozen=True)

@@ -36,8 +36,7 @@ class Cuts:
     """Where the paths of n lanes meet the boundary, up to K times each, in order along the path.
 
     ``progress`` (K, n) is the coordinate of the cut, infinite where there is none; ``T``, ``p``, ``v`` the
-    state there; ``count`` (n,) the number of cuts of each lane. ``at_start`` and ``at_end`` (n,): the path begins or
-    ends on the boundary, within MARGIN.
+    state there; ``count`` (n,) the number of cuts of each lane.
     """
 
     progress: Array
@@ -46,8 +45,6 @@ class Cuts:
     v: Array
     vapour: NDArray[np.bool_]
     count: NDArray[np.intp]
-    at_start: NDArray[np.bool_]
-    at_end: NDArray[np.bool_]
 
 
 def side_of(model: Model, sat: Saturation, vapour: bool) -> Side:
@@ -92,12 +89,13 @@ class SaturationLine:
         mismatch: Callable[[Side, NDArray[np.intp] | None], Array],
         progress: Callable[[Side, NDArray[np.intp]], Array],
         inside: Callable[[Side, Side, NDArray[np.intp]], Array],
+        parity: NDArray[np.int8],
     ) -> Cuts:
         """Cuts of the paths with the boundary.
 
         ``mismatch(side, lane)`` is zero where the boundary meets the path of a lane: arrays (G, 1) of a side
         against all lanes when ``lane`` is None, else arrays (k,) against those lanes. ``progress`` is the
-        coordinate of a boundary state along the path; cuts within MARGIN of an end are not cut. Where a path
+        coordinate of a boundary state along the path; ``parity`` is that of :func:`sorted_cuts`. Where a path
         passes the critical point itself, no saturated state lies on it in floating point: it is cut at the last
         temperature that has a saturation, at the overall volume that ``inside`` gives there.
         """
@@ -115,7 +113,7 @@ class SaturationLine:
             keep = np.isfinite(along)
             kept = Side(*(a[keep] for a in side))
             found.append((lane[keep].astype(np.intp), along[keep], kept, vapour))
-        return sorted_cuts(lanes, found)
+        return sorted_cuts(lanes, found, parity)
 
     def _refine(
         self,
@@ -160,22 +158,31 @@ class SaturationLine:
         return Side(*merged)
 
 
-def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, bool]]) -> Cuts:
-    """Cuts of all lanes from lists of (lanes, coordinates, states, vapour or liquid), in order along each path."""
+def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, bool]], parity: NDArray[np.int8]) -> Cuts:
+    """Cuts of all lanes from lists of (lanes, coordinates, states, vapour or liquid), in order along each path.
+
+    A cut within MARGIN of an end is taken only where the phases of the ends ask for it: ``parity`` (n,) is 1 where
+    one end lies inside the dome and the other outside, 0 where both lie on the same side, -1 where an end is itself
+    a saturated state.
+    """
     count = np.zeros(lanes, dtype=np.intp)
-    at_start, at_end = np.zeros(lanes, dtype=bool), np.zeros(lanes, dtype=bool)
     if not found:
         empty = np.empty((0, lanes))
-        return Cuts(empty, empty, empty, empty, np.empty((0, lanes), dtype=bool), count, at_start, at_end)
+        return Cuts(empty, empty, empty, empty, np.empty((0, lanes), dtype=bool), count)
     lane = np.concatenate([item[0] for item in found])
     along = np.concatenate([item[1] for item in found])
-    at_start[lane[np.abs(along) <= MARGIN]] = True
-    at_end[lane[np.abs(along - 1.0) <= MARGIN]] = True
+    keep = (along > MARGIN) & (along < 1.0 - MARGIN)
+    np.add.at(count, lane[keep], 1)
+    from_end = np.minimum(np.abs(along), np.abs(along - 1.0))
+    for k in np.flatnonzero(~keep & (from_end <= MARGIN))[np.argsort(from_end[~keep & (from_end <= MARGIN)])]:
+        here = lane[k]
+        if parity[here] >= 0 and count[here] % 2 != parity[here]:
+            keep[k] = True
+            count[here] += 1
     T, p, v = (np.concatenate([getattr(item[2], key) for item in found]) for key in ("T", "p", "v"))
     vapour = np.concatenate([np.full(item[0].size, item[3]) for item in found])
-    keep = np.flatnonzero((along > MARGIN) & (along < 1.0 - MARGIN))
-    np.add.at(count, lane[keep], 1)
-    order = keep[np.lexsort((along[keep], lane[keep]))]
+    kept = np.flatnonzero(keep)
+    order = kept[np.lexsort((along[kept], lane[kept]))]
     column = lane[order]
     row = np.arange(column.size) - np.searchsorted(column, column)
 
@@ -191,6 +198,4 @@ def sorted_cuts(lanes: int, found: list[tuple[NDArray[np.intp], Array, Side, boo
         table(v, np.nan),
         table(vapour.astype(float), 0.0) > 0.5,
         count,
-        at_start,
-        at_end,
     )

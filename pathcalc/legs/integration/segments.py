@@ -13,8 +13,8 @@ from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
-from pathcalc.legs.integration.families import Ends, Family, HeatedWithDrop, Isotherm, Lanes, Polytrope
-from pathcalc.legs.integration.polytropic_efficiency import OnePhaseCurve, end_mismatch
+from pathcalc.legs.integration.families import Ends, Family, HeatedWithDrop, Isochore, Isotherm, Lanes, Polytrope
+from pathcalc.legs.integration.polytropic_efficiency import end_mismatch
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
 from pathcalc.legs.integration.saturation_line import Cuts, SaturationLine, Side, sorted_cuts
 from pathcalc.legs.integration.two_phase import level_piece, sloping_piece
@@ -150,7 +150,7 @@ def _cuts(boundary: BoundaryOf, segment: Segment, ends: Ends) -> Cuts:
         return _progress(segment, side, lane)
 
     family = segment.family
-    return boundary.line().cuts(ends.T_a.size, family.mismatch, progress, family.dome_volume)
+    return boundary.line().cuts(ends.T_a.size, family.mismatch, progress, family.dome_volume, _parity(segment))
 
 
 def _level_cuts(model: Model, segment: Segment) -> Cuts:
@@ -167,7 +167,7 @@ def _level_cuts(model: Model, segment: Segment) -> Cuts:
         along = _progress(segment, side, lanes)
         keep = np.isfinite(along)
         found.append((lanes[keep], along[keep], Side(*(x[keep] for x in side)), vapour))
-    return sorted_cuts(a.T.size, found)
+    return sorted_cuts(a.T.size, found, _parity(segment))
 
 
 def _coordinates(segment: Segment, side: Side) -> tuple[Array, Array, Array]:
@@ -183,8 +183,8 @@ def _starts_inside(
 ) -> NDArray[np.bool_]:
     """Whether the first piece of each lane lies in the dome."""
 
-    inside_a, outside_a = _sure(segment.a, cuts.at_start)
-    inside_b, outside_b = _sure(segment.b, cuts.at_end)
+    inside_a, outside_a = _sure(segment.a)
+    inside_b, outside_b = _sure(segment.b)
     odd = cuts.count % 2 == 1
     unknown = ~inside_a & ~outside_a
     from_b = unknown & (inside_b | outside_b)
@@ -199,10 +199,16 @@ def _starts_inside(
     return result
 
 
-def _sure(points: Points, on_boundary: NDArray[np.bool_]) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
-    """Which lanes surely lie inside the dome, and which surely outside: neither, where they lie on its boundary."""
-    inside = (points.x > 0.0) & (points.x < 1.0) & ~on_boundary
-    return inside, np.isnan(points.x) & ~on_boundary
+def _sure(points: Points) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+    """Which lanes lie inside the dome, and which outside: neither, where the state is saturated."""
+    return (points.x > 0.0) & (points.x < 1.0), np.isnan(points.x)
+
+
+def _parity(segment: Segment) -> NDArray[np.int8]:
+    """Whether the number of cuts is odd (1), even (0), or not known beforehand (-1)."""
+    (inside_a, outside_a), (inside_b, outside_b) = _sure(segment.a), _sure(segment.b)
+    known = (inside_a | outside_a) & (inside_b | outside_b)
+    return np.where(known, (inside_a != inside_b).astype(np.int8), np.int8(-1)).astype(np.int8)
 
 
 def _without_contradictions(segment: Segment, ends: Ends, cuts: Cuts, inside: NDArray[np.bool_]) -> Ends:
@@ -210,8 +216,8 @@ def _without_contradictions(segment: Segment, ends: Ends, cuts: Cuts, inside: ND
 
     Then a cut lies where there is no saturation (below the triple point): the path leaves the range in between.
     """
-    inside_a, outside_a = _sure(segment.a, cuts.at_start)
-    inside_b, outside_b = _sure(segment.b, cuts.at_end)
+    inside_a, outside_a = _sure(segment.a)
+    inside_b, outside_b = _sure(segment.b)
     ends_inside = inside ^ (cuts.count % 2 == 1)
     wrong = (inside_a & ~inside) | (outside_a & inside) | (inside_b & ~ends_inside) | (outside_b & ends_inside)
     if not wrong.any():
@@ -247,7 +253,7 @@ def _piece(model: Model, segment: Segment, ends: Ends, local: Lanes, in_dome: bo
 
     if not in_dome:
         total = integrate(integrand, COUNT, local.size, _floors(model, ends))
-        if isinstance(family, OnePhaseCurve):
+        if not isinstance(family, Isotherm | Isochore):
             total = replace(total, error=total.error + end_mismatch(model, family, ends, local))
     elif family.level_in_dome:
         total = level_piece(model, ends)

@@ -15,7 +15,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model
-from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.equilibrium.saturation import Saturation, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
 from pathcalc.legs.integration.families import Ends, Family, Lanes, Nodes
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
@@ -48,7 +48,12 @@ def level_piece(model: Model, ends: Ends) -> Quadrature:
     zero = np.zeros_like(p_dv)
     value = np.stack([crossing.ds, crossing.du, crossing.dh, p_dv, zero, crossing.dh, crossing.ds])
     size = np.abs(value)
-    error = np.broadcast_to(saturation_error(size), value.shape)
+    loose = _boundary_entropy_error(model, sat)
+    zero_error = np.zeros_like(loose)
+    heat_error = ends.T_a * loose
+    error = saturation_error(size) + np.stack(
+        [loose, heat_error, heat_error, zero_error, zero_error, heat_error, loose]
+    )
     one = np.ones(p_dv.shape, dtype=np.intp)
     return Quadrature(value, error, size, sat.reason == 0, one)
 
@@ -107,14 +112,24 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
     return Quadrature(value, error, size, good, along.panels)
 
 
+def _boundary_entropy_error(model: Model, sat: Saturation) -> Array:
+    """Entropy that the volumes of a change of phase are uncertain by next to the critical point, J/(mol K)."""
+    liquid, gas = side_of(model, sat, False), side_of(model, sat, True)
+    total = np.zeros_like(sat.T)
+    for side in (liquid, gas):
+        p_v = model.residual.pressure(sat.T, side.v).p_v
+        total = total + sat.dp_dT * side.v * _looseness(model, sat.T, liquid, gas, side.v, p_v)
+    return total
+
+
 def _looseness(model: Model, T: Array, liquid: Side, gas: Side, v: Array, p_v: Array) -> Array:
-    """Relative error of a boundary volume: equal Gibbs energy is met to 1e-14 R T, which fixes the pressure to
+    """Relative error of a boundary volume: equal Gibbs energy is met to 5e-14 R T, which fixes the pressure to
 
     that over the change of volume, and the pressure fixes the volume by its compressibility.
     """
     change = np.maximum(gas.v - liquid.v, 1e-300)
     with np.errstate(divide="ignore", invalid="ignore"):
-        loose: Array = 1e-14 * model.R * T / change / np.abs(p_v * v)
+        loose: Array = 5e-14 * model.R * T / change / np.abs(p_v * v)
     return np.minimum(np.where(np.isfinite(loose), loose, 0.0), 1e-3)
 
 
