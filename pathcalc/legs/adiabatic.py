@@ -46,6 +46,7 @@ class AdiabaticTo(OneOf):
 class Adiabatic(LegModel):
     """A leg without heat."""
 
+    flow_only: ClassVar[frozenset[str]] = frozenset({"polytropic_efficiency"})
     closed_only: ClassVar[frozenset[str]] = frozenset({"against"})
     exclusive: ClassVar[tuple[str, ...]] = ("efficiency", "polytropic_efficiency", "against")
 

@@ -20,7 +20,12 @@ KINDS = {
     "isothermal": ("p v rho s x", "against efficiency reservoir", "flow closed", "against efficiency"),
     "isobaric": ("T v rho h s x superheat subcooling heat", "reservoir", "flow closed", ""),
     "isochoric": ("T p u s x heat", "reservoir", "flow closed", ""),
-    "adiabatic": ("p T v rho work", "efficiency polytropic_efficiency against", "flow closed", "against"),
+    "adiabatic": (
+        "p T v rho work",
+        "efficiency polytropic_efficiency against",
+        "flow closed",
+        "against polytropic_efficiency",
+    ),
     "throttling": ("p T", "", "flow", ""),
     "free-expansion": ("v rho p", "", "closed", ""),
     "polytropic": ("p T v rho", "exponent reservoir", "flow closed", ""),
