@@ -143,9 +143,7 @@ def build_model(
     )
 
 
-def _ideal_part(
-    card: Card, built: Built, heat_capacity: str | float | None, given: IdealPart | None
-) -> IdealPart:
+def _ideal_part(card: Card, built: Built, heat_capacity: str | float | None, given: IdealPart | None) -> IdealPart:
     if isinstance(heat_capacity, int | float):
         return ideal_gas.constant(float(heat_capacity) / built.R)
     if heat_capacity is None:

@@ -244,6 +244,4 @@ def constant(
 ) -> IdealGasHeatCapacity:
     """A heat capacity that does not depend on temperature, ``cp0_R`` = c_p0/R."""
     whole = TemperatureRange(T_min, T_max, (PowerTerm(cp0_R, 0.0),))
-    return IdealGasHeatCapacity(
-        name=name, form="constant", T_min=T_min, T_max=T_max, ranges=(whole,), source=source
-    )
+    return IdealGasHeatCapacity(name=name, form="constant", T_min=T_min, T_max=T_max, ranges=(whole,), source=source)

@@ -39,9 +39,7 @@ class Fields:
         line, column = self.place(path, key)
         self.findings.append(Finding(self.file, line, column, text, code))
 
-    def mapping(
-        self, value: Any, path: Path, needed: Collection[str], optional: Collection[str] = ()
-    ) -> bool:
+    def mapping(self, value: Any, path: Path, needed: Collection[str], optional: Collection[str] = ()) -> bool:
         """Whether ``value`` is a mapping that has all ``needed`` keys.
 
         Unknown and missing keys are noted; keys that begin with ``x-`` are the user's own.
@@ -84,9 +82,7 @@ class Fields:
         items = self.sequence(value, path)
         return tuple(self.text(item, (*path, i)) for i, item in enumerate(items))
 
-    def number(
-        self, value: Any, path: Path, *, above: float | None = None, at_least: float | None = None
-    ) -> float:
+    def number(self, value: Any, path: Path, *, above: float | None = None, at_least: float | None = None) -> float:
         """A finite number, within the bounds given; NaN and a finding if it is none."""
         if not (isinstance(value, Scalar) and value.plain and _NUMBER.fullmatch(value)):
             self.wrong(path, f"{_where(path)} must be a plain number, not {_kind(value)}", "wrong-type")

@@ -125,7 +125,7 @@ def _pieces(model: Model, boundary: BoundaryOf, segment: Segment) -> list[Piece]
 
 
 _WARM = 1.25
-"""Lanes up to this multiple of the critical temperature are looked at where the temperature may dip between the ends."""
+"""Up to this multiple of the critical temperature a lane is looked at where the temperature may dip on the way."""
 
 
 def _may_meet_dome(model: Model, segment: Segment) -> NDArray[np.bool_]:
