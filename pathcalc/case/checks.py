@@ -113,6 +113,12 @@ def check_leg(leg: LegModel, at: Path, boundary: str, amount: bool | None, equat
             other = "closed" if boundary == "flow" else "flow"
             text = f"{key} is for boundary: {other} only; this case is boundary: {boundary}"
             out.add((*at, key), text, "wrong-boundary", key=True)
+    if leg.needs_saturation and equation in names.WITHOUT_SATURATION:
+        text = f"the equation {equation} has no saturation; a {leg.path} leg needs {words(names.CUBICS)}"
+        out.add((*at, "path"), text, "no-saturation")
+    if leg.needs_amount and amount is False:
+        text = f"a {leg.path} leg needs the top-level key 'amount', such as {EXAMPLE['mass-flow']}"
+        out.add((*at, "path"), text, "missing-amount")
     targets = getattr(leg, "to", None)
     if not isinstance(targets, OneOf):
         return

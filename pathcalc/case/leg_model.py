@@ -57,6 +57,10 @@ class LegModel(Strict):
     boundaries: ClassVar[frozenset[str]] = frozenset({"flow", "closed"})
     flow_only: ClassVar[frozenset[str]] = frozenset()
     closed_only: ClassVar[frozenset[str]] = frozenset()
+    needs_saturation: ClassVar[bool] = False
+    """The kind makes sense only with an equation that has a liquid and a vapour."""
+    needs_amount: ClassVar[bool] = False
+    """The kind needs the amount of the case."""
     exclusive: ClassVar[tuple[str, ...]] = ()
     """Fields of which at most one may be given."""
 

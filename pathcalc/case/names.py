@@ -10,7 +10,7 @@ CUBICS = ("van-der-waals", "redlich-kwong", "soave", "peng-robinson")
 WITHOUT_SATURATION = ("ideal-gas", "virial")
 DATUMS = ("ideal-gas-298", "triple-liquid", "boiling-liquid", "liquid-0C")
 SATURATION_DATUMS = ("triple-liquid", "boiling-liquid", "liquid-0C")
-PATHS_LATER = ("saturation", "separation", "mixing")
+PATHS_LATER: tuple[str, ...] = ()
 # the trade's other words for a path, and what is written here
 PATH_WORDS = {
     "isentropic": "write adiabatic, which is reversible where no efficiency is given",

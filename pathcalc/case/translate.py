@@ -6,6 +6,7 @@ from collections.abc import Callable
 from typing import Any, TypeVar, get_args
 
 from pydantic import BaseModel, ValidationError
+from pydantic.fields import FieldInfo
 
 from pathcalc.case.nodes import Mark, place
 from pathcalc.errors import Finding
@@ -80,14 +81,19 @@ def _name(path: Path) -> str:
     return f"`{last}`" if last else "the file"
 
 
+def _by_key(model: type[BaseModel]) -> dict[str, FieldInfo]:
+    """Fields by the key that a case writes."""
+    return {field.alias or name: field for name, field in model.model_fields.items()}
+
+
 def _keys(model: type[BaseModel], loc: Path) -> list[str]:
     for step in loc:
-        field = model.model_fields.get(str(step))
+        field = _by_key(model).get(str(step))
         if field is None:
             continue
         inner = [t for t in (field.annotation, *get_args(field.annotation)) if isinstance(t, type)]
         model = next((t for t in inner if issubclass(t, BaseModel)), model)
-    return list(model.model_fields)
+    return list(_by_key(model))
 
 
 def _holds_keys(name: str, _item: Any) -> str:

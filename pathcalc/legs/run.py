@@ -69,7 +69,9 @@ class Outcome:
 
     ``exchange`` is evaluated once the integrals of the way are known. ``reversible`` says that the fluid passes
     through the states of the way, so that its heat is the integral of T ds. ``ideal`` is the end of the reversible
-    leg that an isentropic efficiency refers to.
+    leg that an isentropic efficiency refers to. ``moles`` is the amount from this leg on where it changes (phases
+    parted, streams joined); then the results of the leg count per amount leaving, and ``carried_h`` and
+    ``carried_s`` are the enthalpy and entropy that the other stream brings, per mole leaving.
     """
 
     end: Place
@@ -77,6 +79,9 @@ class Outcome:
     exchange: Callable[[Integrals], Exchange]
     reversible: bool
     ideal: Place | None = None
+    moles: Array | None = None
+    carried_h: Array | None = None
+    carried_s: Array | None = None
 
 
 def nothing(i: Integrals) -> Exchange:
@@ -157,6 +162,30 @@ class Setting:
             return value / self.model.M
         return value
 
+    def pair(self, given: Mapping[str, Quantity | str], prefix: str) -> dict[str, Array]:
+        """Two given properties of a state in molar SI, lane values at ``<prefix>.<key>`` first."""
+        pair: dict[str, Array] = {}
+        for key, item in given.items():
+            lanes = self.override(f"{prefix}.{key}")
+            if not isinstance(item, Quantity):
+                pair["x"] = np.full(self.n, 0.0 if item == "saturated-liquid" else 1.0)
+                continue
+            value = self.molar(item) if lanes is None else self.to_molar(lanes, item.dimension)
+            if key == "rho":
+                key, value = "v", 1.0 / value
+            pair[key] = value
+        return pair
+
+    def amount(self, q: Quantity, address: str, v: Array | None = None) -> Array:
+        """Amount of substance (mol, or mol/s), lane values (kg, kg/s) first; ``v`` for a vessel's volume."""
+        lanes = self.override(address)
+        if lanes is not None:
+            return lanes / self.model.M
+        value = np.full(self.n, q.value)
+        if q.dimension.startswith("mass"):
+            return value / self.model.M
+        return value if v is None or q.dimension.startswith("mole") else value / v
+
     def place(self, points: Points) -> Place:
         """A point with its properties."""
         return place_of(self.model, points)
@@ -195,8 +224,11 @@ def _shown(model: Model, key: str, molar: float) -> str:
 class LegRun:
     """One leg being solved: values over the lanes of the path."""
 
-    def __init__(self, setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -> None:
+    def __init__(
+        self, setting: Setting, leg: LegModel, inlet: Place, inlet_name: str, moles: Array | None = None
+    ) -> None:
         self.setting = setting
+        self.moles = moles
         self.leg = leg
         self.inlet = inlet
         self.inlet_name = inlet_name
@@ -249,8 +281,8 @@ class LegRun:
 
     def _plain(self, key: str, q: Quantity) -> Array:
         if q.dimension in ("energy", "power"):
-            assert self.setting.moles is not None
-            return q.value / self.setting.moles
+            assert self.moles is not None
+            return q.value / self.moles
         return self.setting.molar(q)
 
     def _relative(self, key: str, kind: str, amount: Array) -> Array:

@@ -31,7 +31,7 @@ def constant(key: str, a: Place, b: Place, *, own: bool = True) -> Segment:
     return Segment(Constant(key, getattr(a, key)), a.points, b.points, own)
 
 
-def heated(a: Place, b: Place) -> list[Segment]:
+def heated(a: Place, b: Place, *, own: bool = True) -> list[Segment]:
     """At constant pressure in the lanes without a drop, else with the drop spread in proportion to the heat."""
     level = a.p == b.p
     segments = []
@@ -44,7 +44,7 @@ def heated(a: Place, b: Place) -> list[Segment]:
             family: Polytrope | HeatedWithDrop = Polytrope(np.zeros(lanes.size), np.log(start.p))
         else:
             family = HeatedWithDrop(a.p[lanes], a.h[lanes], b.p[lanes], b.h[lanes])
-        segments.append(Segment(family, start, stop, lanes=lanes))
+        segments.append(Segment(family, start, stop, own, lanes=lanes))
     return segments
 
 

@@ -77,6 +77,11 @@ def _leg_checks(solution: Solution, solved: SolvedLeg) -> list[Check]:
     return rows
 
 
+def _carried(solved: SolvedLeg, carried: Array | None) -> Array:
+    """What streams that join or leave bring, per mole of the leg; nothing for most legs."""
+    return np.zeros(solved.ds.size) if carried is None else carried
+
+
 def _energy_scale(solution: Solution, solved: SolvedLeg) -> float:
     row = 2 if solution.path.setting.flow else 1
     magnitude = solved.integrals.magnitude
@@ -96,7 +101,7 @@ def _first_law(solution: Solution, solved: SolvedLeg, rounding: float) -> Check:
         heat, work = i["T_ds"], i["v_dp"] if flow else -i["p_dv"]
         error = _error_of(solved, "T_ds", "v_dp" if flow else "p_dv")
     else:
-        heat, work = solved.exchange.heat, solved.exchange.work
+        heat, work = solved.exchange.heat + _carried(solved, solved.outcome.carried_h), solved.exchange.work
         error = _error_of(solved, "dh" if flow else "du")
     scale = _energy_scale(solution, solved)
     miss = abs(float((heat + work - change)[0])) / scale
@@ -148,6 +153,7 @@ def _exergy_balance(solution: Solution, solved: SolvedLeg, rounding: float) -> C
         change = (b.u - a.u) + p0 * (b.v - a.v) - T0 * entropy
         useful = solved.exchange.work + p0 * (b.v - a.v)
     with_heat = solved.exchange.heat - T0 * (solved.ds - solved.entropy_generated)
+    with_heat = with_heat + _carried(solved, solved.outcome.carried_h)
     miss = useful + with_heat - T0 * solved.entropy_generated - change
     scale = _energy_scale(solution, solved) + float((T0 * scales(solution.path, solved)[0])[0])
     energy = "dh" if setting.flow else "du"
@@ -201,12 +207,17 @@ def _path_checks(solution: Solution) -> list[Check]:
         gap = max(abs(float((b / a - 1.0)[0])) for a, b in pairs)
         rows.append(_row("cycle closes", "totals", gap, CYCLE_TOLERANCE))
     energy = "h" if path.setting.flow else "u"
-    total = sum(float((leg.exchange.heat + leg.exchange.work)[0]) for leg in path.legs)
-    change = float((getattr(path.legs[-1].end, energy) - getattr(path.start, energy))[0])
-    scale = sum(_energy_scale(solution, leg) for leg in path.legs)
-    tolerance = max(
-        float(_error_of(leg, "dh", "du", "p_dv", "v_dp")[0]) / scale + float(rounding_of(path, leg)[0])
+    total = change = scale = 0.0
+    for leg in path.legs:
+        share = 1.0 if leg.moles is None else float(leg.moles[0])
+        brought = leg.exchange.heat + leg.exchange.work + _carried(leg, leg.outcome.carried_h)
+        total += share * float(brought[0])
+        change += share * float((getattr(leg.end, energy) - getattr(leg.inlet, energy))[0])
+        scale += share * _energy_scale(solution, leg)
+    tolerance = len(path.legs) * max(
+        float(_error_of(leg, "dh", "du", "p_dv", "v_dp")[0]) / _energy_scale(solution, leg)
+        + float(rounding_of(path, leg)[0])
         for leg in path.legs
-    ) * len(path.legs)
+    )
     rows.append(_row("energy balance of the path", "totals", abs(total - change) / scale, tolerance))
     return rows

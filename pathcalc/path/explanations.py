@@ -253,7 +253,7 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
 
 def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
     flow, leg = solution.path.setting.flow, solution.legs[solved.leg.name]
-    if solved.leg.path in ("adiabatic", "throttling", "free-expansion"):
+    if solved.leg.path in ("adiabatic", "throttling", "free-expansion", "separation", "mixing"):
         return [Step("Heat", r"q=0", "", "0", note="The leg is adiabatic.")]
     base = "h" if flow else "u"
     law = "of a flow through a device" if flow else "of a closed mass"
@@ -291,6 +291,16 @@ def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
             )
         ]
     carried = leg["delta"]["s"] - leg.entropy_generated
+    if solved.outcome.carried_s is not None:
+        return [
+            Step(
+                title="Entropy generated, streams parting or joining",
+                formula=r"s_\mathrm{gen}=\Delta s-s_\mathrm{carried}",
+                numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{bracketed(carried, 'entropy')}",
+                result=with_unit(leg.entropy_generated, "entropy"),
+                note="Per kilogram leaving; the carried entropy is what the other stream brings, weighed by amounts.",
+            )
+        ]
     return [
         Step(
             title="Entropy generated, heat crossing at the fluid's own temperature"
@@ -321,7 +331,8 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
     if solution.totals["work"] is None:
         return {}
     flow = solution.path.setting.flow
-    mass = next(iter(solution.legs.values()))["amount"]
+    masses = [leg["amount"] for leg in solution.legs.values()]
+    alike = all(mass == masses[0] for mass in masses)
     found: dict[str, list[Step]] = {}
     symbols = {"heat": "q", "work": "w", "entropy_generated": r"s_\mathrm{gen}", "exergy_destroyed": r"e_\mathrm{d}"}
     for key, symbol in symbols.items():
@@ -334,14 +345,20 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
             ("entropy", False): r"\mathrm{kJ/K}",
         }[(kind, flow)]
         amount = r"\dot m" if flow else "m"
+        each = rf"\left({symbol}\right)_i"
+        if alike:
+            formula = rf"{amount}\sum_i {each}"
+            numbers = rf"{number(masses[0])}\times\left(" + "+".join(bracketed(p, kind) for p in parts) + r"\right)"
+        else:
+            formula = rf"\sum_i {amount}_i\,{each}"
+            terms = zip(masses, parts, strict=True)
+            numbers = "+".join(rf"{number(mass)}\times {bracketed(part, kind)}" for mass, part in terms)
         found[f"totals.{key}"] = [
             _amount_step(solution),
             Step(
                 title="Sum over the legs",
-                formula=rf"{amount}\sum_i {symbol}_i"
-                if not symbol.startswith("s_") and not symbol.startswith("e_")
-                else rf"{amount}\sum_i \left({symbol}\right)_i",
-                numbers=rf"{number(mass)}\times\left(" + "+".join(bracketed(p, kind) for p in parts) + r"\right)",
+                formula=formula,
+                numbers=numbers,
                 result=rf"{signed(solution.totals[key] * 1e-3)}\ {unit}".replace("(", "").replace(")", ""),
                 note="Legs in order: " + ", ".join(solution.legs) + ".",
             ),

@@ -99,20 +99,28 @@ class Solution:
         if setting.moles is None:
             nothing: dict[str, Any] = dict.fromkeys(EXCHANGE_KEYS)
             return {**nothing, "delta": dict.fromkeys(DELTA_KEYS)}
-        mass = setting.moles * M
         totals: dict[str, Any] = {}
         for key in EXCHANGE_KEYS:
             total = np.zeros(setting.n)
             for leg in self._leg_arrays.values():
-                total = total + leg[key] * mass
+                total = total + leg[key] * leg["amount"]
             totals[key] = total
         ends = {"T": (self.path.start.T, self._last.T), "p": (self.path.start.p, self._last.p)}
         delta: dict[str, Any] = {key: last - first for key, (first, last) in ends.items()}
-        delta["v"] = (self._last.v - self.path.start.v) / M * mass
+        first, last = self._amount_at_ends
+        delta["v"] = (self._last.v * last - self.path.start.v * first) / M
         for key in EXTENSIVE_ENERGIES:
-            delta[key] = sum((leg["delta"][key] * mass for leg in self._leg_arrays.values()), np.zeros(setting.n))
+            changes = (leg["delta"][key] * leg["amount"] for leg in self._leg_arrays.values())
+            delta[key] = sum(changes, np.zeros(setting.n))
         ok = setting.status.ok
         return {**totals, "delta": {key: np.where(ok, delta[key], np.nan) for key in DELTA_KEYS}}
+
+    @property
+    def _amount_at_ends(self) -> tuple[Any, Any]:
+        """Mass (or mass flow) at the start and after the last leg."""
+        M = self.path.model.M
+        first, last = self.path.setting.moles, self.path.legs[-1].moles
+        return (None, None) if first is None or last is None else (first * M, last * M)
 
     @property
     def _last(self) -> Place:

@@ -38,6 +38,7 @@ class SolvedLeg:
     exchange: Exchange
     ds: Array
     entropy_generated: Array
+    moles: Array | None
 
     @property
     def end(self) -> Place:
@@ -70,14 +71,14 @@ def solve_path(case: Case, lanes: Mapping[str, Any] | None = None, equation: str
     mark_out_of_range(arrays, setting.status)
     with np.errstate(invalid="ignore", divide="ignore", over="ignore", under="ignore"):
         start = start_place(case, setting)
-        setting.moles = moles_of(case, model, start, setting)
+        setting.moles = moles = moles_of(case, start, setting)
         setting.places["start"] = start
         place, name = start, "start"
         solved: list[SolvedLeg] = []
         for leg in case.legs:
-            done = _solve_leg(setting, leg, place, name)
+            done = _solve_leg(setting, leg, place, name, moles)
             solved.append(done)
-            place, name = done.end, leg.name
+            place, name, moles = done.end, leg.name, done.moles
             setting.places[name] = place
         if case.cycle:
             _check_cycle(setting, start, place)
@@ -122,8 +123,8 @@ def leg_solver(leg: LegModel) -> Solver:
     return solver
 
 
-def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -> SolvedLeg:
-    run = LegRun(setting, leg, inlet, inlet_name)
+def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str, moles: Array | None) -> SolvedLeg:
+    run = LegRun(setting, leg, inlet, inlet_name, moles)
     outcome = leg_solver(leg)(leg, run)
     integrals = integrate_segments(setting.model, setting.boundary, outcome.segments, setting.n)
     setting.status.fail(
@@ -149,8 +150,12 @@ def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str) -
     ds = integrals["ds"]
     own_temperature = outcome.reversible and getattr(leg, "reservoir", None) is None
     generated = np.zeros(setting.n) if own_temperature else ds - exchange.entropy_in
-    generated = np.where(np.isfinite(ds), generated, np.nan)
-    return SolvedLeg(leg, inlet_name, inlet, outcome, integrals, exchange, ds, generated)
+    if outcome.carried_s is not None:
+        generated = generated - outcome.carried_s
+    noise = 64.0 * np.finfo(float).eps * integrals.magnitude[0]
+    generated = np.where(np.isfinite(ds), np.where(np.abs(generated) <= noise, 0.0, generated), np.nan)
+    moles = moles if outcome.moles is None else outcome.moles
+    return SolvedLeg(leg, inlet_name, inlet, outcome, integrals, exchange, ds, generated, moles)
 
 
 def _least(setting: Setting, inlet: Place) -> Array:

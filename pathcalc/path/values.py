@@ -124,7 +124,7 @@ def leg_values(path: SolvedPath, solved: SolvedLeg) -> dict[str, Any]:
         "exergy_destroyed": setting.T0 * generated / M,
     }
     error, closure = closure_of(path, solved)
-    mass = None if setting.moles is None else setting.moles * M
+    mass = None if solved.moles is None else solved.moles * M
     values: dict[str, Any] = {
         "name": solved.leg.name,
         "path": solved.leg.path,

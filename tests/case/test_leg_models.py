@@ -30,11 +30,13 @@ KINDS = {
     "free-expansion": ("v rho p", "", "closed", ""),
     "polytropic": ("p T v rho", "exponent reservoir", "flow closed", ""),
     "workless": ("T h x superheat subcooling heat p", "pressure_drop reservoir", "flow", ""),
+    "saturation": ("T p", "reservoir", "flow closed", ""),
 }
+WITHOUT_TARGETS = {"separation": {"keep"}, "mixing": {"other"}}
 
 
 def test_the_kinds_are_those_of_the_format() -> None:
-    assert set(leg_models()) == set(KINDS)
+    assert set(leg_models()) == set(KINDS) | set(WITHOUT_TARGETS)
 
 
 @pytest.mark.parametrize("path", KINDS)
@@ -46,6 +48,13 @@ def test_fields(path: str) -> None:
     assert set(targets.model_fields) == set(to.split())
     assert model.boundaries == set(boundaries.split())
     assert model.flow_only | model.closed_only == set(one_only.split())
+
+
+@pytest.mark.parametrize("path", WITHOUT_TARGETS)
+def test_fields_without_targets(path: str) -> None:
+    model = leg_models()[path]
+    assert set(model.model_fields) == (COMMON - {"to"}) | WITHOUT_TARGETS[path]
+    assert model.boundaries == {"flow"}
 
 
 def test_models_work_without_a_file() -> None:

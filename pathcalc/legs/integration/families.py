@@ -393,3 +393,37 @@ class HeatedWithDrop:
     def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
         """See :class:`Family`."""
         return {"p": 0.5 * (self.p_a + self.p_b)[lanes], "h": 0.5 * (self.h_a + self.h_b)[lanes]}
+
+
+@dataclass(frozen=True)
+class ConstantQuality:
+    """The quality constant (``x``, (lanes,)): the whole curve lies in the dome or on its boundary."""
+
+    x: Array
+
+    @property
+    def coordinate(self) -> Coordinate:
+        """See :class:`Family`."""
+        return "T"
+
+    @property
+    def level_in_dome(self) -> bool:
+        """See :class:`Family`."""
+        return False
+
+    def nodes(self, model: Model, ends: Ends, x: Array, lanes: Lanes) -> Nodes:
+        """See :class:`Family`."""
+        raise AssertionError("a line of constant quality lies in the dome")
+
+    def mismatch(self, side: Side, lanes: Lanes | None) -> Array:
+        """See :class:`Family`."""
+        return np.ones_like(side.T)
+
+    def dome_volume(self, liquid: Side, vapour: Side, lanes: Lanes) -> Array:
+        """See :class:`Family`."""
+        x = self.x[lanes]
+        return (1.0 - x) * liquid.v + x * vapour.v
+
+    def middle(self, model: Model, ends: Ends, lanes: Lanes) -> dict[str, Array]:
+        """See :class:`Family`."""
+        return {"T": 0.5 * (ends.T_a + ends.T_b), "x": self.x[lanes]}
