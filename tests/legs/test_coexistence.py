@@ -92,7 +92,7 @@ def test_separation_keeps_its_share(keep: str) -> None:
     assert solution.legs["drum"].amount == pytest.approx(share, rel=1e-12)
     assert solution.legs["after"].amount == pytest.approx(share, rel=1e-12)
     assert solution.states["drum"].x == (1.0 if keep == "vapour" else 0.0)
-    assert solution.states["drum"].T == pytest.approx(solution.states["valve"].T, rel=1e-12)
+    assert pytest.approx(solution.states["valve"].T, rel=1e-12) == solution.states["drum"].T
     assert solution.legs["drum"].entropy_generated == 0.0
     after = solution.legs["after"]
     assert solution.totals.heat == pytest.approx(share * after.heat, rel=1e-12)
@@ -129,7 +129,7 @@ legs:
     solution = pathcalc.solve(pathcalc.loads(head))
     passed(solution)
     out = solution.states["joint"]
-    assert out.T == pytest.approx(1100.0 / 3.0, rel=1e-12)
+    assert pytest.approx(1100.0 / 3.0, rel=1e-12) == out.T
     assert out.p == 3e5
     R = 8.314462618 / solution.path.model.M
     c_p = 2.5 * R
@@ -154,4 +154,4 @@ def test_joining_its_own_kind_makes_no_entropy() -> None:
     solution = solved(legs, "{T: 360 K, p: 10 bar}")
     passed(solution)
     assert solution.legs["joint"].entropy_generated == pytest.approx(0.0, abs=1e-9)
-    assert solution.states["joint"].T == pytest.approx(360.0, rel=1e-12)
+    assert pytest.approx(360.0, rel=1e-12) == solution.states["joint"].T
