@@ -26,6 +26,7 @@ _BUILT_IN: Mapping[str, str] = {
     "soave": "pathcalc.equations.families:soave",
     "peng-robinson": "pathcalc.equations.families:peng_robinson",
     "virial": "pathcalc.equations.families:virial",
+    "reference": "pathcalc.equations.helmholtz.reference:reference",
 }
 _GROUP = "pathcalc.equations"
 _T_CEILING = 20000.0
@@ -143,9 +144,7 @@ def build_model(
     )
 
 
-def _ideal_part(
-    card: Card, built: Built, heat_capacity: str | float | None, given: IdealPart | None
-) -> IdealPart:
+def _ideal_part(card: Card, built: Built, heat_capacity: str | float | None, given: IdealPart | None) -> IdealPart:
     if isinstance(heat_capacity, int | float):
         return ideal_gas.constant(float(heat_capacity) / built.R)
     if heat_capacity is None:

@@ -121,7 +121,10 @@ class Parameter(NamedTuple):
 
 @dataclass(frozen=True)
 class EquationInfo:
-    """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words."""
+    """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words.
+
+    ``uncertainty`` holds what its source states, a line a property and region.
+    """
 
     name: str
     title: str
@@ -129,6 +132,7 @@ class EquationInfo:
     parameters: tuple[Parameter, ...]
     source: str
     range_text: str
+    uncertainty: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -1,0 +1,126 @@
+"""The residual part of a multiparameter equation of state, α^r(δ, τ), as the contract wants it."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from itertools import pairwise
+
+import numpy as np
+
+from pathcalc.equations.contract import Array, PressureTerms, Reduced
+from pathcalc.equations.helmholtz.bank import Bank
+from pathcalc.equations.helmholtz.forms import forms_of
+from pathcalc.equations.helmholtz.non_analytic import NonAnalyticTerms
+from pathcalc.equations.helmholtz.term import Place, Real, Separable
+from pathcalc.substances.reference import Reference
+
+BLOCK_ELEMENTS = 16384
+"""Terms times lanes evaluated at a time: the block stays in the processor's cache."""
+
+Orders = Sequence[tuple[int, int]]
+
+REDUCED: Orders = ((0, 0), (0, 1), (0, 2), (1, 0), (1, 1), (2, 0))
+PRESSURE: Orders = ((0, 1), (0, 2), (1, 1), (2, 1))
+CURVATURE: Orders = ((2, 1),)
+
+
+class HelmholtzResidual:
+    """α^r = Σ of the terms ``forms`` at δ = ρ/``rho_r`` (mol/m3) and τ = ``T_r``/T (K); ``R`` in J/(mol K)."""
+
+    def __init__(
+        self,
+        T_r: float,
+        rho_r: float,
+        R: float,
+        forms: Sequence[Separable | NonAnalyticTerms],
+        reference: Reference | None = None,
+    ) -> None:
+        self.T_r, self.rho_r, self.R = T_r, rho_r, R
+        self.reference = reference
+        self.forms = tuple(forms)
+        self._bank = Bank([form for form in forms if isinstance(form, Separable)])
+        self._critical = [form for form in forms if isinstance(form, NonAnalyticTerms)]
+        self.block = max(64, BLOCK_ELEMENTS // self._bank.n.size)
+        self.dtype = self._bank.n.dtype
+
+    @classmethod
+    def of(cls, reference: Reference, dtype: Real = np.float64) -> HelmholtzResidual:
+        """The equation of a card, evaluated in the precision ``dtype``."""
+        reducing = reference.reducing
+        return cls(reducing.T, reducing.rho, reference.gas_constant, forms_of(reference, dtype), reference)
+
+    def derivatives(self, T: Array, rho: Array, wanted: Orders) -> Array:
+        """D_ij = τ^i δ^j ∂^(i+j) α^r/∂τ^i∂δ^j for each (i, j) of ``wanted``, stacked on a new first axis.
+
+        The result has the equation's own ``dtype``.
+
+        ``T`` in K, ``rho`` in mol/m3, any shapes that broadcast; i up to 2, j up to 3. NaN where T is not
+        positive or rho is negative. At rho = 0 exactly zero.
+        """
+        T, rho = np.broadcast_arrays(np.asarray(T, dtype=self.dtype), np.asarray(rho, dtype=self.dtype))
+        shape, n = T.shape, T.size
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
+            tau, delta = self.T_r / T.ravel(), rho.ravel() / self.rho_r
+            if n == 1:
+                return self._block(tau.repeat(2), delta.repeat(2), wanted)[:, :1].reshape(-1, *shape)
+            if n <= self.block:
+                return self._block(tau, delta, wanted).reshape(-1, *shape)
+            out = np.empty((len(wanted), n), dtype=self.dtype)
+            edges = [*range(0, n - 1, self.block), n]  # n - 1: no block of one lane
+            for start, stop in pairwise(edges):
+                out[:, start:stop] = self._block(tau[start:stop], delta[start:stop], wanted)
+        return out.reshape(-1, *shape)
+
+    def _block(self, tau: Array, delta: Array, wanted: Orders) -> Array:
+        x = Place(delta, tau, np.log(delta), np.log(tau))
+        out = self._bank.sums(x, wanted)
+        for form in self._critical:
+            near = form.near(x)
+            count = int(near.sum())
+            if count == near.size:
+                out += form.sums(x, wanted)
+            elif count:
+                where = np.flatnonzero(near)
+                padded = where.repeat(2) if count == 1 else where
+                part = form.sums(Place(*(item[padded] for item in x)), wanted)
+                out[:, where] += part[:, :count]
+        return out
+
+    def reduced(self, T: Array, rho: Array) -> Reduced:
+        """Scaled derivatives up to the second order at ``T`` (K) and ``rho`` (mol/m3)."""
+        return Reduced(*self.derivatives(T, rho, REDUCED))
+
+    def pressure(self, T: Array, v: Array) -> PressureTerms:
+        """p = R T ρ (1 + D01) and its derivatives at ``T`` (K), ``v`` (m3/mol).
+
+        (∂p/∂T)_v = R ρ (1 + D01 − D11), (∂p/∂v)_T = −R T ρ² (1 + 2 D01 + D02), (∂²p/∂T²)_v = R ρ D21/T.
+        """
+        rho = 1.0 / np.asarray(v, dtype=np.float64)
+        d01, d02, d11, d21 = self.derivatives(T, rho, PRESSURE)
+        Rrho = self.R * rho
+        z = 1.0 + d01
+        return PressureTerms(T * Rrho * z, Rrho * (z - d11), -T * Rrho * rho * (z + d01 + d02), Rrho * d21 / T)
+
+    def pressure_curvature(self, T: Array, v: Array) -> Array:
+        """(∂²p/∂T²)_v = R ρ D21/T, Pa/K2."""
+        rho = 1.0 / np.asarray(v, dtype=np.float64)
+        curvature: Array = self.R * rho / T * self.derivatives(T, rho, CURVATURE)[0]
+        return curvature
+
+    def volume_roots(self, T: Array, p: Array) -> Array:
+        """Stable volumes (m3/mol) at ``T`` (K), ``p`` (Pa), shape (2, n); see ``roots``."""
+        from pathcalc.equations.helmholtz import roots
+
+        return roots.volume_roots(self, T, p)
+
+    def v_min(self, T: Array) -> Array:
+        """The smallest volume at which the equation is evaluated, m3/mol; see ``roots``."""
+        from pathcalc.equations.helmholtz import roots
+
+        return roots.v_min(self, T)
+
+    def saturation_start(self, T: Array) -> Array:
+        """A start for the saturation pressure (Pa) at ``T`` (K); see ``roots``."""
+        from pathcalc.equations.helmholtz import roots
+
+        return roots.saturation_start(self, T)
