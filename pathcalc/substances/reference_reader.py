@@ -62,6 +62,8 @@ NEEDED = (
 OPTIONAL = ("acentric", "ancillaries", "melting", "notes")
 ANCILLARIES = ("vapour_pressure", "bubble_pressure", "dew_pressure", "liquid_density", "vapour_density")
 FOLDER = "reference"
+BELL_LEAST = 30.0
+"""A bell e^(−η(δ − ε)²) may stand without a power of δ if it is below e^−30 at zero density."""
 
 
 def reference_path(card: Card) -> Path:
@@ -226,7 +228,8 @@ def _term_rows(fields: Fields, value: Any, path: Place, form: str) -> tuple[tupl
             continue
         full = (*row, *defaults[len(defaults) - left_out :])
         named = dict(zip(wanted, full, strict=True))
-        if form != "non-analytic" and named["d"] <= 0.0:
+        bell = named.get("eta", 0.0) * named.get("epsilon", 0.0) ** 2
+        if named.get("d", 1.0) < 0.0 or (named.get("d", 1.0) == 0.0 and bell < BELL_LEAST):
             fields.wrong((*here, 1), "d must be greater than 0: a residual term vanishes at zero density", "bad-value")
         if "l" in named and named["l"] <= 0.0:
             text = "l must be greater than 0; a term without the factor is of the form power"

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from functools import cached_property
 from itertools import pairwise
 
 import numpy as np
 
 from pathcalc.equations.contract import Array, PressureTerms, Reduced
+from pathcalc.equations.helmholtz import coexistence, roots
 from pathcalc.equations.helmholtz.bank import Bank
+from pathcalc.equations.helmholtz.coexistence import SaturationLine
 from pathcalc.equations.helmholtz.forms import forms_of
 from pathcalc.equations.helmholtz.non_analytic import NonAnalyticTerms
 from pathcalc.equations.helmholtz.term import Place, Real, Separable
@@ -16,6 +19,9 @@ from pathcalc.substances.reference import Reference
 
 BLOCK_ELEMENTS = 16384
 """Terms times lanes evaluated at a time: the block stays in the processor's cache."""
+
+LOG_LEAST = -690.0
+"""ln δ is not let below this, so that a term with d = 0 stays finite at zero density."""
 
 Orders = Sequence[tuple[int, int]]
 
@@ -72,7 +78,7 @@ class HelmholtzResidual:
         return out.reshape(-1, *shape)
 
     def _block(self, tau: Array, delta: Array, wanted: Orders) -> Array:
-        x = Place(delta, tau, np.log(delta), np.log(tau))
+        x = Place(delta, tau, np.maximum(np.log(delta), LOG_LEAST), np.log(tau))
         out = self._bank.sums(x, wanted)
         for form in self._critical:
             near = form.near(x)
@@ -108,19 +114,44 @@ class HelmholtzResidual:
         return curvature
 
     def volume_roots(self, T: Array, p: Array) -> Array:
-        """Stable volumes (m3/mol) at ``T`` (K), ``p`` (Pa), shape (2, n); see ``roots``."""
-        from pathcalc.equations.helmholtz import roots
-
+        """Stable and metastable volumes (m3/mol) at ``T`` (K), ``p`` (Pa), shape (2, n); see ``roots``."""
         return roots.volume_roots(self, T, p)
+
+    def stable_volume(self, T: Array, p: Array) -> tuple[Array, Array]:
+        """The volume (m3/mol) of the stable phase and ln(p/p_sat), each (n,); see ``roots``."""
+        return roots.stable_volume(self, T, p)
 
     def v_min(self, T: Array) -> Array:
         """The smallest volume at which the equation is evaluated, m3/mol; see ``roots``."""
-        from pathcalc.equations.helmholtz import roots
-
         return roots.v_min(self, T)
 
     def saturation_start(self, T: Array) -> Array:
-        """A start for the saturation pressure (Pa) at ``T`` (K); see ``roots``."""
-        from pathcalc.equations.helmholtz import roots
-
+        """The saturation pressure (Pa) at ``T`` (K); see ``roots``."""
         return roots.saturation_start(self, T)
+
+    @cached_property
+    def coexistence(self) -> SaturationLine:
+        """The saturation line: kept beside the card, or fitted when first asked for."""
+        return coexistence.of(self)
+
+    @cached_property
+    def ln_rho_max(self) -> float:
+        """ln of the largest density (mol/m3) at which the equation is evaluated."""
+        card = self._card
+        T = np.geomspace(self.coexistence.T_low, card.limits.T_max, 12)
+        return roots.ceiling(self, card.limits.p_max, T)
+
+    @cached_property
+    def omega(self) -> float:
+        """The acentric factor of the card, or by its definition −1 − lg(p_sat/p_c) at T = 0.7 T_c (zero if solid)."""
+        if self._card.acentric is not None:
+            return self._card.acentric
+        line = self.coexistence
+        T = max(0.7 * line.T_x, line.T_low)
+        return float(-1.0 - np.log10(line.p_at(np.array([T]))[0] / line.p_x)) if T == 0.7 * line.T_x else 0.0
+
+    @property
+    def _card(self) -> Reference:
+        if self.reference is None:
+            raise ValueError("an equation without its card has no limits")
+        return self.reference
