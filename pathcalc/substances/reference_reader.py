@@ -62,8 +62,8 @@ NEEDED = (
 OPTIONAL = ("acentric", "ancillaries", "melting", "notes")
 ANCILLARIES = ("vapour_pressure", "bubble_pressure", "dew_pressure", "liquid_density", "vapour_density")
 FOLDER = "reference"
-BELL_LEAST = 30.0
-"""A bell e^(−η(δ − ε)²) may stand without a power of δ if it is below e^−30 at zero density."""
+CANCEL = 1e-12
+"""Terms without a power of δ must cancel to this, relative, at zero density."""
 
 
 def reference_path(card: Card) -> Path:
@@ -213,7 +213,25 @@ def _terms(fields: Fields, value: Any) -> tuple[TermTable, ...]:
             found.append(TermTable(form, _term_rows(fields, item["rows"], (*path, "rows"), form)))
     if not any(table.form != "non-analytic" and table.rows for table in found):
         fields.wrong(("terms",), "`terms` needs at least one table of power or exponential terms", "missing-key")
+    _check_zero_density(fields, found)
     return tuple(found)
+
+
+def _check_zero_density(fields: Fields, tables: list[TermTable]) -> None:
+    """Terms without a power of δ: for each power of τ they must add up to nothing at zero density."""
+    left: dict[float, float] = {}
+    size: dict[float, float] = {}
+    for table in tables:
+        for row in table.rows:
+            named = dict(zip(TERM_COLUMNS[table.form], row, strict=True))
+            if named.get("d") == 0.0:
+                n = named["n"] * math.exp(-named.get("eta", 0.0) * named.get("epsilon", 0.0) ** 2)
+                left[named["t"]] = left.get(named["t"], 0.0) + n
+                size[named["t"]] = size.get(named["t"], 0.0) + abs(named["n"])
+    for t, total in left.items():
+        if not abs(total) <= CANCEL * size[t]:
+            text = f"the terms with d = 0 and t = {t:g} do not cancel at zero density, where a residual part vanishes"
+            fields.wrong(("terms",), text, "bad-value")
 
 
 def _term_rows(fields: Fields, value: Any, path: Place, form: str) -> tuple[tuple[float, ...], ...]:
@@ -228,9 +246,8 @@ def _term_rows(fields: Fields, value: Any, path: Place, form: str) -> tuple[tupl
             continue
         full = (*row, *defaults[len(defaults) - left_out :])
         named = dict(zip(wanted, full, strict=True))
-        bell = named.get("eta", 0.0) * named.get("epsilon", 0.0) ** 2
-        if named.get("d", 1.0) < 0.0 or (named.get("d", 1.0) == 0.0 and bell < BELL_LEAST):
-            fields.wrong((*here, 1), "d must be greater than 0: a residual term vanishes at zero density", "bad-value")
+        if named.get("d", 0.0) < 0.0:
+            fields.wrong((*here, 1), "d must not be less than 0", "bad-value")
         if "l" in named and named["l"] <= 0.0:
             text = "l must be greater than 0; a term without the factor is of the form power"
             fields.wrong((*here, wanted.index("l")), text, "bad-value")
