@@ -9,6 +9,7 @@ from numpy.typing import ArrayLike
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium.along_saturation import flash_beside, flash_x
+from pathcalc.equilibrium.fence import fenced
 from pathcalc.equilibrium.given_calorics import flash_s, flash_uh
 from pathcalc.equilibrium.given_pressure import flash_p, flash_Tp
 from pathcalc.equilibrium.given_temperature import flash_T
@@ -52,7 +53,7 @@ def flash(model: Model, given: Mapping[str, ArrayLike]) -> Points:
     n = a.size
     with np.errstate(all="ignore"):
         parts = [solve(model, a[i : i + BLOCK], b[i : i + BLOCK]) for i in range(0, max(n, 1), BLOCK)]
-    return joined(parts)
+    return fenced(model, joined(parts))
 
 
 Solve = Callable[[Model, Array, Array], Points]

@@ -8,6 +8,7 @@ monotone.
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
@@ -16,12 +17,13 @@ from pathcalc.equilibrium.given_pressure import flash_p
 from pathcalc.equilibrium.given_volume import mixed
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import pressure_range
+from pathcalc.equilibrium.saturation import pressure_range, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _P_LEAST = 1e-3
 _P_MOST = 1e10
 _NODES = 200
+_HARDLY_WET = 1e-6
 _FIELDS = tuple(Saturation.__dataclass_fields__)
 
 
@@ -46,7 +48,7 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     at = np.flatnonzero(usable)
     if at.size == 0:
         return draft.finish(model)
-    low, high = np.full(at.size, np.log(_P_LEAST)), np.full(at.size, np.log(_P_MOST))
+    low, high = np.full(at.size, np.log(_least(model))), np.full(at.size, np.log(_P_MOST))
     start = np.full(at.size, np.log(1e5))
     root = guarded_newton(fun, start, low, high, (s[at], target[at]), unit=1.0, tolerance=3e-9)
     points = flash_p(model, np.exp(root.x), "s", s[at])
@@ -54,9 +56,42 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     miss = np.abs(_on_isentrope(model, points, key)[0] - target[at])
     reached = points.ok & (root.ok | (miss <= 1e-12 * (np.abs(target[at]) + model.R * points.T)))
     draft.take(at, points)
+    _polish(model, draft, at[reached], s, key, target)
     missed = at[~reached]
     draft.reason[missed] = np.where(points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached])
     return draft.finish(model)
+
+
+def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array) -> None:
+    """Newton steps in T and v on both values themselves: p is a poor measure of a liquid that hardly compresses.
+
+    With X = h or u, det = (c_v/T) (∂X/∂v)_T − (∂p/∂T)_v (∂X/∂T)_v.
+    """
+    wet = draft.x[at] > _HARDLY_WET
+    at = at[~wet]
+    if at.size == 0 or model.residual.coexistence is None:
+        return
+    barely = draft.x[at] == draft.x[at]
+    T, v = draft.T[at], np.where(barely, draft.v_liquid[at], draft.v[at])
+    wanted_s, wanted = s[at], target[at]
+    with np.errstate(all="ignore"):
+        for _ in range(5):
+            t = thermal(model, T, v)
+            S, S_T, S_v = quantity.of("s", t, T, v)
+            X, X_T, X_v = quantity.of(key, t, T, v)
+            det = S_T * X_v - S_v * X_T
+            dT = ((wanted_s - S) * X_v - S_v * (wanted - X)) / det
+            dv = (S_T * (wanted - X) - X_T * (wanted_s - S)) / det
+            near = (np.abs(dT) < 1e-3 * T) & (np.abs(dv) < 1e-3 * v)
+            T, v = np.where(near, T + dT, T), np.where(near, v + dv, v)
+        p = thermal(model, T, v).p
+        p_s = np.zeros(at.size)
+        p_s[barely] = saturation_at_T(model, T[barely]).p
+        good = near & (p > p_s)
+    here = at[good]
+    draft.T[here], draft.v[here], draft.p[here] = T[good], v[good], p[good]
+    for a in (draft.x, draft.v_liquid, draft.v_vapour):
+        a[here] = np.nan
 
 
 def _on_isentrope(model: Model, points: Points, key: str) -> tuple[Array, Array]:
@@ -79,6 +114,11 @@ def _on_isentrope(model: Model, points: Points, key: str) -> tuple[Array, Array]
             sat = Saturation(T, points.p[at], v_l, v_v, ds / (v_v - v_l), points.reason[at])
             compliance[at] = -mixed(model, "s", sat, x)[1] / (sat.dp_dT * sat.dp_dT)
     return X, compliance
+
+
+def _least(model: Model) -> float:
+    """The lowest pressure (Pa) looked at."""
+    return min(_P_LEAST, 0.5 * pressure_range(model)[0]) if model.has_dome else _P_LEAST
 
 
 def flash_uh(model: Model, u: Array, h: Array) -> Points:

@@ -14,9 +14,9 @@ from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.given_pressure import range_reason
-from pathcalc.equilibrium.iterate import guarded_newton
+from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation
-from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.equilibrium.saturation import ends, quality, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
@@ -54,18 +54,12 @@ def _with_dome(model: Model, at: NDArray[np.intp], T: Array, key: str, target: A
     wanted = target[at]
     known = sat.reason == 0
     with np.errstate(all="ignore"):
-        if key == "v":
-            liquid, vapour = sat.v_liquid, sat.v_vapour
-        else:
-            liquid = quantity.value(model, key, sat.T, sat.v_liquid)
-            vapour = quantity.value(model, key, sat.T, sat.v_vapour)
-        x = (wanted - liquid) / (vapour - liquid)
-        end = 4e-15 * np.maximum(np.abs(liquid), np.abs(vapour)) / (vapour - liquid)
-        x = np.where(np.abs(x) <= end, 0.0, np.where(np.abs(x - 1.0) <= end, 1.0, x))
+        liquid, vapour = ends(model, key, sat)
+        x = quality(key, wanted, liquid, vapour)
         inside = known & (x >= 0.0) & (x <= 1.0)
         liquid_side, vapour_side = known & (x < 0.0), known & (x > 1.0)
-    if key == "h":
-        # h is not monotone along the liquid: states inside the dome and on both branches are looked for
+    if key == "h" or (key == "u" and model.residual.coexistence is not None):
+        # h (and u of very dense liquids) is not monotone along the liquid: states inside the dome and on both branches are looked for
         liquid_side = vapour_side = known
     ceiling = quantity.volume_ceiling(model, T[at])
     floor = model.residual.v_min(T[at])
@@ -98,6 +92,9 @@ def _on_branch(
             state = thermal(model, t, v)
         reason[(reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))] = reasons.NO_ROOT
         draft.put(at, t, state.p, v, reason.astype(np.int16))
+        return
+    if model.residual.coexistence is not None and (key != "s" or _falls(model, t, low)):
+        _scan_isotherm(model, at, key, t, wanted, draft, low, high)
         return
     floor = model.residual.v_min(t)
     with np.errstate(all="ignore"):
@@ -154,6 +151,13 @@ def _scan_enthalpy(
     nodes[-1] = highest
     nodes[0] = np.where(lowest > near - 0.5 * (far - near) / _NODES, lowest, near)
     first, second, count = scanned(fun, nodes, (T, wanted, floor), unit=1.0)
+    _settle(model, at, T, draft, floor, first, second, count)
+
+
+def _settle(
+    model: Model, at: NDArray[np.intp], T: Array, draft: Draft, floor: Array, first: Root, second: Root, count: Array
+) -> None:
+    """The states found by a scan; two, or one more than is known already, are a reason of their own."""
     with np.errstate(all="ignore"):
         v = floor + np.exp(first.x)
         p = thermal(model, T, v).p
@@ -171,3 +175,38 @@ def _scan_enthalpy(
     draft.T_other[both], draft.p_other[both] = T[again], p[again]
     none = at[(count == 0) & (draft.reason[at] == reasons.NOT_CONVERGED)]
     draft.reason[none] = reasons.TARGET_NOT_REACHED
+
+
+def _falls(model: Model, T: Array, low: Array) -> bool:
+    """Whether somewhere s falls with v, as in water below 4 °C: told by (∂p/∂T)_v of the saturated liquid."""
+    line = model.residual.coexistence
+    assert line is not None
+    cold = T[(T < min(0.6 * model.T_c, line.T_top)) & (low <= 1.0001 * model.residual.v_min(T))]
+    if cold.size == 0:
+        return False
+    return bool((model.residual.pressure(cold, line.at_T(cold).v_liquid).p_T < 0.0).any())
+
+
+def _scan_isotherm(
+    model: Model, at: NDArray[np.intp], key: str, T: Array, wanted: Array, draft: Draft, low: Array, high: Array
+) -> None:
+    """All states of an isotherm between the volumes ``low`` and ``high``, up to the melting or the largest pressure."""
+    limits = model.residual.limits
+    assert limits is not None
+    melting = limits.melting_pressure(T)
+    most = np.where(melting > 0.0, np.minimum(melting, model.p_max), model.p_max)
+    with np.errstate(all="ignore"):
+        densest = model.residual.volume_of(T, most, np.full(T.size, -1.0) * (low < model.v_c))
+        assert densest is not None
+        far = np.minimum(high, model.R * T / _P_LEAST)
+        near = np.where(densest[0] > low, densest[0], low)
+        near = np.log(np.minimum(near, far))
+        share = np.linspace(0.0, 1.0, _NODES)[:, None]
+        wide = np.log(far) - near
+        nodes = near + wide * np.where(wide > 3.0, share * share, share)
+
+    def fun(x: Array, T: Array, wanted: Array) -> Array:
+        return quantity.value(model, key, T, np.exp(x)) - wanted
+
+    first, second, count = scanned(fun, nodes, (T, wanted), unit=1.0)
+    _settle(model, at, T, draft, np.zeros(T.size), first, second, count)

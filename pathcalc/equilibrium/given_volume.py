@@ -15,7 +15,7 @@ from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import NEAR_CRITICAL, saturation_at_T
+from pathcalc.equilibrium.saturation import nearest_T, saturation_at_T
 
 _ROUNDING = 1e-11
 
@@ -59,14 +59,14 @@ def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
 def _below_critical(model: Model, at: NDArray[np.intp], v: Array, key: str, target: Array, draft: Draft) -> None:
     """Keeps the lanes whose single-phase state lies outside the dome, solves the others inside it."""
     T = draft.T[at]
-    sat = saturation_at_T(model, np.clip(T, model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)))
+    sat = saturation_at_T(model, np.clip(T, model.T_limits[0], nearest_T(model)))
     with np.errstate(all="ignore"):
         outside = (sat.v_liquid >= v[at]) | (v[at] >= sat.v_vapour)
     todo = at[~outside]
     if todo.size == 0:
         return
     w, wanted = v[todo], target[todo]
-    bottom, top = model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)
+    bottom, top = model.T_limits[0], nearest_T(model)
     low, high = np.full(todo.size, bottom * (1.0 - 1e-12)), np.full(todo.size, top)
 
     def fun(T: Array, v: Array, wanted: Array) -> tuple[Array, Array]:

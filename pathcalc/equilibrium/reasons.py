@@ -18,6 +18,7 @@
 | 13     | near-critical           |
 | 14     | not-a-state             |
 | 15     | quality-out-of-range    |
+| 16     | above-pressure-range    |
 """
 
 from __future__ import annotations
@@ -42,6 +43,7 @@ INSIDE_SOLID = 12
 NEAR_CRITICAL = 13
 NOT_A_STATE = 14
 QUALITY_OUT_OF_RANGE = 15
+ABOVE_PRESSURE = 16
 
 
 @dataclass(frozen=True)
@@ -127,6 +129,11 @@ REASONS: dict[int, Reason] = {
     ),
     QUALITY_OUT_OF_RANGE: Reason(
         "quality-out-of-range", "a vapour quality lies between 0 and 1", "check the value of x"
+    ),
+    ABOVE_PRESSURE: Reason(
+        "above-pressure-range",
+        "the pressure lies above the highest one the equation is used at",
+        "lower the pressure or density, or choose an equation that reaches further",
     ),
 }
 

@@ -8,10 +8,11 @@ from itertools import pairwise
 
 import numpy as np
 
-from pathcalc.equations.contract import Array, PressureTerms, Reduced
+from pathcalc.equations.contract import Array, PressureLimits, PressureTerms, Reduced
 from pathcalc.equations.helmholtz import coexistence, roots
 from pathcalc.equations.helmholtz.bank import Bank
 from pathcalc.equations.helmholtz.coexistence import SaturationLine
+from pathcalc.equations.helmholtz.fences import Fences
 from pathcalc.equations.helmholtz.forms import forms_of
 from pathcalc.equations.helmholtz.non_analytic import NonAnalyticTerms
 from pathcalc.equations.helmholtz.term import Place, Real, Separable
@@ -20,8 +21,8 @@ from pathcalc.substances.reference import Reference
 BLOCK_ELEMENTS = 16384
 """Terms times lanes evaluated at a time: the block stays in the processor's cache."""
 
-LOG_LEAST = -690.0
-"""ln δ is not let below this, so that a term with d = 0 stays finite at zero density."""
+LOG_LEAST = -1.0e6
+"""ln δ is not let below this, so that terms at zero density are zero, or finite where d = 0."""
 
 Orders = Sequence[tuple[int, int]]
 
@@ -110,16 +111,16 @@ class HelmholtzResidual:
     def pressure_curvature(self, T: Array, v: Array) -> Array:
         """(∂²p/∂T²)_v = R ρ D21/T, Pa/K2."""
         rho = 1.0 / np.asarray(v, dtype=np.float64)
-        curvature: Array = self.R * rho / T * self.derivatives(T, rho, CURVATURE)[0]
+        curvature: Array = self.R * rho * self.derivatives(T, rho, CURVATURE)[0] / T
         return curvature
 
     def volume_roots(self, T: Array, p: Array) -> Array:
         """Stable and metastable volumes (m3/mol) at ``T`` (K), ``p`` (Pa), shape (2, n); see ``roots``."""
         return roots.volume_roots(self, T, p)
 
-    def stable_volume(self, T: Array, p: Array) -> tuple[Array, Array]:
-        """The volume (m3/mol) of the stable phase and ln(p/p_sat), each (n,); see ``roots``."""
-        return roots.stable_volume(self, T, p)
+    def volume_of(self, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array] | None:
+        """The volume (m3/mol) of the stable phase, or of the one asked for, and ln(p/p_sat); see ``roots``."""
+        return roots.volume_of(self, T, p, branch)
 
     def v_min(self, T: Array) -> Array:
         """The smallest volume at which the equation is evaluated, m3/mol; see ``roots``."""
@@ -133,6 +134,11 @@ class HelmholtzResidual:
     def coexistence(self) -> SaturationLine:
         """The saturation line: kept beside the card, or fitted when first asked for."""
         return coexistence.of(self)
+
+    @cached_property
+    def limits(self) -> PressureLimits | None:
+        """The largest pressure and the melting line of the card."""
+        return Fences(self._card)
 
     @cached_property
     def ln_rho_max(self) -> float:

@@ -1,0 +1,216 @@
+"""The coexistence curve of a reference equation from its Chebyshev expansions.
+
+The expansions are those of :mod:`pathcalc.equations.helmholtz.trace`, fitted beforehand and kept beside the
+card as JSON, or fitted when first asked for. A temperature costs one look-up and a few Clenshaw sums (C. W.
+Clenshaw, Math. Tables Aids Comput. 9 (1955) 118); a pressure one more expansion and one Newton step.
+"""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from pathcalc.equations.contract import Array, Coexisting
+from pathcalc.equations.helmholtz.trace import FUNCTIONS, Traced, trace
+
+if TYPE_CHECKING:
+    from pathcalc.equations.helmholtz.residual import HelmholtzResidual
+
+BLOCK = 1024
+"""Lanes looked up at a time: their coefficients stay in the processor's cache."""
+
+LN_P, LN_RHO_L, LN_RHO_V, SLOPE, D10_L, D10_V, D00_L, STIFF_L, STIFF_V = range(len(FUNCTIONS))
+_STATES = (LN_P, LN_RHO_L, LN_RHO_V, SLOPE)
+_FOLDER = "saturation"
+_FITTED = 1e-11
+_NEAR_NODES = 400
+_NEAREST = 1e-8
+"""Closer to the critical temperature than this part of it nothing is told apart."""
+
+
+class SaturationLine:
+    """Saturation of one equation with gas constant ``R``; see :class:`contract.SaturationLine`."""
+
+    def __init__(self, traced: Traced, R: float) -> None:
+        t = traced
+        self.R, self.T_x, self.p_x, self.rho_x = R, t.T_x, t.p_x, t.rho_x
+        self._edges = np.asarray(t.edges, dtype=np.float64)
+        self._middle, self._half = (np.asarray(a, dtype=np.float64) for a in (t.middle, t.half))
+        self._table = np.ascontiguousarray(np.moveaxis(np.asarray(t.coefficients, dtype=np.float64), 0, -1))
+        self._inverse_edges = np.asarray(t.inverse_edges, dtype=np.float64)
+        self._inverse = np.ascontiguousarray(np.asarray(t.inverse, dtype=np.float64).T[None])
+        self._by_density: tuple[Array, Array] | None = None
+        self._rows: dict[tuple[int, ...], Array] = {}
+        self.T_low = float(self.T_x * (1.0 - self._edges[-1] ** 2))
+        self.T_top = float(self.T_x * (1.0 - max(self._edges[0] ** 2, _NEAREST)))
+        ends = self.at_T(np.array([self.T_low, self.T_top]))
+        self.p_low, self.p_top = float(ends.p[0]), float(ends.p[1])
+
+    def at_T(self, T: Array) -> Coexisting:
+        """Coexisting phases at ``T`` (K), shape (n,), for T_low ≤ T ≤ T_top; elsewhere without meaning."""
+        theta = np.sqrt(1.0 - T / self.T_x)
+        ln_p, ln_l, ln_v, slope = self._values(theta, _STATES)
+        p = self.p_x * np.exp(ln_p)
+        return Coexisting(T, p, np.exp(-ln_l) / self.rho_x, np.exp(-ln_v) / self.rho_x, slope * p / T)
+
+    def at_p(self, p: Array) -> Coexisting:
+        """Coexisting phases at ``p`` (Pa), shape (n,), for p_low ≤ p ≤ p_top; elsewhere without meaning."""
+        theta = self.theta_of(p)
+        T = self.T_x * (1.0 - theta * theta)
+        ln_l, ln_v, slope = self._values(theta, (LN_RHO_L, LN_RHO_V, SLOPE))
+        return Coexisting(T, p, np.exp(-ln_l) / self.rho_x, np.exp(-ln_v) / self.rho_x, slope * p / T)
+
+    def p_at(self, T: Array) -> Array:
+        """The saturation pressure alone."""
+        return np.asarray(self.p_x * np.exp(self._values(np.sqrt(1.0 - T / self.T_x), (LN_P,))[0]))
+
+    def theta_of(self, p: Array) -> Array:
+        """θ = √(1 − T/T_x) at ``p`` (Pa)."""
+        ln_p = np.log(p / self.p_x)
+        phi = np.sqrt(np.maximum(-ln_p, 0.0))
+        theta = _clenshaw(self._inverse_edges, None, None, self._inverse, phi)[0]
+        theta = np.clip(theta, max(self._edges[0], 1e-9), self._edges[-1])
+        got, slope = self._values(theta, (LN_P, SLOPE))
+        return np.asarray(theta + (got - ln_p) * (1.0 - theta * theta) / (2.0 * theta * slope))
+
+    def energies(self, T: Array) -> tuple[Array, Array, Array]:
+        """D10 of liquid and vapour and D00 of the liquid at ``T`` (K): the caloric part of saturation."""
+        d10_l, d10_v, d00_l = self._values(np.sqrt(1.0 - T / self.T_x), (D10_L, D10_V, D00_L))
+        return d10_l, d10_v, d00_l
+
+    def T_near(self, v: Array) -> Array:
+        """About the temperature (K) at which one phase has the volume ``v``; ``T_low`` beyond the line."""
+        if self._by_density is None:
+            theta = np.linspace(self._edges[0], self._edges[-1], _NEAR_NODES)
+            ln_l, ln_v = self._values(theta, (LN_RHO_L, LN_RHO_V))
+            self._by_density = (
+                np.concatenate([np.minimum.accumulate(ln_v)[::-1], np.maximum.accumulate(ln_l)]),
+                np.concatenate([theta[::-1], theta]),
+            )
+        ln_rho = -np.log(v * self.rho_x)
+        theta = np.interp(ln_rho, *self._by_density, left=self._edges[-1], right=self._edges[-1])
+        return np.asarray(self.T_x * (1.0 - theta * theta))
+
+    def beside(self, T: Array) -> tuple[Array, Array, Array, Array, Array]:
+        """ln(p/p_x), ln(ρ_l/ρ_x), ln(ρ_v/ρ_x) and 1 + 2 D01 + D02 of both: where roots begin from."""
+        out = self._values(np.sqrt(1.0 - T / self.T_x), (LN_P, LN_RHO_L, LN_RHO_V, STIFF_L, STIFF_V))
+        return out[0], out[1], out[2], out[3], out[4]
+
+    def _values(self, theta: Array, functions: tuple[int, ...]) -> Array:
+        table = self._rows.get(functions)
+        if table is None:
+            table = self._rows[functions] = np.ascontiguousarray(self._table[list(functions)])
+        return _clenshaw(self._edges, self._middle, self._half, table, theta)
+
+
+def _clenshaw(edges: Array, middle: Array | None, half: Array | None, table: Array, x: Array) -> Array:
+    """Sums of the expansions ``table`` (functions, degree + 1, pieces) at ``x`` (n,): (functions, n)."""
+    if middle is None or half is None:
+        middle, half = 0.5 * (edges[:-1] + edges[1:]), 0.5 * np.diff(edges)
+    n = x.size
+    out = np.empty((table.shape[0], n))
+    inner = edges[1:-1]
+    for start in range(0, n, BLOCK):
+        part = x[start : start + BLOCK]
+        k = np.searchsorted(inner, part, side="right")
+        u = (part - middle.take(k)) / half.take(k)
+        c = table.take(k, axis=2)
+        twice = u + u
+        a = c[:, -1]
+        b = np.zeros_like(a)
+        for j in range(table.shape[1] - 2, 0, -1):
+            # a, b = c_j + 2u a − b, a without a temporary a step
+            b -= c[:, j]
+            np.negative(b, out=b)
+            b += twice * a
+            a, b = b, a
+        out[:, start : start + BLOCK] = c[:, 0] + u * a - b
+    return out
+
+
+def of(residual: HelmholtzResidual) -> SaturationLine:
+    """The saturation line of an equation: its file if there is one that belongs to it, else a fit."""
+    card = residual.reference
+    if card is None:
+        raise ValueError("an equation without its card has no saturation line")
+    path = Path(card.file).parent / _FOLDER / (Path(card.file).stem + ".json")
+    if path.is_file():
+        line = read(path, residual.R)
+        if abs(line.T_x / card.summit.T - 1.0) < 1e-6:
+            return line
+
+    def terms(T: Array, rho: Array) -> tuple[Array, Array, Array, Array]:
+        a, b, c, d = residual.derivatives(T, rho, ((0, 0), (0, 1), (0, 2), (1, 0)))
+        return a, b, c, d
+
+    analytic = all(table.form != "non-analytic" for table in card.terms)
+    top = card.summit
+    T_low = card.limits.T_min * (1.0 - 1e-6)
+    return SaturationLine(trace(terms, top.T, top.rho, T_low, analytic=analytic, tolerance=_FITTED, R=residual.R), residual.R)
+
+
+def read(path: Path, R: float) -> SaturationLine:
+    """The expansions kept in a file."""
+    with path.open(encoding="utf-8") as file:
+        return SaturationLine(from_dict(json.load(file)), R)
+
+
+def from_dict(data: dict[str, object]) -> Traced:
+    """The expansions from what :func:`to_dict` made."""
+    edges = np.asarray(data["edges"], dtype=np.float64)
+    middle, half = 0.5 * (edges[:-1] + edges[1:]), 0.5 * np.diff(edges)
+    if data["signed"]:
+        middle[0], half[0] = 0.0, edges[1]
+    pieces = data["pieces"]
+    assert isinstance(pieces, list)
+    degree = max(len(row) for piece in pieces for row in piece.values())
+    coefficients = np.zeros((len(pieces), len(FUNCTIONS), degree))
+    for k, piece in enumerate(pieces):
+        for j, name in enumerate(FUNCTIONS):
+            coefficients[k, j, : len(piece[name])] = piece[name]
+    return Traced(
+        float(str(data["T"])),
+        float(str(data["p"])),
+        float(str(data["rho"])),
+        edges,
+        middle,
+        half,
+        coefficients,
+        np.asarray(data["inverse_edges"], dtype=np.float64),
+        np.asarray(data["inverse"], dtype=np.float64),
+    )
+
+
+def to_dict(traced: Traced) -> dict[str, object]:
+    """What a file holds: digits beyond the rounding of the sum are left out."""
+    t = traced
+    pieces = []
+    for coefficients in t.coefficients:
+        piece = {}
+        for name, row in zip(FUNCTIONS, coefficients, strict=True):
+            # stiffness only starts an iteration
+            least = 1e-7 if name.startswith("stiff") else 2e-17
+            piece[name] = _rounded(row, least * max(1.0, float(np.max(np.abs(row)))))
+        pieces.append(piece)
+    return {
+        "T": t.T_x,
+        "p": t.p_x,
+        "rho": t.rho_x,
+        "signed": bool(t.middle[0] == 0.0),
+        "edges": [float(x) for x in t.edges],
+        "pieces": pieces,
+        "inverse_edges": [float(x) for x in t.inverse_edges],
+        "inverse": [_rounded(row, 1e-13, keep=True) for row in t.inverse],
+    }
+
+
+def _rounded(row: Sequence[float], least: float, keep: bool = False) -> list[float]:
+    digits = int(np.ceil(-np.log10(least)))
+    out = [round(float(x), digits) + 0.0 for x in row]
+    while not keep and len(out) > 2 and out[-1] == 0.0:
+        out.pop()
+    return out
