@@ -70,4 +70,5 @@ def basis_of(solution: Solution) -> Basis:
         ideal_gas_text=text,
         ideal_gas_source=card.sources.get(source, source) or "given in the case",
         ideal_gas_range=reach,
+        uncertainty=info.uncertainty,
     )

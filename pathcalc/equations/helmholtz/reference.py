@@ -71,7 +71,7 @@ def describe(found: Reference) -> EquationInfo:
         Parameter("T_c", found.summit.T, "K", "critical point of the equation itself"),
         Parameter("p_c", found.summit.p, "Pa", "critical point of the equation itself"),
         Parameter(r"\rho_c", found.summit.rho, "mol/m3", "critical point of the equation itself"),
-        Parameter("N", float(count), "terms", source),
+        Parameter("N", float(count), "1", source),
     )
     valid, limits = found.valid, found.limits
     text = (
