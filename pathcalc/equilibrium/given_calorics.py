@@ -17,12 +17,13 @@ from pathcalc.equilibrium.given_pressure import flash_p
 from pathcalc.equilibrium.given_volume import mixed
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import pressure_range, saturation_at_T
+from pathcalc.equilibrium.saturation import nearest_T, pressure_range, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _P_LEAST = 1e-3
 _P_MOST = 1e10
 _NODES = 200
+_DENSE_NODES, _LIGHT_NODES = 200, 60
 _HARDLY_WET = 1e-6
 _FIELDS = tuple(Saturation.__dataclass_fields__)
 
@@ -52,25 +53,29 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     start = np.full(at.size, np.log(1e5))
     root = guarded_newton(fun, start, low, high, (s[at], target[at]), unit=1.0, tolerance=3e-9)
     points = flash_p(model, np.exp(root.x), "s", s[at])
+    draft.take(at, points)
+    tried = at[points.ok]
+    settled = _polish(model, draft, tried, s, key, target)
     # a cold liquid hardly changes h or u with p: there the value itself decides
     miss = np.abs(_on_isentrope(model, points, key)[0] - target[at])
     reached = points.ok & (root.ok | (miss <= 1e-12 * (np.abs(target[at]) + model.R * points.T)))
-    draft.take(at, points)
-    _polish(model, draft, at[reached], s, key, target)
+    reached |= np.isin(at, settled)
     missed = at[~reached]
     draft.reason[missed] = np.where(points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached])
     return draft.finish(model)
 
 
-def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array) -> None:
+def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array) -> NDArray[np.intp]:
     """Newton steps in T and v on both values themselves: p is a poor measure of a liquid that hardly compresses.
+
+    Returns the lanes where they settled.
 
     With X = h or u, det = (c_v/T) (∂X/∂v)_T − (∂p/∂T)_v (∂X/∂T)_v.
     """
     wet = draft.x[at] > _HARDLY_WET
     at = at[~wet]
     if at.size == 0 or model.residual.coexistence is None:
-        return
+        return at[:0]
     barely = draft.x[at] == draft.x[at]
     T, v = draft.T[at], np.where(barely, draft.v_liquid[at], draft.v[at])
     wanted_s, wanted = s[at], target[at]
@@ -87,11 +92,12 @@ def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str
         p = thermal(model, T, v).p
         p_s = np.zeros(at.size)
         p_s[barely] = saturation_at_T(model, T[barely]).p
-        good = near & (p > p_s)
+        good = near & (p > p_s) & (np.abs(dT) < 1e-7 * T) & (np.abs(dv) < 1e-6 * v)
     here = at[good]
     draft.T[here], draft.v[here], draft.p[here] = T[good], v[good], p[good]
     for a in (draft.x, draft.v_liquid, draft.v_vapour):
         a[here] = np.nan
+    return here
 
 
 def _on_isentrope(model: Model, points: Points, key: str) -> tuple[Array, Array]:
@@ -121,6 +127,17 @@ def _least(model: Model) -> float:
     return min(_P_LEAST, 0.5 * pressure_range(model)[0]) if model.has_dome else _P_LEAST
 
 
+def _by_volume(model: Model, pv: Array, least: float, most: float) -> Array:
+    """Nodes of ln p (k, n) at given p v: a liquid has all its temperatures within a few per cent of its volume."""
+    line = model.residual.coexistence
+    assert line is not None
+    ends = line.at_T(np.array([line.T_low, nearest_T(model)]))
+    dense = np.linspace(np.log(model.residual.v_min(ends.T[:1])[0]), np.log(1.1 * model.v_c), _DENSE_NODES)
+    light = dense[-1] + np.linspace(0.0, 1.0, _LIGHT_NODES)[1:] ** 1.5 * (np.log(pv.max()) - least - dense[-1])
+    v = np.concatenate([dense, light])[::-1]
+    return np.clip(np.log(pv) - v[:, None], least, most)
+
+
 def flash_uh(model: Model, u: Array, h: Array) -> Points:
     """The state of energy ``u`` and enthalpy ``h`` (J/mol): p v = h − u is known, u is scanned along it.
 
@@ -146,6 +163,8 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
     top = min(model.p_max, _P_MOST)
     least = min(1.0, pressure_range(model)[0]) if model.has_dome else 1.0
     nodes = np.linspace(np.log(least), np.log(top), _NODES)[:, None] + np.zeros(at.size)
+    if model.residual.coexistence is not None:
+        nodes = _by_volume(model, pv[at], np.log(least), np.log(top))
     first, second, count = scanned(fun, nodes, (pv[at], u[at]), unit=1.0)
     with np.errstate(all="ignore"):
         p = np.exp(first.x)

@@ -210,6 +210,12 @@ def _of_volume(
     """
     line = model.residual.coexistence
     assert line is not None
+    thin = todo[p[todo] < pressure_range(model)[0]]
+    if thin.size:
+        coldest = volume_on(model, np.full(thin.size, model.T_limits[0]), p[thin], np.ones(thin.size))
+        below = thin[v[thin] < coldest * (1.0 - 1e-12)]
+        draft.reason[below] = reasons.BELOW_TRIPLE_POINT
+        todo = todo[~np.isin(todo, below)]
     dense = todo[branch[todo] <= 0]
     low[dense] = np.maximum(low[dense], np.minimum(line.T_near(v[dense]) * (1.0 - _BESIDE), high[dense]))
     cold = todo[(branch[todo] <= 0) & (v[todo] < model.v_c) & (low[todo] < 0.7 * model.T_c)]

@@ -44,7 +44,8 @@ def flash_T(model: Model, T: Array, key: str, target: Array) -> Points:
         rest = np.concatenate([rest, _with_dome(model, cold, T, key, target, draft)])
     if rest.size:
         floor = model.residual.v_min(T[rest])
-        _on_branch(model, rest, T, key, target, draft, floor, quantity.volume_ceiling(model, T[rest]))
+        scan = key == "h" or (key == "u" and model.residual.coexistence is not None)
+        _on_branch(model, rest, T, key, target, draft, floor, quantity.volume_ceiling(model, T[rest]), scan)
     return draft.finish(model)
 
 
@@ -53,24 +54,45 @@ def _with_dome(model: Model, at: NDArray[np.intp], T: Array, key: str, target: A
     sat = saturation_at_T(model, T[at])
     wanted = target[at]
     known = sat.reason == 0
+    several = _several(model, key, sat)
     with np.errstate(all="ignore"):
         liquid, vapour = ends(model, key, sat)
         x = quality(key, wanted, liquid, vapour)
         inside = known & (x >= 0.0) & (x <= 1.0)
-        liquid_side, vapour_side = known & (x < 0.0), known & (x > 1.0)
-    if key == "h" or (key == "u" and model.residual.coexistence is not None):
-        # h (and u of very dense liquids) is not monotone along the liquid: states inside the dome and on both branches are looked for
-        liquid_side = vapour_side = known
+        # where the quantity is not monotone, states inside the dome and on both branches are looked for
+        liquid_side, vapour_side = known & (several | (x < 0.0)), known & (several | (x > 1.0))
     ceiling = quantity.volume_ceiling(model, T[at])
     floor = model.residual.v_min(T[at])
     if inside.any():
         part = Saturation(*(getattr(sat, name)[inside] for name in Saturation.__dataclass_fields__))
         draft.put_mixed(at[inside], part, x[inside])
-    for mask, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
-        if mask.any():
-            _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask])
+    for side, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
+        for mask, scan in ((side & several, True), (side & ~several, False)):
+            if mask.any():
+                _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask], scan)
     near: NDArray[np.intp] = at[~known]
     return near
+
+
+def _several(model: Model, key: str, sat: Saturation) -> NDArray[np.bool_]:
+    """Where a quantity may have one value at several volumes of an isotherm below T_c.
+
+    h always; u in dense liquids, as far as the equation is to be trusted there; s in liquids that contract on
+    heating, as water does below 4 °C: told by (∂p/∂T)_v of the saturated liquid.
+    """
+    every = np.ones(sat.T.size, dtype=np.bool_)
+    if key == "h":
+        return every
+    line = model.residual.coexistence
+    if line is None or key == "v":
+        return ~every
+    if key == "u":
+        return every
+    cold = np.flatnonzero(sat.T < 0.6 * model.T_c)
+    falls = ~every
+    if cold.size:
+        falls[cold] = model.residual.pressure(sat.T[cold], sat.v_liquid[cold]).p_T < 0.0
+    return falls
 
 
 def _on_branch(
@@ -82,8 +104,9 @@ def _on_branch(
     draft: Draft,
     low: Array,
     high: Array,
+    scan: bool,
 ) -> None:
-    """A single-phase state between the volumes ``low`` and ``high``."""
+    """A single-phase state between the volumes ``low`` and ``high``; all of them where ``scan``."""
     t, wanted = T[at], target[at]
     if key == "v":
         v = wanted.copy()
@@ -93,14 +116,14 @@ def _on_branch(
         reason[(reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))] = reasons.NO_ROOT
         draft.put(at, t, state.p, v, reason.astype(np.int16))
         return
-    if model.residual.coexistence is not None and (key != "s" or _falls(model, t, low)):
+    if scan and model.residual.coexistence is not None:
         _scan_isotherm(model, at, key, t, wanted, draft, low, high)
         return
     floor = model.residual.v_min(t)
     with np.errstate(all="ignore"):
         lowest = np.log(np.where(low > floor, low - floor, model.R * t * _P_INVERSE_MOST))
         highest = np.log(high - floor)
-    if key == "h":
+    if scan:
         _scan_enthalpy(model, at, t, wanted, draft, floor, lowest, highest)
         return
 
@@ -175,16 +198,6 @@ def _settle(
     draft.T_other[both], draft.p_other[both] = T[again], p[again]
     none = at[(count == 0) & (draft.reason[at] == reasons.NOT_CONVERGED)]
     draft.reason[none] = reasons.TARGET_NOT_REACHED
-
-
-def _falls(model: Model, T: Array, low: Array) -> bool:
-    """Whether somewhere s falls with v, as in water below 4 °C: told by (∂p/∂T)_v of the saturated liquid."""
-    line = model.residual.coexistence
-    assert line is not None
-    cold = T[(T < min(0.6 * model.T_c, line.T_top)) & (low <= 1.0001 * model.residual.v_min(T))]
-    if cold.size == 0:
-        return False
-    return bool((model.residual.pressure(cold, line.at_T(cold).v_liquid).p_T < 0.0).any())
 
 
 def _scan_isotherm(

@@ -15,7 +15,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from pathcalc.equations.contract import Array, Coexisting
-from pathcalc.equations.helmholtz.trace import FUNCTIONS, Traced, trace
+from pathcalc.equations.helmholtz.trace import FUNCTIONS, Terms, Traced, trace
 
 if TYPE_CHECKING:
     from pathcalc.equations.helmholtz.residual import HelmholtzResidual
@@ -27,6 +27,7 @@ LN_P, LN_RHO_L, LN_RHO_V, SLOPE, D10_L, D10_V, D00_L, STIFF_L, STIFF_V = range(l
 _STATES = (LN_P, LN_RHO_L, LN_RHO_V, SLOPE)
 _FOLDER = "saturation"
 _FITTED = 1e-11
+_SAME = 1e-9
 _NEAR_NODES = 400
 _NEAREST = 1e-8
 """Closer to the critical temperature than this part of it nothing is told apart."""
@@ -137,20 +138,40 @@ def of(residual: HelmholtzResidual) -> SaturationLine:
     card = residual.reference
     if card is None:
         raise ValueError("an equation without its card has no saturation line")
-    path = Path(card.file).parent / _FOLDER / (Path(card.file).stem + ".json")
-    if path.is_file():
-        line = read(path, residual.R)
-        if abs(line.T_x / card.summit.T - 1.0) < 1e-6:
-            return line
 
     def terms(T: Array, rho: Array) -> tuple[Array, Array, Array, Array]:
         a, b, c, d = residual.derivatives(T, rho, ((0, 0), (0, 1), (0, 2), (1, 0)))
         return a, b, c, d
 
+    path = Path(card.file).parent / _FOLDER / (Path(card.file).stem + ".json")
+    if path.is_file():
+        line = read(path, residual.R)
+        T_low = card.limits.T_min * (1.0 + 1e-9)
+        if line.T_low <= T_low and abs(line.T_x / card.summit.T - 1.0) < 1e-6 and _belongs(line, terms):
+            return line
     analytic = all(table.form != "non-analytic" for table in card.terms)
     top = card.summit
     T_low = card.limits.T_min * (1.0 - 1e-6)
-    return SaturationLine(trace(terms, top.T, top.rho, T_low, analytic=analytic, tolerance=_FITTED, R=residual.R), residual.R)
+    traced = trace(terms, top.T, top.rho, T_low, analytic=analytic, tolerance=_FITTED, R=residual.R)
+    return SaturationLine(traced, residual.R)
+
+
+def _belongs(line: SaturationLine, terms: Terms) -> bool:
+    """Whether the phases of the line are in equilibrium by the equation: a file may be older than its card."""
+    T = line.T_x - (line.T_x - line.T_low) * np.array([0.05, 0.3, 0.6])
+    found = line.at_T(T)
+    a, b, _, c = terms(T, 1.0 / found.v_liquid)
+    d, e, _, f = terms(T, 1.0 / found.v_vapour)
+    p_v, p_l = ((1.0 + z) * line.R * T / v for z, v in ((e, found.v_vapour), (b, found.v_liquid)))
+    gibbs = np.log(found.v_vapour / found.v_liquid) + (a - d) + (b - e)
+    d10_l, d10_v, d00_l = line.energies(T)
+    stiff = line.R * T / found.v_liquid
+    return bool(
+        (np.abs(gibbs) < _SAME).all()
+        and (np.abs(p_v / found.p - 1.0) < _SAME).all()
+        and (np.abs(p_l - found.p) < _SAME * stiff).all()
+        and (np.abs(d10_l / c - 1.0) + np.abs(d10_v / f - 1.0) + np.abs(d00_l / a - 1.0) < _SAME).all()
+    )
 
 
 def read(path: Path, R: float) -> SaturationLine:
