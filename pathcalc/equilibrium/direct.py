@@ -59,7 +59,7 @@ def at_pressure(
             ratio = size / last
             stable = t.p_v < 0.0
             done = stable & ((size < _SETTLED) | ((size * ratio * ratio < _PREDICTED) & (last < 0.05) & (size < 1e-3)))
-            lost = ~(size < np.inf) | (T <= 0.2 * low) | (T > 3.0 * high)
+            lost = ~(size < np.inf) | (0.2 * low >= T) | (3.0 * high < T)
             leave = done | lost
             if leave.any():
                 here = lane[done]
@@ -67,8 +67,9 @@ def at_pressure(
                 if leave.all():
                     break
                 go = np.flatnonzero(~leave)
-                lane, T, y, p, target, side, low, high, size, least, most = (
-                    a.take(go) for a in (lane, T, y, p, target, side, low, high, size, least, most)
+                lane = lane[go]
+                T, y, p, target, side, low, high, size, least, most = (
+                    a.take(go) for a in (T, y, p, target, side, low, high, size, least, most)
                 )
             last = size
     return T_out, v_out, ok

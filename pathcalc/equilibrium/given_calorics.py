@@ -25,6 +25,8 @@ _P_MOST = 1e10
 _NODES = 200
 _DENSE_NODES, _LIGHT_NODES = 200, 60
 _HARDLY_WET = 1e-6
+_MISSED = 1e-7
+"""A sign change of a scan that leaves more than this is a jump, not a state."""
 _FIELDS = tuple(Saturation.__dataclass_fields__)
 
 
@@ -135,7 +137,7 @@ def _by_volume(model: Model, pv: Array, least: float, most: float) -> Array:
     dense = np.linspace(np.log(model.residual.v_min(ends.T[:1])[0]), np.log(1.1 * model.v_c), _DENSE_NODES)
     light = dense[-1] + np.linspace(0.0, 1.0, _LIGHT_NODES)[1:] ** 1.5 * (np.log(pv.max()) - least - dense[-1])
     v = np.concatenate([dense, light])[::-1]
-    return np.clip(np.log(pv) - v[:, None], least, most)
+    return np.asarray(np.clip(np.log(pv) - v[:, None], least, most))
 
 
 def flash_uh(model: Model, u: Array, h: Array) -> Points:
@@ -171,7 +173,10 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
         draft.take(at, flash_p(model, p, "v", pv[at] / p))
         q = np.exp(second.x)
         other = flash_p(model, q, "v", pv[at] / q)
-    draft.reason[at] = np.where(count == 0, reasons.TARGET_NOT_REACHED, draft.reason[at])
+    found = draft.finish(model)
+    miss = np.abs(_on_isentrope(model, found, "u")[0][at] - u[at])
+    jumped = (found.reason[at] == 0) & ~(miss <= _MISSED * (np.abs(u[at]) + model.R * found.T[at]))
+    draft.reason[at] = np.where((count == 0) | jumped, reasons.TARGET_NOT_REACHED, draft.reason[at])
     twice = count >= 2
     draft.reason[at[twice]] = reasons.TWO_SOLUTIONS
     draft.T_other[at[twice]], draft.p_other[at[twice]] = other.T[twice], other.p[twice]

@@ -88,7 +88,7 @@ def _several(model: Model, key: str, sat: Saturation) -> NDArray[np.bool_]:
         return ~every
     if key == "u":
         return every
-    cold = np.flatnonzero(sat.T < 0.6 * model.T_c)
+    cold = np.flatnonzero(0.6 * model.T_c > sat.T)
     falls = ~every
     if cold.size:
         falls[cold] = model.residual.pressure(sat.T[cold], sat.v_liquid[cold]).p_T < 0.0

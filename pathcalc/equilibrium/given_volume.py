@@ -75,9 +75,10 @@ def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, k
     low, high = np.full(at.size, T_low * (1.0 - 1e-12)), np.full(at.size, T_high * (1.0 + 1e-12))
     edge = np.clip(boundary, T_low, T_high)
     at_edge = fun(edge, v, wanted)[0]
-    low, high = np.where(at_edge < 0.0, edge * (1.0 - _BESIDE), low), np.where(at_edge < 0.0, high, edge * (1.0 + _BESIDE))
+    hotter = at_edge < 0.0
+    low, high = np.where(hotter, edge * (1.0 - _BESIDE), low), np.where(hotter, high, edge * (1.0 + _BESIDE))
     low, high = np.maximum(low, T_low * (1.0 - 1e-12)), np.minimum(high, T_high * (1.0 + 1e-12))
-    start = np.where(at_edge < 0.0, edge * (1.0 + _BESIDE), edge * (1.0 - _BESIDE))
+    start = np.where(hotter, edge * (1.0 + _BESIDE), edge * (1.0 - _BESIDE))
     if model.residual.limits is not None:
         # pressure is nearly linear in T on an isochore: this is beyond the highest one
         with np.errstate(all="ignore"):
@@ -92,7 +93,7 @@ def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, k
         inside = (x >= 0.0) & (x <= 1.0)
         t = thermal(model, T, v)
         sound = (t.p > 0.0) & (t.p_v < 0.0)
-    failed = np.where(T < 0.5 * (T_low + T_high), reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
+    failed = np.where(0.5 * (T_low + T_high) > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
     reason = np.where(root.ok, np.where(sound | inside, 0, reasons.NO_ROOT), failed).astype(np.int16)
     draft.put(at, T, t.p, v, reason)
     both = np.flatnonzero(inside)

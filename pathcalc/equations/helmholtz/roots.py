@@ -52,9 +52,7 @@ class Sides(NamedTuple):
     liquid: Mask
 
 
-def volume_of(
-    residual: HelmholtzResidual, T: Array, p: Array, branch: Array | None = None
-) -> tuple[Array, Array]:
+def volume_of(residual: HelmholtzResidual, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array]:
     """The volume (m3/mol) of the stable phase at ``T`` (K), ``p`` (Pa), shape (n,), and ln(p/p_sat).
 
     NaN where the equation has no such volume. The second is NaN where there is no saturation at ``T``. ``branch``
@@ -63,7 +61,7 @@ def volume_of(
     """
     line = residual.coexistence
     n = T.size
-    cold = (line.T_top > T) & (T >= line.T_low)
+    cold = (line.T_top > T) & (line.T_low <= T)
     beside = np.full(n, np.nan)
     at = np.flatnonzero(cold)
     if at.size == n:
@@ -172,7 +170,7 @@ def newton(residual: HelmholtzResidual, T: Array, p: Array, sides: Sides) -> Arr
     """ln ρ at ``T``, ``p`` between the bounds; NaN where no root was found."""
     n = T.size
     out = np.full(n, np.nan)
-    lane: NDArray[np.intp] | None = None
+    lane = np.arange(n)
     x, low, high, liquid = sides
     last = np.full(n, np.inf)
     RT = residual.R * T
@@ -197,17 +195,14 @@ def newton(residual: HelmholtzResidual, T: Array, p: Array, sides: Sides) -> Arr
                 new = np.where(held, 0.5 * (low + high), new)
                 size = np.where(held, high - low, size)
             if done.any():
-                if lane is None:
-                    lane = np.arange(n)
                 here = lane[done]
                 ended = np.where(held, np.where(np.abs(got / p - 1.0) < 1e-6, x, np.nan), new)
                 out[here] = ended[done]
                 if done.all():
                     return out
                 go = np.flatnonzero(~done)
-                lane, T, RT, p, low, high, liquid, new, size = (
-                    a.take(go) for a in (lane, T, RT, p, low, high, liquid, new, size)
-                )
+                lane, liquid = lane[go], liquid[go]
+                T, RT, p, low, high, new, size = (a.take(go) for a in (T, RT, p, low, high, new, size))
             x, last = new, size
     return out
 
@@ -221,7 +216,7 @@ def ceiling(residual: HelmholtzResidual, p_limit: float, temperatures: Array) ->
     line = residual.coexistence
     top = -np.inf
     for T in temperatures:
-        cold = T < line.T_top
+        cold = line.T_top > T
         first = float(line.beside(np.array([T]))[1][0]) if cold else 0.0
         x = np.log(line.rho_x) + first + _CLIMB
         rho = np.exp(x)
@@ -243,6 +238,6 @@ def v_min(residual: HelmholtzResidual, T: Array) -> Array:
 def saturation_start(residual: HelmholtzResidual, T: Array) -> Array:
     """The saturation pressure (Pa) at ``T`` (K) by the expansions; NaN outside them."""
     line = residual.coexistence
-    inside = (line.T_top >= T) & (T >= line.T_low)
+    inside = (line.T_top >= T) & (line.T_low <= T)
     with np.errstate(invalid="ignore"):
         return np.where(inside, line.p_at(np.clip(T, line.T_low, line.T_top)), np.nan)

@@ -130,11 +130,11 @@ class _Curve:
     def __init__(self, terms: Terms, T_x: Values, rho_x: Values, theta_max: float) -> None:
         self.terms, self.T_x, self.ln_x = terms, T_x, np.log(rho_x)
         first = 0.2 if theta_max > 0.25 else 0.5 * theta_max
-        l, v = self._begin(first)
-        states = {first: (l, v)}
+        liquid, vapour = self._begin(first)
+        states = {first: (liquid, vapour)}
         for sign in (1.0, -1.0):
             x, step = first, _STEP
-            seen = [(first, l, v)]
+            seen = [(first, liquid, vapour)]
             while (x < theta_max) if sign > 0 else (x > 4e-4):
                 step = min(step, (theta_max - x) if sign > 0 else 0.5 * x)
                 new = x + sign * step
@@ -165,9 +165,9 @@ class _Curve:
         x = np.array([theta], dtype=self.T_x.dtype)
         for wide in (3.5, 3.0, 4.0, 2.5, 4.5, 2.0, 5.0):
             for lean in (0.5, 0.8, 0.2):
-                l = self.ln_x + np.log(1 + theta * wide * 1.1)
-                v = self.ln_x + np.log(np.maximum(1 - theta * wide * lean * 1.2, 0.02))
-                one, two, good = self.at(x, np.array([l]).ravel(), np.array([v]).ravel())
+                dense = self.ln_x + np.log(1 + theta * wide * 1.1)
+                light = self.ln_x + np.log(np.maximum(1 - theta * wide * lean * 1.2, 0.02))
+                one, two, good = self.at(x, np.atleast_1d(dense), np.atleast_1d(light))
                 if good[0] and one[0] > self.ln_x + theta and two[0] < self.ln_x - theta:
                     return one[0], two[0]
         raise NoCoexistence("no vapour and liquid found below the critical point")
@@ -177,10 +177,10 @@ class _Curve:
         grid = np.concatenate([[0.0], self.theta])
         with_x = [np.concatenate([np.atleast_1d(self.ln_x), a]) for a in (self.ln_l, self.ln_v)]
         start = [np.interp(theta.astype(np.float64), grid, a.astype(np.float64)).astype(theta.dtype) for a in with_x]
-        l, v, good = self.at(theta, *start)
+        liquid, vapour, good = self.at(theta, *start)
         if not good.all():
             raise NoCoexistence(f"no convergence at theta = {theta[~good][0]}")
-        return l, v
+        return liquid, vapour
 
 
 def _extrapolated(seen: list[tuple[float, Values]], x: float) -> Values:
@@ -196,11 +196,11 @@ def _extrapolated(seen: list[tuple[float, Values]], x: float) -> Values:
 
 def _functions(curve: _Curve, theta: Values, p_x: Values) -> Values:
     """The functions (9, n) at θ of either sign; a negative one exchanges the phases."""
-    l, v = curve.states(np.abs(theta))
+    liquid, vapour = curve.states(np.abs(theta))
     swap = theta < 0
     T = curve.T(theta)
     sides = []
-    for ln_rho in (l, v):
+    for ln_rho in (liquid, vapour):
         rho = np.exp(ln_rho)
         sides.append((ln_rho, *curve.terms(T, rho)))
     (ln_l, a, b, c, g), (ln_v, d, e, f, k) = sides
@@ -209,7 +209,10 @@ def _functions(curve: _Curve, theta: Values, p_x: Values) -> Values:
     z_l, z_v = 1 + b, 1 + e
     z_l = z_v * np.exp(ln_v - ln_l)  # the liquid's own is the small difference of large terms
     slope = (g - k + z_l - z_v) / (z_l - z_v)
-    pick = lambda one, two: np.where(swap, two, one)  # noqa: E731
+
+    def pick(one: Values, two: Values) -> Values:
+        return np.where(swap, two, one)
+
     return np.stack(
         [
             ln_p,
@@ -259,16 +262,11 @@ def trace(
     if not (abs(float(T_x[0]) / T_c - 1.0) < 0.01 and abs(float(rho_x[0]) / rho_c - 1.0) < 0.1):
         raise NoCoexistence("no critical point near the one given")
     T_x, rho_x = T_x[0], rho_x[0]
-    p_x = T_x * rho_x * (1 + terms(np.array([T_x]), np.array([rho_x]))[1][0]) if analytic else None
+    aside = 0.0 if analytic else 1e-9  # a non-analytic equation has no derivatives at the point itself
+    one = np.ones(1, dtype=dtype)
+    p_x = (T_x * rho_x * (1 + terms(T_x * (one - 1e-4 * aside), rho_x * (one + aside))[1]))[0]
     theta_max = float(np.sqrt(1 - T_low / T_x))
     curve = _Curve(terms, T_x, rho_x, theta_max)
-    if p_x is None:
-        near = np.array([0.011], dtype=dtype)
-        ln_v = curve.states(near)[1]
-        _, e, _, _ = terms(curve.T(near), np.exp(ln_v))
-        d, b = terms(np.array([T_x * (1 - 1e-13)]), np.array([rho_x * (1 + 1e-9)]))[1], e
-        p_x = (T_x * rho_x * (1 + d))[0]
-        del b
     pieces: list[tuple[float, float, float, float, Values]] = []
 
     def fitted(low: float, high: float) -> None:
