@@ -22,7 +22,7 @@ def reference_text(card: Card) -> list[str]:
         return []
     valid, limits, top = found.valid, found.limits, found.summit
     counts = ", ".join(f"{sum(len(t.rows) for t in found.terms if t.form == form)} {form}" for form in _forms(found))
-    lines = ["", f"Reference equation: {found.title}", f"  {found.citation(found.source)}", f"  why: {found.why}"]
+    lines = ["", f"Reference equation: {found.title}", f"  {_cited(found)}", f"  why: {found.why}"]
     lines.append(f"  terms: {counts}; R = {found.gas_constant!r} J/(mol K)")
     lines.append(f"  its own critical point: {top.T:.9g} K, {top.p:.9g} Pa, {top.rho:.9g} mol/m3")
     lines.append(
@@ -34,6 +34,10 @@ def reference_text(card: Card) -> list[str]:
     lines += [f"  melting line: {found.citation(key)}" for key in dict.fromkeys(part.source for part in found.melting)]
     lines += [f"  note: {note}" for note in found.notes]
     return lines
+
+
+def _cited(found: Reference) -> str:
+    return found.citation(found.source) + (f"; coefficients: {found.table}" if found.table else "")
 
 
 def _forms(found: Reference) -> list[str]:

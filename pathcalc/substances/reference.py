@@ -141,6 +141,7 @@ class Reference:
     melting: tuple[MeltingPart, ...]
     sources: Mapping[str, str]
     notes: tuple[str, ...] = ()
+    table: str | None = None
     acentric: float | None = None
     line_of: Mapping[str, tuple[int, int]] = field(default_factory=dict, repr=False, compare=False)
 

@@ -6,6 +6,7 @@ file name; it is read only when the equation is asked for. Its form, all numbers
     reference: nitrogen                # the substance
     title: Span et al. (2000)          # short name of the equation
     source: span2000
+    table: table 17                    # optional: where in the paper the coefficients stand
     why: text                          # why this equation where several are published
     gas_constant: 8.31451              # the paper's own, J/(mol K)
     molar_mass: 0.02801348             # kg/mol
@@ -59,7 +60,7 @@ NEEDED = (
     "reference", "title", "source", "why", "gas_constant", "molar_mass", "reducing", "critical", "summit", "triple",
     "valid", "limits", "uncertainty", "ideal_gas", "terms", "sources",
 )  # fmt: skip
-OPTIONAL = ("acentric", "ancillaries", "melting", "notes")
+OPTIONAL = ("table", "acentric", "ancillaries", "melting", "notes")
 ANCILLARIES = ("vapour_pressure", "bubble_pressure", "dew_pressure", "liquid_density", "vapour_density")
 FOLDER = "reference"
 CANCEL = 1e-12
@@ -123,6 +124,7 @@ def build_reference(fields: Fields, card: Card) -> Reference:
         file=fields.file,
         title=fields.text(data["title"], ("title",)),
         source=fields.text(data["source"], ("source",)),
+        table=fields.optional_text(data, "table", ()),
         why=fields.text(data["why"], ("why",)),
         gas_constant=fields.number(data["gas_constant"], ("gas_constant",), above=0.0),
         molar_mass=fields.number(data["molar_mass"], ("molar_mass",), above=0.0),

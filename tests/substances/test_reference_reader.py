@@ -54,7 +54,8 @@ terms:
       - [0.05, 3, 3, 2, 1.01]
   - {form: gaussian, rows: [[-0.01, 1, 1, 20, 150, 1.2, 1]]}
 ancillaries:
-  vapour_pressure: {form: exponential-over-T, T_r: 190, value_r: 4.6e6, T_min: 90, T_max: 190, source: lab, rows: [[-6, 1]]}
+  vapour_pressure: {form: exponential-over-T, T_r: 190, value_r: 4.6e6, T_min: 90, T_max: 190, source: lab,
+                    rows: [[-6, 1]]}
 melting:
   - {form: simon, T_0: 90, p_0: 12000, T_min: 90, T_max: 300, source: lab, rows: [[2e8, 1.85]]}
 sources: {lab: Laboratory sheet 8 (2026)}
@@ -117,8 +118,8 @@ def test_users_own_equation(tmp_path: Path) -> None:
         ("[-0.1, 2, 2, 1]", "[-0.1, 2, 2]", 23, 9, "wrong-type"),
         ("form: exponential-over-T", "form: sine", 27, 27, "bad-value"),
         ("vapour_pressure:", "vapor_pressure:", 27, 3, "unknown-key"),
-        ("form: simon", "form: simone", 29, 12, "bad-value"),
-        ("lab: Laboratory", "x: unused, lab: Laboratory", 30, 14, "unused-source"),
+        ("form: simon", "form: simone", 30, 12, "bad-value"),
+        ("lab: Laboratory", "x: unused, lab: Laboratory", 31, 14, "unused-source"),
     ],
 )  # fmt: skip
 def test_what_is_wrong_is_found(old: str, new: str, line: int, column: int, code: str, tmp_path: Path) -> None:
@@ -132,7 +133,7 @@ def test_all_findings_in_one_run(tmp_path: Path) -> None:
     text = (
         GOOD.replace("of: density", "of: colour").replace("form: simon", "form: simone").replace("0.5, 1,", "0.5, x,")
     )
-    assert [f.line for f in findings_of(text, tmp_path)] == [14, 19, 29]
+    assert [f.line for f in findings_of(text, tmp_path)] == [14, 19, 30]
 
 
 @pytest.mark.parametrize("text", ["", "# nothing\n", "[1, 2]\n", "a: [\n", "a: 1\na: 2\n"])

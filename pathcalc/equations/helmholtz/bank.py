@@ -48,17 +48,15 @@ class Bank:
         b = _steps(self.t, self._in_tau, x, most_tau, term)
         np.exp(term, out=term)
         term *= self.n
-        rows = np.empty((len(wanted), *term.shape), dtype=term.dtype)
+        out = np.empty((len(wanted), term.shape[1]), dtype=term.dtype)
+        row = np.empty_like(term)
         partial: list[Array | None] = [term, *[None] * most_delta]
-        for row, (i, j) in zip(rows, wanted, strict=True):
+        for total, (i, j) in zip(out, wanted, strict=True):
             base = partial[j]
             if base is None:
                 base = partial[j] = term * a[j]
-            if i:
-                np.multiply(base, b[i], out=row)
-            else:
-                row[:] = base
-        return np.asarray(np.add.reduce(rows, axis=1))
+            np.add.reduce(np.multiply(base, b[i], out=row) if i else base, axis=0, out=total)
+        return out
 
 
 def _steps(

@@ -11,8 +11,10 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from math import comb
+from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array
 from pathcalc.equations.helmholtz.term import Place, Real, columns
@@ -20,98 +22,123 @@ from pathcalc.equations.helmholtz.term import Place, Real, columns
 REACH = 60.0
 """Lanes where ψ is below e^−60 are left out: the terms and their derivatives are below 1e-18 there."""
 
-DELTA_LEAST = 1e-120
-"""Δ is not let below this; it is 1e-107 where δ differs from 1 by the last bit, at τ = 1."""
+DELTA_LEAST = 1e-100
+"""Δ is not let below this, nor |δ − 1| below its square: that touches the last bits about the critical point."""
+
+Orders = Sequence[tuple[int, int]]
 
 
 class NonAnalyticTerms:
-    """n Δ^b δ ψ; rows of n, a, b, β, A, B, C, D."""
+    """n Δ^b δ ψ; rows of n, a, b, β, A, B, C, D.
+
+    All derivatives are formed as factors of the term without its δ, G = n Δ^b ψ.
+    """
 
     def __init__(self, rows: Sequence[Sequence[float]], dtype: Real = np.float64) -> None:
         self.n, self.a, self.b, self.beta, self.A, self.B, self.C, self.D = columns(rows, 8, dtype)
         self._least = (float(self.C.min()), float(self.D.min()))
+        self._k = self.n.size
+        self._weights = np.concatenate([self.A, self.B])
+        exponents = np.concatenate([1.0 / self.beta, 2.0 * self.a])
+        self._exponents = [exponents - k for k in range(3)]
+        self._two_C, self._two_D = -2.0 * self.C, -2.0 * self.D
 
-    def near(self, x: Place) -> Array:
+    def near(self, x: Place) -> NDArray[np.bool_]:
         """The places (m,) at which the terms count."""
         C, D = self._least
         e, s = x.delta - 1.0, x.tau - 1.0
         return np.asarray(C * (e * e) + D * (s * s) < REACH)
 
-    def sums(self, x: Place, wanted: Sequence[tuple[int, int]]) -> Array:
+    def sums(self, x: Place, wanted: Orders) -> Array:
         """Σ τ^i δ^j ∂^(i+j)/∂τ^i∂δ^j for each (i, j) of ``wanted``, shape (len(wanted), m); i ≤ 2, j ≤ 3."""
-        delta, tau = x.delta, x.tau
-        most_tau = max(i for i, _ in wanted)
-        most_delta = max(j for _, j in wanted)
-        P = self._in_delta(delta, most_delta)
-        H = self._in_tau(tau, most_tau)
-        W = self._core(delta - 1.0, tau, most_tau, most_delta)
-        rows = np.empty((len(wanted), self.n.size, delta.size), dtype=delta.dtype)
-        for row, (i, j) in zip(rows, wanted, strict=True):
-            row[:] = 0.0
+        most_tau, most_delta = max(i for i, _ in wanted), max(j for _, j in wanted)
+        e, s = x.delta - 1.0, x.tau - 1.0
+        powers = self._powers(e, most_delta)
+        theta = powers[0][: self._k] - s
+        big = np.maximum(theta * theta + powers[0][self._k :], DELTA_LEAST)
+        size = self.n * np.exp(self.b * np.log(big) - (self.C * (e * e) + self.D * (s * s)))
+        W = self._core(theta, big, powers, wanted)
+        P = self._in_delta(x.delta, e, most_delta)
+        H = self._in_tau(s, most_tau)
+        along: dict[tuple[int, int], Array] = {}
+        out = np.empty((len(wanted), x.delta.size), dtype=x.delta.dtype)
+        for total, (i, j) in zip(out, wanted, strict=True):
+            row: Any = 0.0
             for p in range(i + 1):
-                for q in range(j + 1):
-                    if (p, q) in W:
-                        row += (comb(i, p) * comb(j, q)) * H[i - p] * (P[j - q] * W[p, q])
-            row *= self.n * (tau**i * delta**j)
-        return np.asarray(np.add.reduce(rows, axis=1))
+                if (p, j) not in along:
+                    along[p, j] = sum(_times(comb(j, q), P[j - q], W.get((p, q))) for q in range(j + 1))
+                row = row + _times(comb(i, p), H[i - p], along[p, j])
+            np.add.reduce(size * row, axis=0, out=total)
+            for factor in (x.tau,) * i + (x.delta,) * j:
+                total *= factor
+        return out
 
-    def _in_delta(self, delta: Array, most: int) -> list[Array]:
-        """Derivatives of δ exp(−C(δ − 1)²) with respect to δ."""
-        e, C = delta - 1.0, self.C
-        E = np.exp(-C * (e * e))
-        slope = -2.0 * C * e
-        shape = [E, slope * E, (slope * slope - 2.0 * C) * E, slope * (slope * slope - 6.0 * C) * E]
-        return [delta * E] + [j * shape[j - 1] + delta * shape[j] for j in range(1, most + 1)]
+    def _powers(self, e: Array, most: int) -> list[Array]:
+        """A |e|^(1/β) above B |e|^(2a), shape (2 k, m), and derivatives with respect to e."""
+        floor = DELTA_LEAST * DELTA_LEAST
+        e = np.where(np.abs(e) < floor, floor, e)
+        values = [self._weights * np.exp(self._exponents[0] * np.log(np.abs(e)))]
+        over = 1.0 / e
+        for k in range(most):
+            values.append(self._exponents[k] * over * values[k])
+        return values
 
-    def _in_tau(self, tau: Array, most: int) -> list[Array]:
-        """Derivatives of exp(−D(τ − 1)²) with respect to τ."""
-        s, D = tau - 1.0, self.D
-        E = np.exp(-D * (s * s))
-        slope = -2.0 * D * s
-        return [E, slope * E, (slope * slope - 2.0 * D) * E][: most + 1]
+    def _in_delta(self, delta: Array, e: Array, most: int) -> list[Array]:
+        """Derivatives of δ exp(−C e²) with respect to δ, over the exponential."""
+        slope = self._two_C * e
+        shape: list[Any] = [1.0, slope]
+        if most > 1:
+            shape.append(slope * slope + self._two_C)
+        if most > 2:
+            shape.append(slope * (slope * slope + 3.0 * self._two_C))
+        return [delta] + [j * shape[j - 1] + delta * shape[j] for j in range(1, most + 1)]
 
-    def _core(self, e: Array, tau: Array, most_tau: int, most_delta: int) -> dict[tuple[int, int], Array]:
-        """Derivatives of Δ^b with respect to (τ, δ), by the chain rule; e = δ − 1."""
-        size = np.abs(e)
-        with np.errstate(divide="ignore"):
-            log_size = np.log(size)
+    def _in_tau(self, s: Array, most: int) -> list[Any]:
+        """Derivatives of exp(−D s²) with respect to τ, over the exponential."""
+        slope = self._two_D * s
+        return [1.0, slope, slope * slope + self._two_D] if most > 1 else [1.0, slope]
 
-        def power(factor: Array, exponent: Array, order: int) -> Array:
-            """The derivative of ``order`` of factor |e|^exponent; finite as every exponent here exceeds 3."""
-            for k in range(order):
-                factor = factor * (exponent - k)
-            value = factor * np.exp((exponent - order) * log_size)
-            return value * np.sign(e) if order % 2 else value
-
-        t = [power(self.A, 1.0 / self.beta, k) for k in range(most_delta + 1)]
-        s = [power(self.B, 2.0 * self.a, k) for k in range(most_delta + 1)]
-        theta = (1.0 - tau) + t[0]
-        big = np.maximum(theta * theta + s[0], DELTA_LEAST)
-        b = self.b
-        w0 = np.exp(b * np.log(big))
-        w1 = b * w0 / big
-        w2 = (b - 1.0) * w1 / big
-        w3 = (b - 2.0) * w2 / big
+    def _core(self, theta: Array, big: Array, powers: list[Array], wanted: Orders) -> dict[tuple[int, int], Any]:
+        """Derivatives of Δ^b with respect to (τ, δ) over Δ^b, by the chain rule."""
+        most_delta = max(j for _, j in wanted)
+        most_tau = max(i for i, _ in wanted)
+        mixed_order = max((j for i, j in wanted if i), default=0)
+        curved_order = max((j for i, j in wanted if i > 1), default=0)
+        t = [value[: self._k] for value in powers]
+        s = [value[self._k :] for value in powers]
+        over = 1.0 / big
+        r1 = self.b * over
+        r2 = (self.b - 1.0) * over * r1
+        r3 = (self.b - 2.0) * over * r2
+        W: dict[tuple[int, int], Any] = {(0, 0): 1.0}
         by_tau = -2.0 * theta
-        W = {(0, 0): w0}
         if most_tau > 0:
-            W[1, 0] = w1 * by_tau
+            W[1, 0] = r1 * by_tau
         if most_tau > 1:
-            W[2, 0] = 2.0 * w1 + w2 * by_tau * by_tau
+            W[2, 0] = 2.0 * r1 + r2 * by_tau * by_tau
         if most_delta > 0:
-            d1 = 2.0 * theta * t[1] + s[1]
+            d1 = s[1] - by_tau * t[1]
+            W[0, 1] = r1 * d1
             mixed = -2.0 * t[1]
-            W[0, 1] = w1 * d1
-            if most_tau > 0:
-                W[1, 1] = w1 * mixed + w2 * d1 * by_tau
-            if most_tau > 1:
-                W[2, 1] = 2.0 * w2 * (d1 + by_tau * mixed) + w3 * by_tau * by_tau * d1
+            if mixed_order > 0:
+                W[1, 1] = r1 * mixed + r2 * d1 * by_tau
+            if curved_order > 0:
+                W[2, 1] = 2.0 * r2 * (d1 + by_tau * mixed) + r3 * by_tau * by_tau * d1
         if most_delta > 1:
-            d2 = 2.0 * (t[1] * t[1] + theta * t[2]) + s[2]
-            W[0, 2] = w1 * d2 + w2 * d1 * d1
-            if most_tau > 0:
-                W[1, 2] = -2.0 * w1 * t[2] + w2 * (d2 * by_tau + 2.0 * d1 * mixed) + w3 * d1 * d1 * by_tau
+            d2 = s[2] - mixed * t[1] - by_tau * t[2]
+            square = d1 * d1
+            W[0, 2] = r1 * d2 + r2 * square
+            if mixed_order > 1:
+                W[1, 2] = r2 * (d2 * by_tau + 2.0 * d1 * mixed) - 2.0 * r1 * t[2] + r3 * square * by_tau
         if most_delta > 2:
-            d3 = 2.0 * (3.0 * t[1] * t[2] + theta * t[3]) + s[3]
-            W[0, 3] = w1 * d3 + 3.0 * w2 * d1 * d2 + w3 * d1 * d1 * d1
+            d3 = s[3] - 3.0 * mixed * t[2] - by_tau * t[3]
+            W[0, 3] = r1 * d3 + 3.0 * r2 * d1 * d2 + r3 * square * d1
         return W
+
+
+def _times(count: int, left: Any, right: Any) -> Any:
+    """``count`` times a product, where the factor 1.0 costs nothing; a derivative that is not there counts as zero."""
+    if right is None:
+        return 0.0
+    product = right if isinstance(left, float) else left if isinstance(right, float) else left * right
+    return product if count == 1 else count * product

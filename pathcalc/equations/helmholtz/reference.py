@@ -56,7 +56,7 @@ def _acentric(card: Card, found: Reference) -> float:
 
 def describe(found: Reference) -> EquationInfo:
     """What a report says about the equation."""
-    source = found.citation(found.source)
+    source = found.citation(found.source) + (f"; {found.table}" if found.table else "")
     forms = list(dict.fromkeys(table.form for table in found.terms))
     count = sum(len(table.rows) for table in found.terms)
     formula = (

@@ -18,8 +18,11 @@ from pathcalc.equations.helmholtz.non_analytic import NonAnalyticTerms
 from pathcalc.equations.helmholtz.term import Place, Real, Separable
 from pathcalc.substances.reference import Reference
 
-BLOCK_ELEMENTS = 16384
+BLOCK_ELEMENTS = 8192
 """Terms times lanes evaluated at a time: the block stays in the processor's cache."""
+
+CRITICAL_BLOCK = 1024
+"""Lanes near the critical point evaluated at a time by the non-analytic terms."""
 
 LOG_LEAST = -1.0e6
 """ln δ is not let below this, so that terms at zero density are zero, or finite where d = 0."""
@@ -69,29 +72,29 @@ class HelmholtzResidual:
         with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             tau, delta = self.T_r / T.ravel(), rho.ravel() / self.rho_r
             if n == 1:
-                return self._block(tau.repeat(2), delta.repeat(2), wanted)[:, :1].reshape(-1, *shape)
-            if n <= self.block:
-                return self._block(tau, delta, wanted).reshape(-1, *shape)
-            out = np.empty((len(wanted), n), dtype=self.dtype)
-            edges = [*range(0, n - 1, self.block), n]  # n - 1: no block of one lane
-            for start, stop in pairwise(edges):
-                out[:, start:stop] = self._block(tau[start:stop], delta[start:stop], wanted)
+                out = self._block(tau.repeat(2), delta.repeat(2), wanted)[:, :1]
+            elif n <= self.block:
+                out = self._block(tau, delta, wanted)
+            else:
+                out = np.empty((len(wanted), n), dtype=self.dtype)
+                edges = [*range(0, n - 1, self.block), n]  # n - 1: no block of one lane
+                for start, stop in pairwise(edges):
+                    out[:, start:stop] = self._block(tau[start:stop], delta[start:stop], wanted)
+            if self._critical:
+                self._add_critical(tau, delta, wanted, out)
         return out.reshape(-1, *shape)
 
     def _block(self, tau: Array, delta: Array, wanted: Orders) -> Array:
-        x = Place(delta, tau, np.maximum(np.log(delta), LOG_LEAST), np.log(tau))
-        out = self._bank.sums(x, wanted)
+        return self._bank.sums(_place(tau, delta), wanted)
+
+    def _add_critical(self, tau: Array, delta: Array, wanted: Orders, out: Array) -> None:
+        """Adds the non-analytic terms to the lanes of ``out`` where they count."""
         for form in self._critical:
-            near = form.near(x)
-            count = int(near.sum())
-            if count == near.size:
-                out += form.sums(x, wanted)
-            elif count:
-                where = np.flatnonzero(near)
-                padded = where.repeat(2) if count == 1 else where
-                part = form.sums(Place(*(item[padded] for item in x)), wanted)
-                out[:, where] += part[:, :count]
-        return out
+            where = np.flatnonzero(form.near(Place(delta, tau, delta, tau)))
+            for start in range(0, where.size, CRITICAL_BLOCK):
+                here = where[start : start + CRITICAL_BLOCK]
+                padded = here.repeat(2) if here.size == 1 else here
+                out[:, here] += form.sums(_place(tau[padded], delta[padded]), wanted)[:, : here.size]
 
     def reduced(self, T: Array, rho: Array) -> Reduced:
         """Scaled derivatives up to the second order at ``T`` (K) and ``rho`` (mol/m3)."""
@@ -154,10 +157,14 @@ class HelmholtzResidual:
             return self._card.acentric
         line = self.coexistence
         T = max(0.7 * line.T_x, line.T_low)
-        return float(-1.0 - np.log10(line.p_at(np.array([T]))[0] / line.p_x)) if T == 0.7 * line.T_x else 0.0
+        return float(-1.0 - np.log10(line.p_at(np.array([T]))[0] / line.p_x)) if 0.7 * line.T_x == T else 0.0
 
     @property
     def _card(self) -> Reference:
         if self.reference is None:
             raise ValueError("an equation without its card has no limits")
         return self.reference
+
+
+def _place(tau: Array, delta: Array) -> Place:
+    return Place(delta, tau, np.maximum(np.log(delta), LOG_LEAST), np.log(tau))

@@ -52,12 +52,48 @@ def library(name: str) -> CP.AbstractState:
 
 
 def test_there_are_many() -> None:
-    wanted = (
-        "water heavy-water carbon-dioxide nitrogen oxygen argon neon krypton xenon helium hydrogen parahydrogen "
-        "carbon-monoxide hydrogen-sulfide sulfur-dioxide nitrous-oxide ammonia methane ethane ethylene propane "
-        "propylene butane isobutane pentane isopentane hexane heptane octane benzene toluene methanol ethanol "
-        "R-134a R-32 R-125 R-1234yf R-1234ze(E) sulfur-hexafluoride air"
-    ).split()
+    wanted = [
+        "water",
+        "heavy-water",
+        "carbon-dioxide",
+        "nitrogen",
+        "oxygen",
+        "argon",
+        "neon",
+        "krypton",
+        "xenon",
+        "helium",
+        "hydrogen",
+        "parahydrogen",
+        "carbon-monoxide",
+        "hydrogen-sulfide",
+        "sulfur-dioxide",
+        "nitrous-oxide",
+        "ammonia",
+        "methane",
+        "ethane",
+        "ethylene",
+        "propane",
+        "propylene",
+        "butane",
+        "isobutane",
+        "pentane",
+        "isopentane",
+        "hexane",
+        "heptane",
+        "octane",
+        "benzene",
+        "toluene",
+        "methanol",
+        "ethanol",
+        "R-134a",
+        "R-32",
+        "R-125",
+        "R-1234yf",
+        "R-1234ze(E)",
+        "sulfur-hexafluoride",
+        "air",
+    ]
     assert set(wanted) <= set(NAMES)
 
 

@@ -39,7 +39,7 @@ def test_second_virial_coefficient(name: str) -> None:
     T = np.linspace(0.7 * T_c, min(1.5 * T_c, reference(name).limits.T_max), 20)
     B = m.residual.derivatives(T, np.full_like(T, rho), ((0, 1),))[0] / rho
     assert (np.diff(B) > 0.0).all()
-    assert (B[T < 1.3 * T_c] < 0.0).all()
+    assert (B[1.3 * T_c > T] < 0.0).all()
     assert -3.0 < float(np.interp(T_c, T, B)) * reference(name).summit.rho < -1.0
     if reference(name).limits.T_max > 6.0 * T_c:
         warm = np.array([6.0 * T_c])
@@ -55,7 +55,7 @@ def test_summit_is_the_critical_point_of_the_equation(name: str) -> None:
     assert abs(2.0 * d01 + 4.0 * d02 + d03) < 2e-4
     assert top.p == pytest.approx(m.R * top.T * top.rho * float(1.0 + d01), rel=1e-9)
     allowed = {"air": 0.006, "heptane": 0.0025, "methanol": 0.002}.get(name, 2e-4)
-    assert top.T == pytest.approx(card.critical.T, rel=allowed)
+    assert abs(top.T / card.critical.T - 1.0) < allowed
     assert m.T_c == top.T
     assert 1.0 / m.v_c == pytest.approx(top.rho)
 
