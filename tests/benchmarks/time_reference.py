@@ -11,6 +11,7 @@ from pathcalc.equations.build import build_model
 from pathcalc.substances import read_card
 
 LANES = 10_000
+ORDERS = ((0, 1), (0, 2))
 
 
 def best(call: Callable[[], object], repeats: int) -> float:
@@ -32,11 +33,10 @@ def main() -> None:
         residual = m.residual
         T, rho = np.array([1.05 * m.T_c]), np.array([0.8 / m.v_c])
         many_T, many_rho = np.linspace(0.7, 2.0, LANES) * m.T_c, np.linspace(0.01, 2.5, LANES) / m.v_c
-        orders = ((0, 1), (0, 2))
         one = 1e6 * best(lambda r=residual, t=T, q=rho: r.reduced(t, q), 300)
-        short = 1e6 * best(lambda r=residual, t=T, q=rho: r.derivatives(t, q, orders), 300)
+        short = 1e6 * best(lambda r=residual, t=T, q=rho: r.derivatives(t, q, ORDERS), 300)
         many = 1e6 / LANES * best(lambda r=residual, t=many_T, q=many_rho: r.reduced(t, q), 5)
-        newton = 1e6 / LANES * best(lambda r=residual, t=many_T, q=many_rho: r.derivatives(t, q, orders), 5)
+        newton = 1e6 / LANES * best(lambda r=residual, t=many_T, q=many_rho: r.derivatives(t, q, ORDERS), 5)
         terms = sum(len(table.rows) for table in residual.reference.terms)
         print(f"{name:16}{terms:6d}{one:15.0f}{short:10.0f}{many:25.2f}{newton:10.2f}")
 
