@@ -20,6 +20,9 @@ from pathcalc.errors import UsageError
 BLOCK = 2048
 """Lanes worked on at a time, so that temporaries stay in the processor's cache."""
 
+WIDE_BLOCK = 16384
+"""The same for equations that block their terms themselves: the last steps of a few slow lanes are shared."""
+
 KEYS = ("T", "p", "v", "rho", "u", "h", "s", "x", "superheat", "subcooling")
 
 
@@ -52,7 +55,8 @@ def flash(model: Model, given: Mapping[str, ArrayLike]) -> Points:
     a, b = (np.ascontiguousarray(x) for x in np.broadcast_arrays(*(arrays[key] for key in order)))
     n = a.size
     with np.errstate(all="ignore"):
-        parts = [solve(model, a[i : i + BLOCK], b[i : i + BLOCK]) for i in range(0, max(n, 1), BLOCK)]
+        block = BLOCK if model.residual.coexistence is None else WIDE_BLOCK
+        parts = [solve(model, a[i : i + block], b[i : i + block]) for i in range(0, max(n, 1), block)]
     return fenced(model, joined(parts))
 
 

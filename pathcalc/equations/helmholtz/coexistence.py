@@ -1,8 +1,9 @@
 """The coexistence curve of a reference equation from its Chebyshev expansions.
 
 The expansions are those of :mod:`pathcalc.equations.helmholtz.trace`, fitted beforehand and kept beside the
-card as JSON, or fitted when first asked for. A temperature costs one look-up and a few Clenshaw sums (C. W.
-Clenshaw, Math. Tables Aids Comput. 9 (1955) 118); a pressure one more expansion and one Newton step.
+card as JSON, or fitted when first asked for. When read, each piece is cut into eight with shorter polynomials, which
+are summed by Horner's rule: a temperature costs one look-up and a few multiplications, a pressure one more polynomial
+and one Newton step.
 """
 
 from __future__ import annotations
@@ -26,6 +27,10 @@ BLOCK = 1024
 LN_P, LN_RHO_L, LN_RHO_V, SLOPE, D10_L, D10_V, D00_L, STIFF_L, STIFF_V = range(len(FUNCTIONS))
 _STATES = (LN_P, LN_RHO_L, LN_RHO_V, SLOPE)
 _FOLDER = "saturation"
+_CUTS = 8
+_SHORT = 9
+"""Pieces made of one, and terms of their polynomials: rounding is all that is lost."""
+
 _FITTED = 1e-11
 _SAME = 1e-9
 _NEAR_NODES = 400
@@ -39,15 +44,16 @@ class SaturationLine:
     def __init__(self, traced: Traced, R: float) -> None:
         t = traced
         self.R, self.T_x, self.p_x, self.rho_x = R, t.T_x, t.p_x, t.rho_x
-        self._edges = np.asarray(t.edges, dtype=np.float64)
-        self._middle, self._half = (np.asarray(a, dtype=np.float64) for a in (t.middle, t.half))
-        self._table = np.ascontiguousarray(np.moveaxis(np.asarray(t.coefficients, dtype=np.float64), 0, -1))
-        self._inverse_edges = np.asarray(t.inverse_edges, dtype=np.float64)
-        self._inverse = np.ascontiguousarray(np.asarray(t.inverse, dtype=np.float64).T[None])
+        edges = np.asarray(t.edges, dtype=np.float64)
+        middle, half = (np.asarray(a, dtype=np.float64) for a in (t.middle, t.half))
+        self._ends = float(edges[0]), float(edges[-1])
+        self._pieces = _Pieces(edges, middle, half, np.asarray(t.coefficients, dtype=np.float64))
+        inner = np.asarray(t.inverse_edges, dtype=np.float64)
+        inverse = np.asarray(t.inverse, dtype=np.float64)[:, None]
+        self._inverse = _Pieces(inner, 0.5 * (inner[:-1] + inner[1:]), 0.5 * np.diff(inner), inverse)
         self._by_density: tuple[Array, Array] | None = None
-        self._rows: dict[tuple[int, ...], Array] = {}
-        self.T_low = float(self.T_x * (1.0 - self._edges[-1] ** 2))
-        self.T_top = float(self.T_x * (1.0 - max(self._edges[0] ** 2, _NEAREST)))
+        self.T_low = float(self.T_x * (1.0 - self._ends[1] ** 2))
+        self.T_top = float(self.T_x * (1.0 - max(self._ends[0] ** 2, _NEAREST)))
         ends = self.at_T(np.array([self.T_low, self.T_top]))
         self.p_low, self.p_top = float(ends.p[0]), float(ends.p[1])
 
@@ -73,8 +79,8 @@ class SaturationLine:
         """θ = √(1 − T/T_x) at ``p`` (Pa)."""
         ln_p = np.log(p / self.p_x)
         phi = np.sqrt(np.maximum(-ln_p, 0.0))
-        theta = _clenshaw(self._inverse_edges, None, None, self._inverse, phi)[0]
-        theta = np.clip(theta, max(self._edges[0], 1e-9), self._edges[-1])
+        theta = self._inverse(phi, (0,))[0]
+        theta = np.clip(theta, max(self._ends[0], 1e-9), self._ends[1])
         got, slope = self._values(theta, (LN_P, SLOPE))
         return np.asarray(theta + (got - ln_p) * (1.0 - theta * theta) / (2.0 * theta * slope))
 
@@ -86,14 +92,14 @@ class SaturationLine:
     def T_near(self, v: Array) -> Array:
         """About the temperature (K) at which one phase has the volume ``v``; ``T_low`` beyond the line."""
         if self._by_density is None:
-            theta = np.linspace(self._edges[0], self._edges[-1], _NEAR_NODES)
+            theta = np.linspace(self._ends[0], self._ends[1], _NEAR_NODES)
             ln_l, ln_v = self._values(theta, (LN_RHO_L, LN_RHO_V))
             self._by_density = (
                 np.concatenate([np.minimum.accumulate(ln_v)[::-1], np.maximum.accumulate(ln_l)]),
                 np.concatenate([theta[::-1], theta]),
             )
         ln_rho = -np.log(v * self.rho_x)
-        theta = np.interp(ln_rho, *self._by_density, left=self._edges[-1], right=self._edges[-1])
+        theta = np.interp(ln_rho, *self._by_density, left=self._ends[1], right=self._ends[1])
         return np.asarray(self.T_x * (1.0 - theta * theta))
 
     def beside(self, T: Array) -> tuple[Array, Array, Array, Array, Array]:
@@ -102,35 +108,70 @@ class SaturationLine:
         return out[0], out[1], out[2], out[3], out[4]
 
     def _values(self, theta: Array, functions: tuple[int, ...]) -> Array:
-        table = self._rows.get(functions)
+        return self._pieces(theta, functions)
+
+
+class _Pieces:
+    """Functions given by Chebyshev expansions ``c`` (pieces, functions, degree + 1) on middle ± half of each piece."""
+
+    def __init__(self, edges: Array, middle: Array, half: Array, c: Array) -> None:
+        share = np.arange(_CUTS + 1) / _CUTS
+        cut = edges[:-1, None] + np.diff(edges)[:, None] * share
+        fine = np.append(cut[:, :-1].ravel(), edges[-1])
+        self._middle, self._half = 0.5 * (fine[:-1] + fine[1:]), 0.5 * np.diff(fine)
+        self._inner = np.ascontiguousarray(fine[1:-1])
+        node = np.cos(np.pi * (np.arange(_SHORT) + 0.5) / _SHORT)
+        x = self._middle[:, None] + self._half[:, None] * node
+        old = np.repeat(np.arange(middle.size), _CUTS)
+        u = (x - middle[old, None]) / half[old, None]
+        values = np.stack([_clenshaw(c[old, k], u) for k in range(c.shape[1])])
+        order = np.arange(_SHORT)
+        basis = np.cos(order[:, None] * np.arccos(node)) * np.where(order[:, None] == 0, 1.0, 2.0) / _SHORT
+        self._table = np.zeros((c.shape[1], _SHORT, fine.size - 1))
+        for k in range(_SHORT):
+            weight = np.add.reduce(values * basis[k], axis=2)
+            for power, factor in enumerate(_chebyshev(k)):
+                self._table[:, power] += factor * weight
+        self._chosen: dict[tuple[int, ...], Array] = {}
+
+    def __call__(self, x: Array, functions: tuple[int, ...]) -> Array:
+        """The ``functions`` at ``x`` (n,): (len(functions), n)."""
+        table = self._chosen.get(functions)
         if table is None:
-            table = self._rows[functions] = np.ascontiguousarray(self._table[list(functions)])
-        return _clenshaw(self._edges, self._middle, self._half, table, theta)
+            table = self._chosen[functions] = np.ascontiguousarray(self._table[list(functions)])
+        n = x.size
+        out = np.empty((len(functions), n))
+        for start in range(0, n, BLOCK):
+            part = x[start : start + BLOCK]
+            k = self._inner.searchsorted(part, side="right")
+            u = (part - self._middle.take(k)) / self._half.take(k)
+            a = table[:, -1].take(k, axis=1)
+            for j in range(_SHORT - 2, -1, -1):
+                a *= u
+                a += table[:, j].take(k, axis=1)
+            out[:, start : start + BLOCK] = a
+        return out
 
 
-def _clenshaw(edges: Array, middle: Array | None, half: Array | None, table: Array, x: Array) -> Array:
-    """Sums of the expansions ``table`` (functions, degree + 1, pieces) at ``x`` (n,): (functions, n)."""
-    if middle is None or half is None:
-        middle, half = 0.5 * (edges[:-1] + edges[1:]), 0.5 * np.diff(edges)
-    n = x.size
-    out = np.empty((table.shape[0], n))
-    inner = edges[1:-1]
-    for start in range(0, n, BLOCK):
-        part = x[start : start + BLOCK]
-        k = np.searchsorted(inner, part, side="right")
-        u = (part - middle.take(k)) / half.take(k)
-        c = table.take(k, axis=2)
-        twice = u + u
-        a = c[:, -1]
-        b = np.zeros_like(a)
-        for j in range(table.shape[1] - 2, 0, -1):
-            # a, b = c_j + 2u a − b, a without a temporary a step
-            b -= c[:, j]
-            np.negative(b, out=b)
-            b += twice * a
-            a, b = b, a
-        out[:, start : start + BLOCK] = c[:, 0] + u * a - b
-    return out
+def _chebyshev(k: int) -> list[float]:
+    """Coefficients of T_k in powers."""
+    before, now = [1.0], [0.0, 1.0]
+    if k == 0:
+        return before
+    for _ in range(k - 1):
+        after = [0.0, *(2.0 * c for c in now)]
+        for i, c in enumerate(before):
+            after[i] -= c
+        before, now = now, after
+    return now
+
+
+def _clenshaw(c: Array, u: Array) -> Array:
+    """Σ c_j T_j(u) for each piece: c (pieces, degree + 1), u (pieces, n). C. W. Clenshaw, MTAC 9 (1955) 118."""
+    a = b = np.zeros_like(u)
+    for j in range(c.shape[1] - 1, 0, -1):
+        a, b = c[:, j, None] + 2.0 * u * a - b, a
+    return np.asarray(c[:, 0, None] + u * a - b)
 
 
 def of(residual: HelmholtzResidual) -> SaturationLine:
