@@ -14,6 +14,7 @@ from pathcalc.equations.helmholtz.bank import Bank
 from pathcalc.equations.helmholtz.coexistence import SaturationLine
 from pathcalc.equations.helmholtz.fences import Fences
 from pathcalc.equations.helmholtz.forms import forms_of
+from pathcalc.equations.helmholtz.hot_starts import HotStarts
 from pathcalc.equations.helmholtz.non_analytic import NonAnalyticTerms
 from pathcalc.equations.helmholtz.term import Place, Real, Separable
 from pathcalc.substances.reference import Reference
@@ -149,6 +150,12 @@ class HelmholtzResidual:
         card = self._card
         T = np.geomspace(self.coexistence.T_low, card.limits.T_max, 12)
         return roots.ceiling(self, card.limits.p_max, T)
+
+    @cached_property
+    def hot_starts(self) -> HotStarts:
+        """Starts of density roots above the critical temperature."""
+        limits = self._card.limits
+        return HotStarts(self, limits.T_max, limits.p_max)
 
     @cached_property
     def omega(self) -> float:

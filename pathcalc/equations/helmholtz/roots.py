@@ -9,9 +9,9 @@ state. Roots are therefore sought from the coexistence curve outwards: liquid fr
 liquid, vapour from that of saturated vapour. A stable root lies between there and the end of the equation; a
 metastable one is followed from there into the dome and given up where K ≤ 0.
 
-Starts: for a liquid ρ_l (1 + n (p − p_s)/B)^(1/n) with B = ρ (∂p/∂ρ)_T of saturated liquid and n = 8 (F. D.
-Murnaghan, Proc. Natl. Acad. Sci. 30 (1944) 244); for a vapour Z = 1 + (Z_v − 1) p/p_s; above the critical
-temperature the Peng–Robinson equation, or whatever the caller knows better.
+Starts: for a liquid ρ_l (1 + n (p − p_s)/B)^(1/n) with B = ρ (∂p/∂ρ)_T of saturated liquid (F. D. Murnaghan, Proc.
+Natl. Acad. Sci. 30 (1944) 244; n = 10.5 by trial); for a vapour the parabola Z(p/p_s) through 1, and Z_v with its
+slope; above the critical temperature the grid of :mod:`pathcalc.equations.helmholtz.hot_starts`.
 """
 
 from __future__ import annotations
@@ -22,7 +22,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array
-from pathcalc.equations.cubic_roots import density_roots
 
 if TYPE_CHECKING:
     from pathcalc.equations.helmholtz.residual import HelmholtzResidual
@@ -36,10 +35,11 @@ SETTLED = 1e-9
 PREDICTED = 1e-13
 """So is one after which convergence of the second order, seen in the last two steps, leaves less than this."""
 
-_MURNAGHAN = 8.0
+_MURNAGHAN = 10.5
+_BEND = 0.15
+"""Beyond this, near the critical point, the parabola is no better than a straight line."""
+
 _SLOPES = ((0, 1), (0, 2))
-_OMEGA_A, _OMEGA_B = 0.45723552892138, 0.07779607390388
-_SQRT2 = float(np.sqrt(2.0))
 _CLIMB = np.linspace(0.0, 1.2, 241)
 
 
@@ -127,7 +127,7 @@ def metastable_volume(residual: HelmholtzResidual, T: Array, p: Array, liquid: M
 def _cold(residual: HelmholtzResidual, T: Array, p: Array, branch: Array | None) -> tuple[Sides, Array]:
     """Starts and bounds below the critical temperature, and ln(p/p_sat)."""
     line = residual.coexistence
-    ln_p, ln_l, ln_v, stiff_l, _ = line.beside(T)
+    ln_p, ln_l, ln_v, stiff_l, stiff_v = line.beside(T)
     above = np.log(p / line.p_x) - ln_p
     ln_x = float(np.log(line.rho_x))
     ln_l += ln_x
@@ -140,7 +140,10 @@ def _cold(residual: HelmholtzResidual, T: Array, p: Array, branch: Array | None)
     push = _MURNAGHAN * (p - p_s) / (np.exp(ln_l) * RT * stiff_l)
     dense = ln_l + np.log1p(np.maximum(push, 0.0)) * (1.0 / _MURNAGHAN)
     Z_v = p_s / (RT * np.exp(ln_v))
-    light = np.log(p / RT) - np.log1p((Z_v - 1.0) * np.minimum(p / p_s, 1.0))
+    part = np.minimum(p / p_s, 1.0)
+    bend = Z_v * (1.0 - Z_v / stiff_v) - (Z_v - 1.0)
+    bend = np.where(np.abs(bend) < _BEND, bend, 0.0)
+    light = np.log(p / RT) - np.log1p(part * ((Z_v - 1.0) + bend * (part - 1.0)))
     free = np.minimum(np.log(p / RT), ln_v) - 1.0
     return Sides(
         np.where(liquid, dense, light),
@@ -151,19 +154,15 @@ def _cold(residual: HelmholtzResidual, T: Array, p: Array, branch: Array | None)
 
 
 def _hot(residual: HelmholtzResidual, T: Array, p: Array) -> Sides:
-    """Starts and bounds above the critical temperature, from the Peng–Robinson equation (see ``cubic``)."""
-    line = residual.coexistence
-    omega = residual.omega
-    Tr = T / line.T_x
-    m = 0.37464 + (1.54226 - 0.26992 * omega) * omega
-    alpha = np.maximum(1.0 + m * (1.0 - np.sqrt(Tr)), 0.0) ** 2
-    b = _OMEGA_B * residual.R * line.T_x / line.p_x
-    theta = (_OMEGA_A / _OMEGA_B) * alpha / Tr
-    low, _, _ = density_roots(theta, p * b / (residual.R * T), 2.0, -1.0)
-    start = np.log(low / b)
-    free = np.log(p / (residual.R * T))
+    """Starts and bounds above the critical temperature."""
+    return between(residual, T, p, residual.hot_starts.ln_rho(T, p))
+
+
+def between(residual: HelmholtzResidual, T: Array, p: Array, start: Array) -> Sides:
+    """The start ``start`` of ln ρ with the bounds of a gas above the critical temperature."""
     top = np.full(T.shape, residual.ln_rho_max)
-    return Sides(np.minimum(start, top - 0.05), np.minimum(free, top) - 4.0, top, np.zeros(T.shape, dtype=np.bool_))
+    low = np.minimum(np.log(p / (residual.R * T)), top) - 4.0
+    return Sides(np.minimum(start, top - 1e-3), low, top, np.zeros(T.shape, dtype=np.bool_))
 
 
 def newton(residual: HelmholtzResidual, T: Array, p: Array, sides: Sides) -> Array:
