@@ -25,6 +25,9 @@ _P_MOST = 1e10
 _NODES = 200
 _DENSE_NODES, _LIGHT_NODES = 200, 60
 _HARDLY_WET = 1e-6
+_COLD = 1.06
+"""Times the lowest temperature: warmer liquids expand on heating."""
+
 _MISSED = 1e-7
 """A sign change of a scan that leaves more than this is a jump, not a state."""
 _FIELDS = tuple(Saturation.__dataclass_fields__)
@@ -140,6 +143,20 @@ def _by_volume(model: Model, pv: Array, least: float, most: float) -> Array:
     return np.asarray(np.clip(np.log(pv) - v[:, None], least, most))
 
 
+def _contracting(model: Model, pv: Array, u: Array) -> NDArray[np.bool_]:
+    """Where liquid of this p v contracts on heating (water below 4 °C): p and v then have two temperatures."""
+    line = model.residual.coexistence
+    assert line is not None
+    T = np.full(pv.size, model.T_limits[0])
+    v = line.at_T(T).v_liquid
+    warm = line.at_T(_COLD * T)
+    with np.errstate(all="ignore"):
+        settled = model.residual.volume_of(T, pv / v, np.full(pv.size, -1.0))
+        assert settled is not None
+        falls = model.residual.pressure(T, settled[0]).p_T < 0.0
+        return np.asarray(falls & (u < quantity.value(model, "u", warm.T, warm.v_liquid)))
+
+
 def flash_uh(model: Model, u: Array, h: Array) -> Points:
     """The state of energy ``u`` and enthalpy ``h`` (J/mol): p v = h − u is known, u is scanned along it.
 
@@ -179,5 +196,8 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
     draft.reason[at] = np.where((count == 0) | jumped, reasons.TARGET_NOT_REACHED, draft.reason[at])
     twice = count >= 2
     draft.reason[at[twice]] = reasons.TWO_SOLUTIONS
+    if model.residual.coexistence is not None:
+        once = at[count == 1]
+        draft.reason[once[_contracting(model, pv[once], u[once])]] = reasons.TWO_SOLUTIONS
     draft.T_other[at[twice]], draft.p_other[at[twice]] = other.T[twice], other.p[twice]
     return draft.finish(model)

@@ -83,7 +83,7 @@ class HelmholtzResidual:
                     out[:, start:stop] = self._block(tau[start:stop], delta[start:stop], wanted)
             if self._critical:
                 self._add_critical(tau, delta, wanted, out)
-        return out.reshape(-1, *shape)
+        return out.reshape(len(wanted), *shape)
 
     def _block(self, tau: Array, delta: Array, wanted: Orders) -> Array:
         return self._bank.sums(_place(tau, delta), wanted)
