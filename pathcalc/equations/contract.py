@@ -97,6 +97,10 @@ class PressureLimits(Protocol):
         """The pressure (Pa) above which the substance is solid at ``T`` (K), NaN where no melting line is known."""
         ...
 
+    def dew_and_bubble(self, T: Array) -> tuple[Array, Array] | None:
+        """Dew and bubble pressure (Pa) at ``T`` (K) of a mixture that is treated as one component; else None."""
+        ...
+
 
 class Residual(Protocol):
     """The residual part of an equation of state.
