@@ -78,6 +78,10 @@ class SaturationLine(Protocol):
         """Coexisting phases at ``p`` (Pa)."""
         ...
 
+    def p_at(self, T: Array) -> Array:
+        """The saturation pressure (Pa) alone at ``T`` (K)."""
+        ...
+
     def energies(self, T: Array) -> tuple[Array, Array, Array]:
         """D10 of liquid and vapour and D00 of the liquid at ``T`` (K)."""
         ...

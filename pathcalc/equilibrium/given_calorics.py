@@ -17,7 +17,7 @@ from pathcalc.equilibrium.given_pressure import flash_p
 from pathcalc.equilibrium.given_volume import mixed
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import nearest_T, pressure_range, saturation_at_T
+from pathcalc.equilibrium.saturation import pressure_range, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _P_LEAST = 1e-3
@@ -28,6 +28,11 @@ _HARDLY_WET = 1e-6
 _COLD = 1.06
 """Times the lowest temperature: warmer liquids expand on heating."""
 
+_DOME_NODES = 60
+_HIGHEST_Z = 2.0
+"""p v/(R T) of the thinnest states looked at is no larger."""
+
+_APART = 1e-9
 _MISSED = 1e-7
 """A sign change of a scan that leaves more than this is a jump, not a state."""
 _FIELDS = tuple(Saturation.__dataclass_fields__)
@@ -133,14 +138,30 @@ def _least(model: Model) -> float:
 
 
 def _by_volume(model: Model, pv: Array, least: float, most: float) -> Array:
-    """Nodes of ln p (k, n) at given p v: a liquid has all its temperatures within a few per cent of its volume."""
+    """Nodes of ln p (k, n) at given p v, each lane's in order.
+
+    A liquid has all its temperatures within a few per cent of its volume, and u turns where the line meets the dome.
+    """
     line = model.residual.coexistence
     assert line is not None
-    ends = line.at_T(np.array([line.T_low, nearest_T(model)]))
-    dense = np.linspace(np.log(model.residual.v_min(ends.T[:1])[0]), np.log(1.1 * model.v_c), _DENSE_NODES)
-    light = dense[-1] + np.linspace(0.0, 1.0, _LIGHT_NODES)[1:] ** 1.5 * (np.log(pv.max()) - least - dense[-1])
-    v = np.concatenate([dense, light])[::-1]
-    return np.asarray(np.clip(np.log(pv) - v[:, None], least, most))
+    cold = np.array([line.T_low])
+    dense = np.linspace(np.log(model.residual.v_min(cold)[0]), np.log(1.1 * model.v_c), _DENSE_NODES)
+    thinnest = np.log(_HIGHEST_Z * model.R * model.T_limits[1]) - least
+    light = dense[-1] + np.linspace(0.0, 1.0, _LIGHT_NODES)[1:] ** 1.5 * (thinnest - dense[-1])
+    v = np.concatenate([dense, light])
+    nodes = [np.log(pv) - v[:, None]]
+    share = np.linspace(0.0, 1.0, _DOME_NODES)[:, None] ** 2
+    T = line.T_top - (line.T_top - line.T_low) * share + np.zeros(pv.size)
+    for side in ("v_liquid", "v_vapour"):
+
+        def fun(T: Array, pv: Array, side: str = side) -> Array:
+            sat = line.at_T(np.clip(T, line.T_low, line.T_top))
+            return np.asarray(np.log(sat.p * getattr(sat, side) / pv))
+
+        for root in scanned(fun, T[::-1], (pv,))[:2]:
+            met = np.log(line.p_at(np.where(np.isfinite(root.x), root.x, line.T_top)))
+            nodes.append(met + np.array([[-_APART], [0.0], [_APART]]))
+    return np.asarray(np.sort(np.clip(np.concatenate(nodes), least, most), axis=0))
 
 
 def _contracting(model: Model, pv: Array, u: Array) -> NDArray[np.bool_]:

@@ -207,11 +207,14 @@ def _scan_isotherm(
     limits = model.residual.limits
     assert limits is not None
     melting = limits.melting_pressure(T)
-    most = np.where(melting > 0.0, np.minimum(melting, model.p_max), model.p_max)
+    # a little beyond, so that a state on the very end is not lost
+    most = np.where(melting > 0.0, np.minimum(melting, model.p_max), model.p_max) * (1.0 + 1e-6)
+    line = model.residual.coexistence
+    least = _P_LEAST if line is None else min(_P_LEAST, 1e-3 * line.p_low)
     with np.errstate(all="ignore"):
         densest = model.residual.volume_of(T, most, np.full(T.size, -1.0) * (low < model.v_c))
         assert densest is not None
-        far = np.minimum(high, model.R * T / _P_LEAST)
+        far = np.minimum(high, model.R * T / least)
         near = np.where(densest[0] > low, densest[0], low)
         near = np.log(np.minimum(near, far))
         share = np.linspace(0.0, 1.0, _NODES)[:, None]

@@ -57,7 +57,9 @@ def test_states_over_the_whole_range(name: str) -> None:
         state.specify_phase(CP.iphase_gas)
         state.update(CP.DmolarT_INPUTS, 1.0 / ours.v[k], T[k])
         state.unspecify_phase()
-        stiff = max(p[k], 1.0 / (ours.v[k] * ours.v[k] * state.first_partial_deriv(CP.iDmolar, CP.iP, CP.iT) / ours.v[k]))
+        stiff = max(
+            p[k], 1.0 / (ours.v[k] * ours.v[k] * state.first_partial_deriv(CP.iDmolar, CP.iP, CP.iT) / ours.v[k])
+        )
         assert abs(state.p() - p[k]) < max(1e-9, same_R) * stiff, (T[k], p[k])
         h[k], s[k] = ours.h[k] - state.hmolar(), ours.s[k] - state.smolar()
         tolerance = max(same_R, HEAT_CAPACITY.get(name, 0.0))
