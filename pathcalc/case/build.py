@@ -210,6 +210,15 @@ class _Builder:
             shown = os.path.normpath(os.path.join(os.path.dirname(written.mark.file), str(written)))
             if self.files.take(target, shown, written.mark) is not None:
                 fluid._card_path = str(target)
+                self._beside_card(target, shown, written.mark)
+
+    def _beside_card(self, card: Path, shown: str, mark: Mark) -> None:
+        """A published equation in the folder `reference` beside the card is part of the case too."""
+        inside = Path("reference") / card.name
+        if (card.parent / inside).is_file():
+            target = self.files.fenced(Scalar(inside.as_posix(), mark), card.parent, "reference equation")
+            if target is not None:
+                self.files.take(target, (Path(shown).parent / inside).as_posix(), mark)
 
     def boundary(self) -> Literal["flow", "closed"] | None:
         value = self.data.get("boundary")

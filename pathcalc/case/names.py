@@ -4,8 +4,8 @@ from __future__ import annotations
 
 FORMAT_VERSION = "1"
 
-EQUATIONS = ("ideal-gas", "van-der-waals", "redlich-kwong", "soave", "peng-robinson", "virial")
-EQUATIONS_LATER = ("reference", "compressed", "measured")
+EQUATIONS = ("ideal-gas", "van-der-waals", "redlich-kwong", "soave", "peng-robinson", "virial", "reference")
+EQUATIONS_LATER = ("compressed", "measured")
 CUBICS = ("van-der-waals", "redlich-kwong", "soave", "peng-robinson")
 WITHOUT_SATURATION = ("ideal-gas", "virial")
 DATUMS = ("ideal-gas-298", "triple-liquid", "boiling-liquid", "liquid-0C")

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from pathcalc.cli.group import COMMANDS
+from pathcalc.cli.reference_text import reference_as_dict, reference_text
 from pathcalc.cli.talk import loudness, write, write_json
 from pathcalc.errors import PathcalcError, UsageError
 
@@ -151,6 +152,7 @@ def card_text(card: Card) -> str:
     lines += ["", "Equations"]
     for equation, lack in usable_equations(card).items():
         lines.append(f"  {equation}" + (f": cannot be used; {lack}" if lack else ""))
+    lines += reference_text(card)
     lines += ["", *(f"Remark: {remark}" for remark in card.remarks), "Sources"]
     lines += [f"  [{key}] {text}" for key, text in card.sources.items()]
     return "\n".join(line for k, line in enumerate(lines) if line or lines[k - 1])
@@ -209,5 +211,6 @@ def card_as_dict(card: Card) -> dict[str, Any]:
         "volume_shift": asdict(card.volume_shift) if card.volume_shift else None,
         "ideal_gas": [asdict(item) for item in card.ideal_gas],
         "equations": _usable(card),
+        "reference": reference_as_dict(card),
         "sources": dict(card.sources),
     }

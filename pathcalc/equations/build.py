@@ -26,6 +26,7 @@ _BUILT_IN: Mapping[str, str] = {
     "soave": "pathcalc.equations.families:soave",
     "peng-robinson": "pathcalc.equations.families:peng_robinson",
     "virial": "pathcalc.equations.families:virial",
+    "reference": "pathcalc.equations.helmholtz.reference:reference",
 }
 _GROUP = "pathcalc.equations"
 _T_CEILING = 20000.0

@@ -48,8 +48,88 @@ class PressureTerms(NamedTuple):
     p_TT: Array
 
 
+class Coexisting(NamedTuple):
+    """Coexisting phases, arrays (n,): T (K), p (Pa), volumes of liquid and vapour (m3/mol), dp/dT (Pa/K)."""
+
+    T: Array
+    p: Array
+    v_liquid: Array
+    v_vapour: Array
+    dp_dT: Array
+
+
+class SaturationLine(Protocol):
+    """A saturation line that an equation knows beforehand, from ``T_low`` to ``T_top`` (K), ``p_low`` to ``p_top``.
+
+    Above ``T_top`` (Pa: ``p_top``) the critical point is too near to tell the phases apart. Arguments are of shape
+    (n,) and lie between those ends.
+    """
+
+    T_low: float
+    T_top: float
+    p_low: float
+    p_top: float
+
+    def at_T(self, T: Array) -> Coexisting:
+        """Coexisting phases at ``T`` (K)."""
+        ...
+
+    def at_p(self, p: Array) -> Coexisting:
+        """Coexisting phases at ``p`` (Pa)."""
+        ...
+
+    def p_at(self, T: Array) -> Array:
+        """The saturation pressure (Pa) alone at ``T`` (K)."""
+        ...
+
+    def energies(self, T: Array) -> tuple[Array, Array, Array]:
+        """D10 of liquid and vapour and D00 of the liquid at ``T`` (K)."""
+        ...
+
+    def T_near(self, v: Array) -> Array:
+        """About (within some 10^-3) where one phase has the volume ``v`` (m3/mol), K; ``T_low`` beyond the line."""
+        ...
+
+
+class PressureLimits(Protocol):
+    """The ends of an equation in pressure."""
+
+    p_max: float
+    """The highest pressure (Pa) at which anything is computed."""
+
+    def melting_pressure(self, T: Array) -> Array:
+        """The pressure (Pa) above which the substance is solid at ``T`` (K), NaN where no melting line is known."""
+        ...
+
+    def dew_and_bubble(self, T: Array) -> tuple[Array, Array] | None:
+        """Dew and bubble pressure (Pa) at ``T`` (K) of a mixture that is treated as one component; else None."""
+        ...
+
+
 class Residual(Protocol):
-    """The residual part of an equation of state."""
+    """The residual part of an equation of state.
+
+    Equations with more than one loop inside the dome know their ``coexistence`` and give volumes by
+    ``volume_of``; those whose volumes follow in closed form have neither (None).
+    """
+
+    @property
+    def coexistence(self) -> SaturationLine | None:
+        """The saturation line, where it need not be solved for; None where it is found from ``volume_roots``."""
+        ...
+
+    @property
+    def limits(self) -> PressureLimits | None:
+        """Where the equation ends in pressure: None where it does not say."""
+        ...
+
+    def volume_of(self, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array] | None:
+        """The volume (m3/mol) of the stable phase at ``T``, ``p``, shape (n,), and ln(p/p_sat); or None, see above.
+
+        NaN where there is none, and where there is no saturation. ``branch`` asks for liquid (−1) or vapour (1) where
+        there are both, and 0 for the stable one.
+        """
+        ...
 
     def reduced(self, T: Array, rho: Array) -> Reduced:
         """Scaled derivatives at temperature ``T`` (K) and molar density ``rho`` (mol/m3)."""
@@ -121,7 +201,10 @@ class Parameter(NamedTuple):
 
 @dataclass(frozen=True)
 class EquationInfo:
-    """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words."""
+    """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words.
+
+    ``uncertainty`` holds what its source states, a line a property and region.
+    """
 
     name: str
     title: str
@@ -129,6 +212,7 @@ class EquationInfo:
     parameters: tuple[Parameter, ...]
     source: str
     range_text: str
+    uncertainty: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -24,7 +24,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from pathcalc.equations.alpha import AlphaFunction
-from pathcalc.equations.contract import R_CODATA, Array, PressureTerms, Reduced
+from pathcalc.equations.contract import R_CODATA, Array, PressureLimits, PressureTerms, Reduced, SaturationLine
 from pathcalc.equations.cubic_roots import density_roots
 from pathcalc.equations.cubic_saturation import saturation_start
 
@@ -62,6 +62,9 @@ PENG_ROBINSON_FORM = Form(
 
 class TwoConstantCubic:
     """One cubic for one substance, fixed by T_c (K), p_c (Pa), its α(T) and a volume shift c (m3/mol)."""
+
+    coexistence: SaturationLine | None = None
+    limits: PressureLimits | None = None
 
     def __init__(
         self,
@@ -152,3 +155,7 @@ class TwoConstantCubic:
         """A start for the saturation pressure, Pa; the volume shift does not move it."""
         theta = self.theta_c * self.alpha.theta(T)[0]
         return self.R * T / self.b * saturation_start(theta, self.theta_c, self.form.eta_c, self.u, self.w)
+
+    def volume_of(self, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array] | None:
+        """None: volumes follow from ``volume_roots``."""
+        return None

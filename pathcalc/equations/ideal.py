@@ -7,11 +7,14 @@ from __future__ import annotations
 
 import numpy as np
 
-from pathcalc.equations.contract import R_CODATA, Array, PressureTerms, Reduced
+from pathcalc.equations.contract import R_CODATA, Array, PressureLimits, PressureTerms, Reduced, SaturationLine
 
 
 class NoResidual:
     """Zero residual Helmholtz energy; every derivative is exactly zero at every density."""
+
+    coexistence: SaturationLine | None = None
+    limits: PressureLimits | None = None
 
     def __init__(self, R: float = R_CODATA) -> None:
         self.R = R
@@ -43,3 +46,7 @@ class NoResidual:
     def saturation_start(self, T: Array) -> Array:
         """NaN: an ideal gas does not condense."""
         return np.full(np.shape(T), np.nan)
+
+    def volume_of(self, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array] | None:
+        """None: volumes follow from ``volume_roots``."""
+        return None

@@ -17,7 +17,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from pathcalc.equations.contract import R_CODATA, Array, PressureTerms, Reduced
+from pathcalc.equations.contract import R_CODATA, Array, PressureLimits, PressureTerms, Reduced, SaturationLine
 
 _NEWTON_STEPS = 60
 
@@ -79,6 +79,9 @@ def _corresponding(
 
 class VirialGas:
     """The residual part from B and, if given, C; ``rho_c`` in mol/m3 sets how far it is used."""
+
+    coexistence: SaturationLine | None = None
+    limits: PressureLimits | None = None
 
     def __init__(self, B: Coefficient, C: Coefficient | None, rho_c: float, R: float = R_CODATA) -> None:
         self.B, self.C, self.R = B, C, R
@@ -146,3 +149,7 @@ class VirialGas:
     def saturation_start(self, T: Array) -> Array:
         """NaN: the virial equation has no liquid."""
         return np.full(np.shape(T), np.nan)
+
+    def volume_of(self, T: Array, p: Array, branch: Array | None = None) -> tuple[Array, Array] | None:
+        """None: volumes follow from ``volume_roots``."""
+        return None

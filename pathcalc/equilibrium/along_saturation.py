@@ -9,9 +9,9 @@ from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium import quantity, reasons
-from pathcalc.equilibrium.given_pressure import flash_Tp
+from pathcalc.equilibrium.given_pressure import flash_Tp, volume_on
 from pathcalc.equilibrium.points import Draft, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import NEAR_CRITICAL, saturation_at_p, saturation_at_T
+from pathcalc.equilibrium.saturation import ends, nearest_T, saturation_at_p, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
@@ -48,19 +48,13 @@ def flash_beside(model: Model, offset: Array, key: str, given: Array) -> Points:
 
 def _mixture(model: Model, key: str, T: Array, x: Array) -> Array:
     sat = saturation_at_T(model, T)
-    if key == "v":
-        return mix(x, sat.v_liquid, sat.v_vapour)
-    liquid = quantity.value(model, key, sat.T, sat.v_liquid)
-    return mix(x, liquid, quantity.value(model, key, sat.T, sat.v_vapour))
+    return mix(x, *ends(model, key, sat))
 
 
 def _neighbour(model: Model, key: str, T: Array, offset: Array) -> Array:
     sat = saturation_at_T(model, T)
     with np.errstate(all="ignore"):
-        roots = model.residual.volume_roots(T + offset, sat.p)
-        light = np.where(np.isnan(roots[1]), roots[0], roots[1])
-        dense = np.where(np.isnan(roots[0]), roots[1], roots[0])
-        v = np.where(offset >= 0.0, light, dense)
+        v = volume_on(model, T + offset, sat.p, np.where(offset >= 0.0, 1.0, -1.0))
     outside = (T + offset < model.T_limits[0]) | (T + offset > model.T_limits[1])
     return np.where(outside, np.nan, quantity.value(model, key, T + offset, v))
 
@@ -92,7 +86,7 @@ def _scan(
     if not model.has_dome:
         draft.reason[:] = reasons.NO_COEXISTENCE
         return
-    top = 1.0 - 1.5 * NEAR_CRITICAL
+    top = nearest_T(model) / model.T_c
     bottom = model.T_limits[0] / model.T_c
     # nodes crowd towards the critical point, where volumes and entropies turn
     share = np.linspace(0.0, 1.0, _NODES)

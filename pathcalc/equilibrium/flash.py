@@ -9,6 +9,7 @@ from numpy.typing import ArrayLike
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium.along_saturation import flash_beside, flash_x
+from pathcalc.equilibrium.fence import fenced
 from pathcalc.equilibrium.given_calorics import flash_s, flash_uh
 from pathcalc.equilibrium.given_pressure import flash_p, flash_Tp
 from pathcalc.equilibrium.given_temperature import flash_T
@@ -18,6 +19,9 @@ from pathcalc.errors import UsageError
 
 BLOCK = 2048
 """Lanes worked on at a time, so that temporaries stay in the processor's cache."""
+
+WIDE_BLOCK = 16384
+"""The same for equations that block their terms themselves: the last steps of a few slow lanes are shared."""
 
 KEYS = ("T", "p", "v", "rho", "u", "h", "s", "x", "superheat", "subcooling")
 
@@ -51,8 +55,9 @@ def flash(model: Model, given: Mapping[str, ArrayLike]) -> Points:
     a, b = (np.ascontiguousarray(x) for x in np.broadcast_arrays(*(arrays[key] for key in order)))
     n = a.size
     with np.errstate(all="ignore"):
-        parts = [solve(model, a[i : i + BLOCK], b[i : i + BLOCK]) for i in range(0, max(n, 1), BLOCK)]
-    return joined(parts)
+        block = BLOCK if model.residual.coexistence is None else WIDE_BLOCK
+        parts = [solve(model, a[i : i + block], b[i : i + block]) for i in range(0, max(n, 1), block)]
+    return fenced(model, joined(parts))
 
 
 Solve = Callable[[Model, Array, Array], Points]

@@ -11,9 +11,11 @@ from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium import quantity, reasons
+from pathcalc.equilibrium.direct import at_pressure
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation
-from pathcalc.equilibrium.saturation import difference, pressure_range, saturation_at_p
+from pathcalc.equilibrium.saturation import difference, ends, pressure_range, quality, saturation_at_p
+from pathcalc.equilibrium.scan import scanned
 
 AT_SATURATION = 1e-9
 """(T, p) closer to the saturation line than this part of the pressure does not fix a state."""
@@ -21,6 +23,8 @@ AT_SATURATION = 1e-9
 
 _ON_BRANCH = 1e-6
 """A volume further than this from the stable one at the T found for it lies inside the spinodal."""
+_BESIDE = 3e-3
+_NODES = 24
 
 
 def range_reason(model: Model, T: Array) -> NDArray[np.int16]:
@@ -38,6 +42,14 @@ def flash_Tp(model: Model, T: Array, p: Array) -> Points:
     draft = Draft(T.size)
     reason = range_reason(model, T)
     reason[~((p > 0.0) & (p < np.inf))] = reasons.NOT_A_STATE
+    settled = model.residual.volume_of(T, p)
+    if settled is not None:
+        v, above = settled
+        with np.errstate(invalid="ignore"):
+            reason[(reason == 0) & (np.abs(above) < AT_SATURATION)] = reasons.AT_SATURATION
+        reason[(reason == 0) & ~np.isfinite(v)] = reasons.NO_ROOT
+        draft.T, draft.p, draft.v, draft.reason = T.copy(), p.copy(), v, reason
+        return draft.finish(model)
     with np.errstate(all="ignore"):
         roots = model.residual.volume_roots(T, p)
         v = np.where(np.isnan(roots[1]), roots[0], roots[1])
@@ -69,6 +81,7 @@ def flash_p(model: Model, p: Array, key: str, target: Array) -> Points:
     branch = np.zeros(n, dtype=np.int8)
     T_low, T_high = model.T_limits
     low, high = np.full(n, T_low), np.full(n, T_high)
+    edge = np.full(n, np.nan)
     start = _start(model, p, key, target)
     if model.has_dome:
         below, _ = pressure_range(model)
@@ -76,9 +89,13 @@ def flash_p(model: Model, p: Array, key: str, target: Array) -> Points:
             domed = np.flatnonzero(good & (p < model.p_c) & (p >= below))
         if domed.size:
             sat = saturation_at_p(model, p[domed])
-            _split(model, domed, sat, key, target, draft, branch, low, high, start, good)
+            _split(model, domed, sat, key, target, draft, branch, low, high, edge, start, good)
         branch[good & (p < below)] = 1
     todo = np.flatnonzero(good)
+    if todo.size and key != "v" and model.residual.coexistence is not None:
+        todo = _settled_directly(model, todo, p, key, target, draft, branch, low, high, edge)
+    if todo.size and key == "v" and model.residual.coexistence is not None:
+        todo = _of_volume(model, todo, p, target, draft, branch, low, high)
     if todo.size:
         _single_phase(model, todo, p, key, target, draft, branch, low, high, start)
     return draft.finish(model)
@@ -102,17 +119,15 @@ def _split(
     branch: NDArray[np.int8],
     low: Array,
     high: Array,
+    edge: Array,
     start: Array,
     good: Mask,
 ) -> None:
     """Sorts lanes below the critical pressure into liquid, vapour and two-phase, and settles the last."""
     wanted = target[at]
     with np.errstate(all="ignore"):
-        liquid = quantity.value(model, key, sat.T, sat.v_liquid)
-        vapour = quantity.value(model, key, sat.T, sat.v_vapour)
-        x = (wanted - liquid) / (vapour - liquid)
-        end = 4e-15 * np.maximum(np.abs(liquid), np.abs(vapour)) / (vapour - liquid)
-        x = np.where(np.abs(x) <= end, 0.0, np.where(np.abs(x - 1.0) <= end, 1.0, x))
+        liquid, vapour = ends(model, key, sat)
+        x = quality(key, wanted, liquid, vapour)
         known = sat.reason == 0
         inside = known & (x >= 0.0) & (x <= 1.0)
         is_liquid, is_vapour = known & (x < 0.0), known & (x > 1.0)
@@ -125,8 +140,9 @@ def _split(
         here = at[mask]
         branch[here] = code
         start[here] = sat.T[mask]
+        edge[here] = (sat.v_liquid if code < 0 else sat.v_vapour)[mask]
         (high if code < 0 else low)[here] = sat.T[mask]
-    if is_vapour.any() or is_liquid.any():
+    if (is_vapour.any() or is_liquid.any()) and (key == "v" or model.residual.coexistence is None):
         _better_start(model, at, sat, key, wanted, start, is_liquid, is_vapour, liquid, vapour)
     # next to the critical pressure there is no dome to speak of: the whole isobar is searched
 
@@ -158,6 +174,75 @@ def _better_start(
         start[here] = sat.T[is_vapour] * wanted[is_vapour] / sat.v_vapour[is_vapour]
 
 
+def _settled_directly(
+    model: Model,
+    todo: NDArray[np.intp],
+    p: Array,
+    key: str,
+    target: Array,
+    draft: Draft,
+    branch: NDArray[np.int8],
+    low: Array,
+    high: Array,
+    edge: Array,
+) -> NDArray[np.intp]:
+    """Settles what Newton's method in both variables finds; returns the lanes left over."""
+    lo, hi, q = low[todo], high[todo], p[todo]
+    T, v, ok = at_pressure(model, key, q, target[todo], branch[todo].astype(np.float64), lo, hi, edge[todo])
+    with np.errstate(invalid="ignore"):
+        ok &= (lo * (1.0 - 1e-10) <= T) & (hi * (1.0 + 1e-10) >= T)
+    draft.put(todo[ok], np.clip(T, lo, hi)[ok], q[ok], v[ok])
+    return todo[~ok]
+
+
+def _of_volume(
+    model: Model,
+    todo: NDArray[np.intp],
+    p: Array,
+    v: Array,
+    draft: Draft,
+    branch: NDArray[np.int8],
+    low: Array,
+    high: Array,
+) -> NDArray[np.intp]:
+    """Keeps the isochore out of the dome, and settles lanes where volume falls with T before it rises.
+
+    Such a liquid (water below 4 °C) has the volume asked for at two temperatures, or at one on either side of the
+    densest state.
+    """
+    line = model.residual.coexistence
+    assert line is not None
+    thin = todo[p[todo] < pressure_range(model)[0]]
+    if thin.size:
+        coldest = volume_on(model, np.full(thin.size, model.T_limits[0]), p[thin], np.ones(thin.size))
+        below = thin[v[thin] < coldest * (1.0 - 1e-12)]
+        draft.reason[below] = reasons.BELOW_TRIPLE_POINT
+        todo = todo[~np.isin(todo, below)]
+    dense = todo[branch[todo] <= 0]
+    low[dense] = np.maximum(low[dense], np.minimum(line.T_near(v[dense]) * (1.0 - _BESIDE), high[dense]))
+    cold = todo[(branch[todo] <= 0) & (v[todo] < model.v_c) & (low[todo] < 0.7 * model.T_c)]
+    if cold.size == 0:
+        return todo
+    T_low = np.full(cold.size, model.T_limits[0])
+    w = volume_on(model, T_low, p[cold], np.full(cold.size, -1.0))
+    odd = cold[model.residual.pressure(T_low, w).p_T < 0.0]
+    if odd.size == 0:
+        return todo
+    edge = np.minimum(high[odd], np.maximum(1.3 * model.T_limits[0], 0.6 * model.T_c))
+    nodes = model.T_limits[0] + np.linspace(0.0, 1.0, _NODES)[:, None] * (edge - model.T_limits[0])
+
+    def fun(T: Array, p: Array, wanted: Array) -> Array:
+        return np.log(volume_on(model, T, p, np.full(T.size, -1.0)) / wanted)
+
+    first, second, count = scanned(fun, nodes, (p[odd], v[odd]))
+    found = odd[count >= 1]
+    draft.put(found, first.x[count >= 1], p[found], v[found])
+    twice = odd[count >= 2]
+    draft.reason[twice] = reasons.TWO_SOLUTIONS
+    draft.T_other[twice], draft.p_other[twice] = second.x[count >= 2], p[twice]
+    return todo[~np.isin(todo, found)]
+
+
 def _single_phase(
     model: Model,
     todo: NDArray[np.intp],
@@ -174,7 +259,7 @@ def _single_phase(
 
     def fun(x: Array, p: Array, wanted: Array, branch: Array) -> tuple[Array, Array]:
         T = np.exp(x) if logarithmic else x
-        v = _root(model, T, p, branch)
+        v = volume_on(model, T, p, branch)
         X, slope = quantity.at_pressure(model, key, T, v)
         f = X - wanted
         lost = v != v  # beyond the end of a branch: densest side
@@ -196,7 +281,7 @@ def _single_phase(
         args = (q, target[todo], b)
         root = guarded_newton(at_volume if key == "v" else fun, x, lo, hi, args, unit=1.0 if logarithmic else None)
         T = np.clip(np.exp(root.x) if logarithmic else root.x, T_low, T_high)
-        v = _root(model, T, q, b)
+        v = volume_on(model, T, q, b)
     ok = root.ok
     if key == "v":
         with np.errstate(all="ignore"):
@@ -206,13 +291,16 @@ def _single_phase(
     failed = np.where(middle > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
     if not model.has_dome:
         with np.errstate(all="ignore"):
-            dense = np.isnan(_root(model, T * (1.0 - 1e-6), q, b))
+            dense = np.isnan(volume_on(model, T * (1.0 - 1e-6), q, b))
         failed = np.where(dense, reasons.NO_ROOT, failed)
     draft.put(todo, T, q, v, np.where(ok, 0, failed).astype(np.int16))
 
 
-def _root(model: Model, T: Array, p: Array, branch: Array) -> Array:
+def volume_on(model: Model, T: Array, p: Array, branch: Array) -> Array:
     """The volume on a branch: −1 liquid-like, 1 vapour-like, 0 whichever there is (dense first)."""
+    settled = model.residual.volume_of(T, p, branch)
+    if settled is not None:
+        return settled[0]
     roots = model.residual.volume_roots(T, p)
     liquid, vapour = roots[0], roots[1]
     dense = np.where(np.isnan(liquid), vapour, liquid)

@@ -14,9 +14,9 @@ from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.given_pressure import range_reason
-from pathcalc.equilibrium.iterate import guarded_newton
+from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation
-from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.equilibrium.saturation import ends, quality, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
@@ -44,7 +44,8 @@ def flash_T(model: Model, T: Array, key: str, target: Array) -> Points:
         rest = np.concatenate([rest, _with_dome(model, cold, T, key, target, draft)])
     if rest.size:
         floor = model.residual.v_min(T[rest])
-        _on_branch(model, rest, T, key, target, draft, floor, quantity.volume_ceiling(model, T[rest]))
+        scan = key == "h" or (key == "u" and model.residual.coexistence is not None)
+        _on_branch(model, rest, T, key, target, draft, floor, quantity.volume_ceiling(model, T[rest]), scan)
     return draft.finish(model)
 
 
@@ -53,30 +54,45 @@ def _with_dome(model: Model, at: NDArray[np.intp], T: Array, key: str, target: A
     sat = saturation_at_T(model, T[at])
     wanted = target[at]
     known = sat.reason == 0
+    several = _several(model, key, sat)
     with np.errstate(all="ignore"):
-        if key == "v":
-            liquid, vapour = sat.v_liquid, sat.v_vapour
-        else:
-            liquid = quantity.value(model, key, sat.T, sat.v_liquid)
-            vapour = quantity.value(model, key, sat.T, sat.v_vapour)
-        x = (wanted - liquid) / (vapour - liquid)
-        end = 4e-15 * np.maximum(np.abs(liquid), np.abs(vapour)) / (vapour - liquid)
-        x = np.where(np.abs(x) <= end, 0.0, np.where(np.abs(x - 1.0) <= end, 1.0, x))
+        liquid, vapour = ends(model, key, sat)
+        x = quality(key, wanted, liquid, vapour)
         inside = known & (x >= 0.0) & (x <= 1.0)
-        liquid_side, vapour_side = known & (x < 0.0), known & (x > 1.0)
-    if key == "h":
-        # h is not monotone along the liquid: states inside the dome and on both branches are looked for
-        liquid_side = vapour_side = known
+        # where the quantity is not monotone, states inside the dome and on both branches are looked for
+        liquid_side, vapour_side = known & (several | (x < 0.0)), known & (several | (x > 1.0))
     ceiling = quantity.volume_ceiling(model, T[at])
     floor = model.residual.v_min(T[at])
     if inside.any():
         part = Saturation(*(getattr(sat, name)[inside] for name in Saturation.__dataclass_fields__))
         draft.put_mixed(at[inside], part, x[inside])
-    for mask, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
-        if mask.any():
-            _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask])
+    for side, low, high in ((liquid_side, floor, sat.v_liquid), (vapour_side, sat.v_vapour, ceiling)):
+        for mask, scan in ((side & several, True), (side & ~several, False)):
+            if mask.any():
+                _on_branch(model, at[mask], T, key, target, draft, low[mask], high[mask], scan)
     near: NDArray[np.intp] = at[~known]
     return near
+
+
+def _several(model: Model, key: str, sat: Saturation) -> NDArray[np.bool_]:
+    """Where a quantity may have one value at several volumes of an isotherm below T_c.
+
+    h always; u in dense liquids, as far as the equation is to be trusted there; s in liquids that contract on
+    heating, as water does below 4 °C: told by (∂p/∂T)_v of the saturated liquid.
+    """
+    every = np.ones(sat.T.size, dtype=np.bool_)
+    if key == "h":
+        return every
+    line = model.residual.coexistence
+    if line is None or key == "v":
+        return ~every
+    if key == "u":
+        return every
+    cold = np.flatnonzero(0.6 * model.T_c > sat.T)
+    falls = ~every
+    if cold.size:
+        falls[cold] = model.residual.pressure(sat.T[cold], sat.v_liquid[cold]).p_T < 0.0
+    return falls
 
 
 def _on_branch(
@@ -88,8 +104,9 @@ def _on_branch(
     draft: Draft,
     low: Array,
     high: Array,
+    scan: bool,
 ) -> None:
-    """A single-phase state between the volumes ``low`` and ``high``."""
+    """A single-phase state between the volumes ``low`` and ``high``; all of them where ``scan``."""
     t, wanted = T[at], target[at]
     if key == "v":
         v = wanted.copy()
@@ -99,11 +116,14 @@ def _on_branch(
         reason[(reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))] = reasons.NO_ROOT
         draft.put(at, t, state.p, v, reason.astype(np.int16))
         return
+    if scan and model.residual.coexistence is not None:
+        _scan_isotherm(model, at, key, t, wanted, draft, low, high)
+        return
     floor = model.residual.v_min(t)
     with np.errstate(all="ignore"):
         lowest = np.log(np.where(low > floor, low - floor, model.R * t * _P_INVERSE_MOST))
         highest = np.log(high - floor)
-    if key == "h":
+    if scan:
         _scan_enthalpy(model, at, t, wanted, draft, floor, lowest, highest)
         return
 
@@ -154,6 +174,13 @@ def _scan_enthalpy(
     nodes[-1] = highest
     nodes[0] = np.where(lowest > near - 0.5 * (far - near) / _NODES, lowest, near)
     first, second, count = scanned(fun, nodes, (T, wanted, floor), unit=1.0)
+    _settle(model, at, T, draft, floor, first, second, count)
+
+
+def _settle(
+    model: Model, at: NDArray[np.intp], T: Array, draft: Draft, floor: Array, first: Root, second: Root, count: Array
+) -> None:
+    """The states found by a scan; two, or one more than is known already, are a reason of their own."""
     with np.errstate(all="ignore"):
         v = floor + np.exp(first.x)
         p = thermal(model, T, v).p
@@ -171,3 +198,31 @@ def _scan_enthalpy(
     draft.T_other[both], draft.p_other[both] = T[again], p[again]
     none = at[(count == 0) & (draft.reason[at] == reasons.NOT_CONVERGED)]
     draft.reason[none] = reasons.TARGET_NOT_REACHED
+
+
+def _scan_isotherm(
+    model: Model, at: NDArray[np.intp], key: str, T: Array, wanted: Array, draft: Draft, low: Array, high: Array
+) -> None:
+    """All states of an isotherm between the volumes ``low`` and ``high``, up to the melting or the largest pressure."""
+    limits = model.residual.limits
+    assert limits is not None
+    melting = limits.melting_pressure(T)
+    # a little beyond, so that a state on the very end is not lost
+    most = np.where(melting > 0.0, np.minimum(melting, model.p_max), model.p_max) * (1.0 + 1e-6)
+    line = model.residual.coexistence
+    least = _P_LEAST if line is None else min(_P_LEAST, 1e-3 * line.p_low)
+    with np.errstate(all="ignore"):
+        densest = model.residual.volume_of(T, most, np.full(T.size, -1.0) * (low < model.v_c))
+        assert densest is not None
+        far = np.minimum(high, model.R * T / least)
+        near = np.where(densest[0] > low, densest[0], low)
+        near = np.log(np.minimum(near, far))
+        share = np.linspace(0.0, 1.0, _NODES)[:, None]
+        wide = np.log(far) - near
+        nodes = near + wide * np.where(wide > 3.0, share * share, share)
+
+    def fun(x: Array, T: Array, wanted: Array) -> Array:
+        return quantity.value(model, key, T, np.exp(x)) - wanted
+
+    first, second, count = scanned(fun, nodes, (T, wanted), unit=1.0)
+    _settle(model, at, T, draft, np.zeros(T.size), first, second, count)

@@ -15,9 +15,11 @@ from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.iterate import guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import NEAR_CRITICAL, saturation_at_T
+from pathcalc.equilibrium.saturation import nearest_T, quality, saturation_at_T
 
 _ROUNDING = 1e-11
+_BESIDE = 3e-3
+"""How well the saturation line tells the temperature of a volume."""
 
 
 def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
@@ -40,6 +42,9 @@ def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
         X, X_T, _ = quantity.of(key, thermal(model, T, v), T, v)
         return X - wanted, X_T
 
+    if model.residual.coexistence is not None:
+        _through_dome(model, at, w, wanted, key, draft)
+        return draft.finish(model)
     start = np.full(at.size, 1.2 * model.T_c if model.has_dome else 400.0)
     root = guarded_newton(fun, start, low, high, (w, wanted))
     T = np.clip(root.x, T_low, T_high)
@@ -56,17 +61,60 @@ def flash_v(model: Model, v: Array, key: str, target: Array) -> Points:
     return draft.finish(model)
 
 
+def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, key: str, draft: Draft) -> None:
+    """The stable state at once, for equations that are wild inside their dome."""
+    T_low, T_high = model.T_limits
+    line = model.residual.coexistence
+    assert line is not None
+    boundary = line.T_near(v)
+
+    def fun(T: Array, v: Array, wanted: Array) -> tuple[Array, Array]:
+        X, slope, _, _ = stable(model, key, np.clip(T, T_low, T_high), v)
+        return X - wanted, slope
+
+    low, high = np.full(at.size, T_low * (1.0 - 1e-12)), np.full(at.size, T_high * (1.0 + 1e-12))
+    edge = np.clip(boundary, T_low, T_high)
+    at_edge = fun(edge, v, wanted)[0]
+    hotter = at_edge < 0.0
+    low, high = np.where(hotter, edge * (1.0 - _BESIDE), low), np.where(hotter, high, edge * (1.0 + _BESIDE))
+    low, high = np.maximum(low, T_low * (1.0 - 1e-12)), np.minimum(high, T_high * (1.0 + 1e-12))
+    start = np.where(hotter, edge * (1.0 + _BESIDE), edge * (1.0 - _BESIDE))
+    if model.residual.limits is not None:
+        # pressure is nearly linear in T on an isochore: this is beyond the highest one
+        with np.errstate(all="ignore"):
+            slope = thermal(model, start, v).p_T
+            end = start + 1.5 * model.residual.limits.p_max / slope
+            high = np.where(end > start, np.minimum(high, end), high)
+    root = guarded_newton(fun, start, low, high, (v, wanted))
+    T = np.clip(root.x, T_low, T_high)
+    sat = saturation_at_T(model, T)
+    with np.errstate(all="ignore"):
+        x = quality("v", v, sat.v_liquid, sat.v_vapour)
+        inside = (x >= 0.0) & (x <= 1.0)
+        t = thermal(model, T, v)
+        sound = (t.p > 0.0) & (t.p_v < 0.0)
+    failed = np.where(0.5 * (T_low + T_high) > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
+    reason = np.where(root.ok, np.where(sound | inside, 0, reasons.NO_ROOT), failed).astype(np.int16)
+    draft.put(at, T, t.p, v, reason)
+    both = np.flatnonzero(inside)
+    if both.size:
+        here = at[both]
+        draft.put_mixed(here, Saturation(*(getattr(sat, k)[both] for k in _FIELDS)), x[both])
+        draft.v[here] = v[both]
+        draft.reason[here] = np.where(root.ok[both], draft.reason[here], reason[both])
+
+
 def _below_critical(model: Model, at: NDArray[np.intp], v: Array, key: str, target: Array, draft: Draft) -> None:
     """Keeps the lanes whose single-phase state lies outside the dome, solves the others inside it."""
     T = draft.T[at]
-    sat = saturation_at_T(model, np.clip(T, model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)))
+    sat = saturation_at_T(model, np.clip(T, model.T_limits[0], nearest_T(model)))
     with np.errstate(all="ignore"):
         outside = (sat.v_liquid >= v[at]) | (v[at] >= sat.v_vapour)
     todo = at[~outside]
     if todo.size == 0:
         return
     w, wanted = v[todo], target[todo]
-    bottom, top = model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)
+    bottom, top = model.T_limits[0], nearest_T(model)
     low, high = np.full(todo.size, bottom * (1.0 - 1e-12)), np.full(todo.size, top)
 
     def fun(T: Array, v: Array, wanted: Array) -> tuple[Array, Array]:

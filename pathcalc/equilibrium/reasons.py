@@ -18,6 +18,8 @@
 | 13     | near-critical           |
 | 14     | not-a-state             |
 | 15     | quality-out-of-range    |
+| 16     | above-pressure-range    |
+| 17     | between-dew-and-bubble  |
 """
 
 from __future__ import annotations
@@ -42,6 +44,8 @@ INSIDE_SOLID = 12
 NEAR_CRITICAL = 13
 NOT_A_STATE = 14
 QUALITY_OUT_OF_RANGE = 15
+ABOVE_PRESSURE = 16
+BETWEEN_DEW_AND_BUBBLE = 17
 
 
 @dataclass(frozen=True)
@@ -127,6 +131,17 @@ REASONS: dict[int, Reason] = {
     ),
     QUALITY_OUT_OF_RANGE: Reason(
         "quality-out-of-range", "a vapour quality lies between 0 and 1", "check the value of x"
+    ),
+    BETWEEN_DEW_AND_BUBBLE: Reason(
+        "between-dew-and-bubble",
+        "the substance is a mixture that the equation treats as one component: it gives no states between its dew and "
+        "bubble lines, where vapour and liquid differ in composition",
+        "stay outside the two lines, or give the fluid as a mixture",
+    ),
+    ABOVE_PRESSURE: Reason(
+        "above-pressure-range",
+        "the pressure lies above the highest one the equation is used at",
+        "lower the pressure or density, or choose an equation that reaches further",
     ),
 }
 

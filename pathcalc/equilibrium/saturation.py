@@ -2,7 +2,8 @@
 
 At a trial (T, p) both volumes come from the equation; f = (g_liquid − g_vapour)/(R T) then has the slopes
 ∂f/∂ln p = p (v_l − v_v)/(R T) and ∂f/∂(1/T) = (h_l − h_v)/R. Where the equation has only a vapour (liquid)
-volume the trial pressure is too low (high): that keeps a bracket.
+volume the trial pressure is too low (high): that keeps a bracket. An equation that knows its coexistence curve
+beforehand is taken at its word.
 """
 
 from __future__ import annotations
@@ -11,15 +12,18 @@ from functools import lru_cache
 
 import numpy as np
 
-from pathcalc.equations.contract import Array, Model
-from pathcalc.equilibrium import reasons
+from pathcalc.equations.contract import P_STANDARD, Array, Model
+from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.points import Codes, Mask, Saturation
 
 __all__ = [
     "NEAR_CRITICAL",
     "Saturation",
     "difference",
+    "ends",
+    "nearest_T",
     "pressure_range",
+    "quality",
     "saturation_at_T",
     "saturation_at_p",
 ]
@@ -45,6 +49,10 @@ def saturation_at_T(model: Model, T: Array | float) -> Saturation:
     if go.size:
         every = go.size == n
         t = T if every else T[go]
+        line = model.residual.coexistence
+        if line is not None:
+            _, p[go], v_l[go], v_v[go], slope[go] = line.at_T(t)
+            return _clean(T.copy(), p, v_l, v_v, slope, reason)
         found_p = model.residual.saturation_start(t)
         found_p, ok = _solve_p(model, t, found_p)
         reason[go[~ok]] = reasons.NOT_CONVERGED
@@ -71,6 +79,10 @@ def saturation_at_p(model: Model, p: Array | float) -> Saturation:
     go = np.flatnonzero(reason == 0)
     if go.size:
         q = p if go.size == n else p[go]
+        line = model.residual.coexistence
+        if line is not None:
+            T[go], _, v_l[go], v_v[go], slope[go] = line.at_p(q)
+            return _clean(T, p.copy(), v_l, v_v, slope, reason)
         t, ok = _solve_T(model, q)
         reason[go[~ok]] = reasons.NOT_CONVERGED
         T[go] = t
@@ -84,7 +96,9 @@ def _why_not(model: Model, T: Array) -> Codes:
         reason[:] = reasons.NO_COEXISTENCE
         return reason
     with np.errstate(invalid="ignore"):
-        reason[model.T_c * (1.0 - NEAR_CRITICAL) < T] = reasons.NEAR_CRITICAL
+        line = model.residual.coexistence
+        top = model.T_c * (1.0 - NEAR_CRITICAL) if line is None else line.T_top
+        reason[top < T] = reasons.NEAR_CRITICAL
         reason[model.T_c <= T] = reasons.ABOVE_CRITICAL
         reason[model.T_limits[0] > T] = reasons.BELOW_TRIPLE_POINT
         reason[~(T > 0.0)] = reasons.NOT_A_STATE
@@ -105,8 +119,52 @@ def _clean(T: Array, p: Array, v_l: Array, v_v: Array, slope: Array, reason: Cod
 @lru_cache(maxsize=64)
 def pressure_range(model: Model) -> tuple[float, float]:
     """Saturation pressures (Pa) at the lowest temperature and next to the critical point."""
-    ends = saturation_at_T(model, np.array([model.T_limits[0], model.T_c * (1.0 - 1.5 * NEAR_CRITICAL)]))
-    return float(ends.p[0]), float(ends.p[1])
+    both = saturation_at_T(model, np.array([model.T_limits[0], nearest_T(model)]))
+    return float(both.p[0]), float(both.p[1])
+
+
+def nearest_T(model: Model) -> float:
+    """The temperature (K) next to the critical one up to which saturation is looked for."""
+    line = model.residual.coexistence
+    return model.T_c * (1.0 - 1.5 * NEAR_CRITICAL) if line is None else line.T_top
+
+
+def quality(key: str, wanted: Array, liquid: Array, vapour: Array) -> Array:
+    """x from the values of both phases; one within rounding of an end is that end.
+
+    Energies and entropies are rounded to the larger of both, as they count from anywhere; a volume to itself.
+    """
+    size_l, size_v = np.abs(liquid), np.abs(vapour)
+    if key != "v":
+        size_l = size_v = np.maximum(size_l, size_v)
+    x = (wanted - liquid) / (vapour - liquid)
+    at_liquid, at_vapour = np.abs(wanted - liquid) <= 4e-15 * size_l, np.abs(wanted - vapour) <= 4e-15 * size_v
+    return np.asarray(np.where(at_liquid, 0.0, np.where(at_vapour, 1.0, x)))
+
+
+def ends(model: Model, key: str, sat: Saturation) -> tuple[Array, Array]:
+    """``key`` (v, h, s or u, per mole) of saturated liquid and vapour, shape (n,)."""
+    if key == "v":
+        return sat.v_liquid, sat.v_vapour
+    line = model.residual.coexistence
+    if line is None:
+        return quantity.value(model, key, sat.T, sat.v_liquid), quantity.value(model, key, sat.T, sat.v_vapour)
+    with np.errstate(all="ignore"):
+        d10_l, d10_v, d00_l = line.energies(sat.T)
+        _, h0_R, s0_R = model.ideal.terms(sat.T)
+        RT = model.R * sat.T
+        Z_l, Z_v = sat.p * sat.v_liquid / RT, sat.p * sat.v_vapour / RT
+        if key == "s":
+            ratio = np.log(sat.v_vapour / sat.v_liquid)
+            d00_v = d00_l + (Z_l - Z_v) + ratio
+            free = np.log(sat.v_vapour * (P_STANDARD / model.R) / sat.T) + s0_R
+            liquid = model.R * (free - ratio + d10_l - d00_l) + model.s_offset
+            return liquid, model.R * (free + d10_v - d00_v) + model.s_offset
+        common = model.R * h0_R + model.h_offset
+        if key == "u":
+            common = common - RT
+            return common + RT * d10_l, common + RT * d10_v
+        return common + RT * (d10_l + (Z_l - 1.0)), common + RT * (d10_v + (Z_v - 1.0))
 
 
 def difference(model: Model, T: Array, p: Array, v: Array) -> tuple[Array, Array, Array, Array]:

@@ -76,6 +76,7 @@ def basis_of(solution: Solution) -> Basis:
         ideal_gas_formula=formula,
         ideal_gas_parameters=rows,
         remarks=tuple(card.remarks),
+        uncertainty=info.uncertainty,
     )
 
 

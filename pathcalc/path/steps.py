@@ -86,8 +86,8 @@ class Basis:
     """What the fluid was taken to be: its constants, its equation of state, its ideal-gas heat capacity.
 
     ``parameters`` are further rows of the same form as ``constants`` (the equation's own coefficients where
-    there are few enough to print). ``hazards`` are the card's keywords: flammable, toxic, asphyxiant,
-    oxidiser, cryogenic and so on.
+    there are few enough to print). ``uncertainty`` is what the equation's source states, a line a property
+    and region. ``hazards`` are the card's keywords: flammable, toxic, asphyxiant, oxidiser, cryogenic and so on.
     """
 
     substance: str
@@ -105,3 +105,4 @@ class Basis:
     ideal_gas_formula: str = ""
     ideal_gas_parameters: tuple[Constant, ...] = ()
     remarks: tuple[str, ...] = ()
+    uncertainty: tuple[str, ...] = ()

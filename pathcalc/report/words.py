@@ -120,6 +120,7 @@ WORDS: Final[dict[str, str]] = {
     "fluid.datum.liquid-0C": "h = 200 kJ/kg and s = 1 kJ/(kg K) for the saturated liquid at 0 °C",
     "fluid.caption.models": "Models, their ranges and sources",
     "fluid.sources": "Sources of the constants and parameters:",
+    "fluid.uncertainty": "Uncertainty of the equation of state, as far as its source states it:",
     "fluid.equation": "equation of state",
     "fluid.ideal": "ideal-gas heat capacity",
     "fluid.caption.constants": "Constants of the fluid",

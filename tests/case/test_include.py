@@ -154,6 +154,24 @@ def test_a_card_is_fenced_resolved_and_digested(top: Path) -> None:
     assert "(include-outside)" in refused(path)[0]
 
 
+def test_an_equation_beside_a_card_is_digested_and_fenced(top: Path) -> None:
+    write(top / "shared" / "gas.yaml", "substance: gas\n")
+    text = "pathcalc: 1\ntitle: t\nboundary: flow\nstart: {T: 300 K, p: 1 bar}\n"
+    text += "legs: [{name: a, path: isobaric, to: {T: 310 K}}]\n"
+    text += "fluid: {card: ../shared/gas.yaml, equation: reference}\n"
+    path = write(top / "cases" / "card.yaml", text)
+    without = load(path, root=top).sha256
+    (top / "shared" / "reference").mkdir()
+    beside = write(top / "shared" / "reference" / "gas.yaml", "reference: gas\n")
+    case = load(path, root=top)
+    assert [name for name, _ in case.includes] == ["../shared/gas.yaml", "../shared/reference/gas.yaml"]
+    assert case.sha256 != without
+    beside.unlink()
+    beside.symlink_to(write(top.parent / "outside.yaml", "reference: gas\n"))
+    with pytest.raises(InvalidCaseError, match="leads out of the root"):
+        load(path, root=top)
+
+
 def test_a_card_of_an_included_file_is_relative_to_that_file(top: Path) -> None:
     write(top / "shared" / "gas.yaml", "substance: gas\n")
     write(top / "shared" / "site.yaml", SITE.replace("substance: nitrogen", "card: gas.yaml"))

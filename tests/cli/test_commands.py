@@ -158,3 +158,12 @@ def test_completion_offers(cases: Path, words: str, offered: str) -> None:
         [sys.executable, "-m", "pathcalc"], cwd=cases, env=env, capture_output=True, text=True, check=False, timeout=60
     )
     assert offered in [line.partition(",")[2] for line in done.stdout.splitlines()]
+
+
+def test_substances_tells_of_the_reference_equation(run: Run) -> None:
+    card = run("substances", "water").stdout
+    for text in ("Reference equation: IAPWS-95", "why: ", "2 non-analytic", "uncertainty of density", "melting line: "):
+        assert text in card
+    data = json.loads(run("substances", "R134a", "--json").stdout)["reference"]
+    assert [len(table["rows"]) for table in data["terms"]] == [8, 13]
+    assert data["valid"]["T_max"] == 455.0

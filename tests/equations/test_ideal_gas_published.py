@@ -113,12 +113,14 @@ def test_the_default_heat_capacity_is_that_of_the_reference_equation(name: str) 
     """c_p0 in J/(mol K): so the papers' own gas constants are in the right places too.
 
     For R-123 the library scales the polynomial's temperature by 456.831/456.82, two critical temperatures
-    of the same fluid; that alone makes 1.5e-5.
+    of the same fluid; that alone makes 1.5e-5. For ammonia it takes the gas constant of CODATA 2014, 8.3144598
+    J/(mol K), where the check values of the paper need that of 2018.
     """
     item = chosen(name)
     T = inside(item, 9)
     tolerance = 2e-5 if name == "R-123" else 1e-9
-    assert item.cp0_R(T) * R_CODATA == pytest.approx(np.array(library_cp0(name, T)), rel=tolerance)
+    published = np.array(library_cp0(name, T)) * (8.314462618 / 8.3144598 if name == "ammonia" else 1.0)
+    assert item.cp0_R(T) * R_CODATA == pytest.approx(published, rel=tolerance)
 
 
 @pytest.mark.parametrize("name", ["water", "nitrogen", "air", "heptane", "R-134a", "fluorine"])

@@ -109,7 +109,9 @@ def test_the_molar_mass_is_that_of_the_formula(card: Card) -> None:
 def test_constants_agree_with_the_published_list(row: dict[str, str]) -> None:
     card = read_card(row["fluid"].removeprefix("n-") if row["fluid"].startswith("n-") else row["fluid"])
     assert card.molar_mass.value == pytest.approx(float(row["M"]), rel=1e-9)
-    assert card.ideal_gas[0].gas_constant == pytest.approx(float(row["R"]), rel=1e-12)
+    # ammonia: the check values of the paper need CODATA 2018, the list gives the value of 2014
+    gas_constant = 8.314462618 if card.name == "ammonia" else float(row["R"])
+    assert card.ideal_gas[0].gas_constant == pytest.approx(gas_constant, rel=1e-12)
     assert card.T_triple.value == pytest.approx(float(row["T_triple"]), rel=1e-9)
     # isobutane: the paper prints 407.81 K, as does its equation; the list gives 407.817 K
     assert card.T_c.value == pytest.approx(float(row["T_crit"]), rel=2e-5 if card.name == "isobutane" else 1e-9)

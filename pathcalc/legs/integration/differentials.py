@@ -22,6 +22,9 @@ QUANTITIES = ("ds", "du", "dh", "p_dv", "v_dp", "T_ds", "dh_over_T")
 """What is integrated along every curve: J/(mol K), J/mol, J/mol, J/mol, J/mol, J/mol, J/(mol K)."""
 
 _BLOCK = 4096
+_TARGET = 1e-12
+"""Error of the inner integral, in R, below which no more panels are taken."""
+_MOST_PANELS = 64
 
 
 def isochoric_heat_capacity(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
@@ -40,13 +43,31 @@ def isochoric_heat_capacity(model: Model, T: Array, v: Array) -> tuple[Array, Ar
 
 
 def _inner(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
-    volume = v / NODES[:, None]
-    curvature = model.residual.pressure_curvature(T, volume) * volume * volume
-    scale = -T / v
-    kronrod = over_nodes(KRONROD_WEIGHTS[:, None] * curvature) * scale
-    gauss = over_nodes(GAUSS_WEIGHTS[:, None] * curvature) * scale
-    spread = over_nodes(KRONROD_WEIGHTS[:, None] * np.abs(curvature * scale - kronrod))
-    return kronrod, estimate(kronrod, gauss, spread, np.abs(kronrod))
+    """Residual part of c_v and its error: equal panels in density, as many as each point needs."""
+    total, error = _panels(model, T, v, 1)
+    count = 1
+    while count < _MOST_PANELS:
+        open_ = np.flatnonzero(error > _TARGET * model.R)
+        if open_.size == 0:
+            break
+        count *= 2
+        total[open_], error[open_] = _panels(model, T[open_], v[open_], count)
+    return total, error
+
+
+def _panels(model: Model, T: Array, v: Array, count: int) -> tuple[Array, Array]:
+    total, error = np.zeros(T.size), np.zeros(T.size)
+    scale = -T / v / count
+    for panel in range(count):
+        with np.errstate(over="ignore", invalid="ignore"):
+            volume = v * count / (panel + NODES[:, None])
+            curvature = model.residual.pressure_curvature(T, volume) * volume * volume * scale
+        kronrod = over_nodes(KRONROD_WEIGHTS[:, None] * curvature)
+        gauss = over_nodes(GAUSS_WEIGHTS[:, None] * curvature)
+        spread = over_nodes(KRONROD_WEIGHTS[:, None] * np.abs(curvature - kronrod))
+        total = total + kronrod
+        error = error + estimate(kronrod, gauss, spread, np.abs(kronrod))
+    return total, error
 
 
 def differentials(model: Model, nodes: Nodes) -> tuple[Array, Array, Array]:

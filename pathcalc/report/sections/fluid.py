@@ -69,6 +69,8 @@ def section(ctx: Context) -> Section:
     )
     rows = [(Cell(say(words)), *(Cell(t or numbers.ABSENT) for t in texts)) for words, *texts in models]
     blocks.append(ctx.table(say("fluid.caption.models"), columns, rows))
+    if basis.uncertainty:
+        blocks += [Paragraph(say("fluid.uncertainty")), Bullets(tuple(basis.uncertainty))]
     blocks.append(Paragraph(say("fluid.datum", datum=WORDS.get(f"fluid.datum.{datum}", datum))))
     cited = _Cited()
     if basis.constants:

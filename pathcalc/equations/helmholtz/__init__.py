@@ -1,0 +1,1 @@
+"""Multiparameter equations of state explicit in the Helmholtz energy, one file a term form."""
