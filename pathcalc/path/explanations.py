@@ -74,6 +74,11 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
     own = all(segment.own for segment in solved.outcome.segments)
     note = "" if own else "Irreversible: integrated along an equivalent reversible way between the same end states."
     pieces = solution.pieces(solved.leg.name)
+    if solution.path.model.equation == "reference" and any(piece["phase"] == "liquid" for piece in pieces):
+        note = (
+            note + " For cold liquid c_v is that of the fundamental equation: the integral from zero density would run "
+            "through the unstable region."
+        ).strip()
     steps = [
         Step(
             title="Route 1: integral along the path",

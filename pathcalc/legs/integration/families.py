@@ -24,6 +24,9 @@ Lanes = NDArray[np.intp]
 
 NEWTON_LIMIT = 40
 STEP_TOLERANCE = 2.0e-13
+SETTLED = 12
+NOISE = 1e-9
+"""After SETTLED steps a step of this part of T counts as the rounding of the held property."""
 
 
 class Ends(NamedTuple):
@@ -119,13 +122,14 @@ def temperature_at_volume(
     T = guess
     done = np.zeros(T.shape, dtype=bool)
     state = thermal(model, T, v)
-    for _ in range(NEWTON_LIMIT):
+    for iteration in range(NEWTON_LIMIT):
         value, by_T, _by_v = held(state, T, v)
         with np.errstate(divide="ignore", invalid="ignore"):
             step = (target - value) / by_T
         step = np.clip(step, -0.4 * T, 0.6 * T)
         step = np.where(done, 0.0, step)
-        small = ~(np.abs(step) > np.maximum(STEP_TOLERANCE * T, slope_scale / np.abs(by_T)))
+        least = STEP_TOLERANCE if iteration < SETTLED else NOISE
+        small = ~(np.abs(step) > np.maximum(least * T, slope_scale / np.abs(by_T)))
         T = T + step
         done |= small
         if done.all():
@@ -269,7 +273,13 @@ class Polytrope:
     def nodes(self, model: Model, ends: Ends, x: Array, lanes: Lanes) -> Nodes:
         """See :class:`Family`."""
         n = self.exponent[lanes]
-        return _along_volume(model, _pressure, ends, x, self.log_constant[lanes], n, logarithmic=True)
+        nodes = _along_volume(model, _pressure, ends, x, self.log_constant[lanes], n, logarithmic=True)
+        dense = np.flatnonzero((n == 0.0) & _dense(model, ends))
+        if dense.size:
+            level = np.exp(self.log_constant[lanes][dense])
+            by_T = _along_temperature(model, ends.take(dense), x[:, dense], level)
+            nodes = Nodes(*(_replaced(old, dense, new) for old, new in zip(nodes, by_T, strict=True)))
+        return nodes
 
     def mismatch(self, side: Side, lanes: Lanes | None) -> Array:
         """See :class:`Family`."""
@@ -318,6 +328,48 @@ def _along_volume(
     _value, by_T, by_v = held(state, T, v)
     dv = v * span
     return Nodes(T, v, (target_slope - by_v * dv) / by_T, dv)
+
+
+DENSE = 0.75
+"""Isobars of liquids denser than this part of the critical volume are followed by temperature."""
+
+
+def _dense(model: Model, ends: Ends) -> NDArray[np.bool_]:
+    """Lanes whose isobar is followed by temperature: there a pressure fixes the volume sharply but not the
+
+    temperature, and some liquids shrink when they are warmed.
+    """
+    return (np.maximum(ends.v_a, ends.v_b) < DENSE * model.v_c) & (np.abs(np.log(ends.v_b / ends.v_a)) < 0.4)
+
+
+def _replaced(values: Array, columns: Lanes, by: Array) -> Array:
+    changed = np.array(values)
+    changed[:, columns] = by
+    return changed
+
+
+def _along_temperature(model: Model, ends: Ends, x: Array, level: Array) -> Nodes:
+    """An isobar of pressure ``level`` with T linear in x; volumes by Newton in ln v."""
+    span = ends.T_b - ends.T_a
+    T = ends.T_a + x * span
+    slopes = []
+    for T_end, v_end in ((ends.T_a, ends.v_a), (ends.T_b, ends.v_b)):
+        t = model.residual.pressure(T_end, v_end)
+        slopes.append(-t.p_T * span / (t.p_v * v_end))
+    log_v = _hermite(x, np.log(ends.v_a), np.log(ends.v_b), slopes[0], slopes[1])
+    done = np.zeros(T.shape, dtype=bool)
+    for _ in range(NEWTON_LIMIT):
+        v = np.exp(log_v)
+        t = model.residual.pressure(T, v)
+        step = np.where(done, 0.0, np.clip((level - t.p) / (t.p_v * v), -0.1, 0.1))
+        log_v = log_v + step
+        done |= ~(np.abs(step) > 1e-13)
+        if done.all():
+            break
+    v = np.exp(log_v)
+    t = model.residual.pressure(T, v)
+    dT = np.broadcast_to(span, T.shape)
+    return Nodes(T, np.where(done, v, np.nan), dT, -t.p_T / t.p_v * dT)
 
 
 def _hermite(x: Array, start: Array, end: Array, slope_a: Array, slope_b: Array) -> Array:

@@ -58,6 +58,8 @@ NODES, KRONROD_WEIGHTS, GAUSS_WEIGHTS = _unfold()
 
 EPS = float(np.finfo(float).eps)
 MAX_DEPTH = 40
+MAX_PANELS = 48
+"""Panels of a lane still open at once beyond which its integrand is taken to be as smooth as rounding lets it be."""
 
 
 @dataclass(frozen=True)
@@ -104,7 +106,8 @@ def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, 
 
     ``integrand(x, lane)`` takes abscissas (15, k) and lane numbers (k,) and returns values, magnitudes and
     inherited errors, each (quantities, 15, k). ``floors`` (quantities, lanes) is the magnitude below which a
-    result counts as zero. A lane whose error stays above ``rtol`` of its magnitude is marked, not raised.
+    result counts as zero. A lane whose integrand is not finite is marked, not raised; where rounding keeps the error
+    above ``rtol`` of the magnitude, the error says so.
     """
     value = np.zeros((quantities, lanes))
     error = np.zeros((quantities, lanes))
@@ -128,10 +131,10 @@ def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, 
         if scale is None:
             scale = np.maximum(amount, floors)
         good = (bound <= rtol * scale[:, lane]).all(axis=0)
-        last = depth == MAX_DEPTH
+        crowded = np.bincount(lane, minlength=lanes)[lane] > MAX_PANELS
         finite = np.isfinite(bound).all(axis=0)
-        accept = good | last | ~finite
-        converged[lane[accept & ~(good & finite)]] = False
+        accept = good | (depth == MAX_DEPTH) | crowded | ~finite
+        converged[lane[~finite]] = False
         inherited_sum = over_nodes(weights * inherited) * width
         chosen = lane[accept]
         for m in range(quantities):
