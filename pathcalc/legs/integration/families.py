@@ -24,6 +24,8 @@ Lanes = NDArray[np.intp]
 
 NEWTON_LIMIT = 40
 STEP_TOLERANCE = 4.0e-15
+NOISE = 1e-10
+"""Newton steps (of T) that go on below this are rounding of the property."""
 
 
 class Ends(NamedTuple):
@@ -118,6 +120,7 @@ def temperature_at_volume(
     """
     T = guess
     done = np.zeros(T.shape, dtype=bool)
+    step = np.full(T.shape, np.inf)
     state = thermal(model, T, v)
     for _ in range(NEWTON_LIMIT):
         value, by_T, _by_v = held(state, T, v)
@@ -131,6 +134,8 @@ def temperature_at_volume(
         if done.all():
             break
         state = thermal(model, T, v)
+    # p of a liquid by an equation of many terms is rounded to some 1e-15 of rho R T times its cancelling terms
+    done |= np.abs(step) < NOISE * T
     return np.where(done, T, np.nan), thermal(model, T, v)
 
 
