@@ -82,6 +82,10 @@ class SaturationLine(Protocol):
         """The saturation pressure (Pa) alone at ``T`` (K)."""
         ...
 
+    def d2p_dT2(self, T: Array) -> Array:
+        """d²p/dT² along the line (Pa/K2) at ``T`` (K)."""
+        ...
+
     def energies(self, T: Array) -> tuple[Array, Array, Array]:
         """D10 of liquid and vapour and D00 of the liquid at ``T`` (K)."""
         ...

@@ -1,6 +1,6 @@
 """States of given pressure and one of h, s, u by Newton's method in T and ln v at once.
 
-With f = ln p − ln p(T, v) for a gas ((p − p(T, v))/p(T, v) for a liquid) and the missing part of X, one call of the
+With ln p − ln p(T, v) (p − p(T, v) at more than the critical density) and the missing part of X, one call of the
 equation gives a step in both; the start is that of :mod:`pathcalc.equilibrium.start_grid`. Lanes that do not settle
 in a few steps are handed back.
 """
@@ -20,6 +20,8 @@ _SETTLED = 1e-9
 _PREDICTED = 1e-13
 _LARGEST = 0.4
 _MARGIN = 1e-9
+_CLOSE = 1e-5
+"""Larger steps than this are never the last, however fast they shrink."""
 
 
 def at_pressure(
@@ -47,9 +49,8 @@ def at_pressure(
             X, X_T, X_v = quantity.of(key, t, T, v)
             miss = target - X
             stretch = v * t.p_v
-            short = np.where(t.p > 0.0, t.p * np.log(p / t.p), np.nan)
-            short = np.where(np.abs(short) < 0.5 * t.p, short, np.where(side < 0.0, p - t.p, short))
-            short = np.where(short == short, short, p - t.p)
+            # p of a gas is nearly linear in 1/v on logarithmic scales, p of a liquid in v itself
+            short = np.where((v > model.v_c) & (t.p > 0.0), t.p * np.log(p / t.p), p - t.p)
             slope = X_v * v / stretch
             dT = (miss - slope * short) / (X_T - slope * t.p_T)
             dy = (short - t.p_T * dT) / stretch
@@ -58,7 +59,9 @@ def at_pressure(
             T, y = T + scale * dT, y + scale * dy
             ratio = size / last
             stable = t.p_v < 0.0
-            done = stable & ((size < _SETTLED) | ((size * ratio * ratio < _PREDICTED) & (last < 0.05) & (size < 1e-3)))
+            done = stable & (
+                (size < _SETTLED) | ((size * ratio * ratio < _PREDICTED) & (size < _CLOSE) & (last < 0.05))
+            )
             lost = ~(size < np.inf) | (0.2 * low >= T) | (3.0 * high < T)
             leave = done | lost
             if leave.any():

@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.direct import at_pressure
-from pathcalc.equilibrium.iterate import guarded_newton
+from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation
 from pathcalc.equilibrium.saturation import difference, ends, pressure_range, quality, saturation_at_p
 from pathcalc.equilibrium.scan import scanned
@@ -25,6 +25,7 @@ _ON_BRANCH = 1e-6
 """A volume further than this from the stable one at the T found for it lies inside the spinodal."""
 _BESIDE = 3e-3
 _NODES = 24
+_HARDLY_WET = 1e-3
 
 
 def range_reason(model: Model, T: Array) -> NDArray[np.int16]:
@@ -94,7 +95,7 @@ def flash_p(model: Model, p: Array, key: str, target: Array) -> Points:
     todo = np.flatnonzero(good)
     if todo.size and key != "v" and model.residual.coexistence is not None:
         todo = _settled_directly(model, todo, p, key, target, draft, branch, low, high, edge)
-    if todo.size and key == "v" and model.residual.coexistence is not None:
+    if key == "v" and model.residual.coexistence is not None:
         todo = _of_volume(model, todo, p, target, draft, branch, low, high)
     if todo.size:
         _single_phase(model, todo, p, key, target, draft, branch, low, high, start)
@@ -221,26 +222,44 @@ def _of_volume(
     dense = todo[branch[todo] <= 0]
     low[dense] = np.maximum(low[dense], np.minimum(line.T_near(v[dense]) * (1.0 - _BESIDE), high[dense]))
     cold = todo[(branch[todo] <= 0) & (v[todo] < model.v_c) & (low[todo] < 0.7 * model.T_c)]
-    if cold.size == 0:
-        return todo
-    T_low = np.full(cold.size, model.T_limits[0])
-    w = volume_on(model, T_low, p[cold], np.full(cold.size, -1.0))
-    odd = cold[model.residual.pressure(T_low, w).p_T < 0.0]
-    if odd.size == 0:
-        return todo
-    edge = np.minimum(high[odd], np.maximum(1.3 * model.T_limits[0], 0.6 * model.T_c))
+    cold = cold[_contracts(model, p[cold])]
+    if cold.size:
+        first, second, count = _cold_liquid(model, p[cold], v[cold], high[cold])
+        found = cold[count >= 1]
+        draft.put(found, first.x[count >= 1], p[found], v[found])
+        twice = cold[count >= 2]
+        draft.reason[twice] = reasons.TWO_SOLUTIONS
+        draft.T_other[twice], draft.p_other[twice] = second.x[count >= 2], p[twice]
+        todo = todo[~np.isin(todo, found)]
+    # a little vapour makes up for the contraction
+    wet = np.flatnonzero((draft.reason == 0) & (draft.x > 0.0) & (draft.x < _HARDLY_WET))
+    wet = wet[_contracts(model, p[wet])]
+    if wet.size:
+        first, _, count = _cold_liquid(model, p[wet], v[wet], draft.T[wet])
+        both = wet[count >= 1]
+        draft.reason[both] = reasons.TWO_SOLUTIONS
+        draft.T_other[both], draft.p_other[both] = first.x[count >= 1], p[both]
+    return todo
+
+
+def _contracts(model: Model, p: Array) -> Mask:
+    """Where the coldest liquid at ``p`` contracts on heating."""
+    if p.size == 0:
+        return np.zeros(0, dtype=np.bool_)
+    T_low = np.full(p.size, model.T_limits[0])
+    w = volume_on(model, T_low, p, np.full(p.size, -1.0))
+    return np.asarray(model.residual.pressure(T_low, w).p_T < 0.0)
+
+
+def _cold_liquid(model: Model, p: Array, v: Array, top: Array) -> tuple[Root, Root, Array]:
+    """Temperatures below ``top`` at which liquid at ``p`` has the volume ``v``: first, second, their number."""
+    edge = np.minimum(top, np.maximum(1.3 * model.T_limits[0], 0.6 * model.T_c))
     nodes = model.T_limits[0] + np.linspace(0.0, 1.0, _NODES)[:, None] * (edge - model.T_limits[0])
 
     def fun(T: Array, p: Array, wanted: Array) -> Array:
-        return np.log(volume_on(model, T, p, np.full(T.size, -1.0)) / wanted)
+        return np.asarray(np.log(volume_on(model, T, p, np.full(T.size, -1.0)) / wanted))
 
-    first, second, count = scanned(fun, nodes, (p[odd], v[odd]))
-    found = odd[count >= 1]
-    draft.put(found, first.x[count >= 1], p[found], v[found])
-    twice = odd[count >= 2]
-    draft.reason[twice] = reasons.TWO_SOLUTIONS
-    draft.T_other[twice], draft.p_other[twice] = second.x[count >= 2], p[twice]
-    return todo[~np.isin(todo, found)]
+    return scanned(fun, nodes, (p, v))
 
 
 def _single_phase(

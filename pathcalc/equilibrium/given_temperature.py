@@ -20,6 +20,7 @@ from pathcalc.equilibrium.saturation import ends, quality, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
+_BESIDE = 10.0 ** np.arange(-8.0, -1.4, 0.5)
 _P_LEAST = 1.0
 _P_MOST = 1e10
 _P_INVERSE_MOST = 1e-15
@@ -220,6 +221,9 @@ def _scan_isotherm(
         share = np.linspace(0.0, 1.0, _NODES)[:, None]
         wide = np.log(far) - near
         nodes = near + wide * np.where(wide > 3.0, share * share, share)
+        # h turns next to the saturation line as well
+        beside = np.minimum(_BESIDE[:, None], 0.4 * wide)
+        nodes = np.sort(np.concatenate([nodes, near + beside, near + wide - beside]), axis=0)
 
     def fun(x: Array, T: Array, wanted: Array) -> Array:
         return quantity.value(model, key, T, np.exp(x)) - wanted

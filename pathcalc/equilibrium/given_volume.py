@@ -13,11 +13,13 @@ from numpy.typing import NDArray
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
-from pathcalc.equilibrium.iterate import guarded_newton
+from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation, mix
 from pathcalc.equilibrium.saturation import nearest_T, quality, saturation_at_T
+from pathcalc.equilibrium.scan import scanned
 
 _ROUNDING = 1e-11
+_NODES = 60
 _BESIDE = 3e-3
 """How well the saturation line tells the temperature of a volume."""
 
@@ -86,6 +88,9 @@ def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, k
             end = start + 1.5 * model.residual.limits.p_max / slope
             high = np.where(end > start, np.minimum(high, end), high)
     root = guarded_newton(fun, start, low, high, (v, wanted))
+    lost = np.flatnonzero(~root.ok)
+    if lost.size:
+        _search(model, key, v[lost], wanted[lost], root, lost)
     T = np.clip(root.x, T_low, T_high)
     sat = saturation_at_T(model, T)
     with np.errstate(all="ignore"):
@@ -102,6 +107,23 @@ def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, k
         draft.put_mixed(here, Saturation(*(getattr(sat, k)[both] for k in _FIELDS)), x[both])
         draft.v[here] = v[both]
         draft.reason[here] = np.where(root.ok[both], draft.reason[here], reason[both])
+
+
+def _search(model: Model, key: str, v: Array, wanted: Array, root: Root, at: NDArray[np.intp]) -> None:
+    """Goes through the temperatures at which a very dense state has a pressure that the equation covers."""
+    limits = model.residual.limits
+    assert limits is not None
+    T_low, T_high = model.T_limits
+    nodes = T_low * (T_high / T_low) ** np.linspace(0.0, 1.0, _NODES)[:, None] + np.zeros(at.size)
+
+    def fun(T: Array, v: Array, wanted: Array) -> Array:
+        t = thermal(model, T, v)
+        sound = (t.p > 0.0) & (t.p_v < 0.0) & (t.cv > 0.0) & (t.p <= limits.p_max)
+        return np.where(sound, quantity.of(key, t, T, v)[0] - wanted, np.nan)
+
+    first, _, count = scanned(fun, nodes, (v, wanted))
+    good = first.ok & (count == 1)
+    root.x[at[good]], root.ok[at[good]] = first.x[good], True
 
 
 def _below_critical(model: Model, at: NDArray[np.intp], v: Array, key: str, target: Array, draft: Draft) -> None:

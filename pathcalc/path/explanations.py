@@ -76,8 +76,8 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
     pieces = solution.pieces(solved.leg.name)
     if solution.path.model.equation == "reference" and any(piece["phase"] == "liquid" for piece in pieces):
         note = (
-            note + " For cold liquid c_v is that of the fundamental equation: the integral from zero density would run "
-            "through the unstable region."
+            note + " The heat capacity of cold liquid is reached from saturated vapour across the saturation line "
+            "(Clapeyron's relation differentiated): the isotherm itself runs through the unstable region."
         ).strip()
     steps = [
         Step(

@@ -24,7 +24,7 @@ if TYPE_CHECKING:
 BLOCK = 1024
 """Lanes looked up at a time: their coefficients stay in the processor's cache."""
 
-LN_P, LN_RHO_L, LN_RHO_V, SLOPE, D10_L, D10_V, D00_L, STIFF_L, STIFF_V = range(len(FUNCTIONS))
+LN_P, LN_RHO_L, LN_RHO_V, SLOPE, D10_L, D10_V, D00_L, STIFF_L, STIFF_V, SLOPE_THETA = range(len(FUNCTIONS))
 _STATES = (LN_P, LN_RHO_L, LN_RHO_V, SLOPE)
 _FOLDER = "saturation"
 _CUTS = 8
@@ -88,6 +88,14 @@ class SaturationLine:
         """D10 of liquid and vapour and D00 of the liquid at ``T`` (K): the caloric part of saturation."""
         d10_l, d10_v, d00_l = self._values(np.sqrt(1.0 - T / self.T_x), (D10_L, D10_V, D00_L))
         return d10_l, d10_v, d00_l
+
+    def d2p_dT2(self, T: Array) -> Array:
+        """d²p/dT² of the saturation pressure (Pa/K2) at ``T`` (K), by the expansions of S and dS/dθ."""
+        theta = np.sqrt(1.0 - T / self.T_x)
+        ln_p, slope, by_theta = self._values(theta, (LN_P, SLOPE, SLOPE_THETA))
+        bend = by_theta * (-0.5 / (theta * self.T_x))
+        p = self.p_x * np.exp(ln_p)
+        return np.asarray(p / (T * T) * (slope * (slope - 1.0) + T * bend))
 
     def T_near(self, v: Array) -> Array:
         """About the temperature (K) at which one phase has the volume ``v``; ``T_low`` beyond the line."""
@@ -255,7 +263,7 @@ def to_dict(traced: Traced) -> dict[str, object]:
         piece = {}
         for name, row in zip(FUNCTIONS, coefficients, strict=True):
             # stiffness only starts an iteration
-            least = 1e-7 if name.startswith("stiff") else 2e-17
+            least = 1e-6 if name.startswith("stiff") else 1e-14 if name == "slope_theta" else 2e-17
             piece[name] = _rounded(row, least * max(1.0, float(np.max(np.abs(row)))))
         pieces.append(piece)
     return {

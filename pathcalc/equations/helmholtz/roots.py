@@ -35,6 +35,9 @@ SETTLED = 1e-9
 PREDICTED = 1e-13
 """So is one after which convergence of the second order, seen in the last two steps, leaves less than this."""
 
+_CLOSE = 1e-4
+"""Larger steps than this are never the last, however fast they shrink."""
+
 _MURNAGHAN = 10.5
 _BEND = 0.15
 """Beyond this, near the critical point, the parabola is no better than a straight line."""
@@ -188,7 +191,7 @@ def newton(residual: HelmholtzResidual, T: Array, p: Array, sides: Sides) -> Arr
             new = x + step
             held = ~((new >= low) & (new <= high) & (size < 0.7 * last) & (stiff > 0.0))
             ratio = size / last
-            done = ~held & ((size < SETTLED) | ((size * ratio * ratio < PREDICTED) & (last < np.inf)))
+            done = ~held & ((size < SETTLED) | ((size * ratio * ratio < PREDICTED) & (size < _CLOSE) & (last < np.inf)))
             done |= high - low < 4e-16 * np.abs(x)
             if held.any():
                 new = np.where(held, 0.5 * (low + high), new)

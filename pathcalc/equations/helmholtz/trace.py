@@ -29,8 +29,11 @@ Values = Any
 Terms = Callable[[Values, Values], tuple[Values, Values, Values, Values]]
 """(T, ρ) → D00, D01, D02, D10."""
 
-FUNCTIONS = ("ln_p", "ln_rho_l", "ln_rho_v", "slope", "d10_l", "d10_v", "d00_l", "stiff_l", "stiff_v")
-"""What is expanded: logarithms of p/p_x and ρ/ρ_x, d ln p/d ln T, D10 of both phases, D00 of the liquid, K of both."""
+FUNCTIONS = (
+    "ln_p", "ln_rho_l", "ln_rho_v", "slope", "d10_l", "d10_v", "d00_l", "stiff_l", "stiff_v", "slope_theta",
+)  # fmt: skip
+"""What is expanded: logarithms of p/p_x and ρ/ρ_x, S = d ln p/d ln T, D10 of both phases, D00 of the liquid, K of both,
+and dS/dθ."""
 
 _NODES = 16
 _STEP = 0.02
@@ -51,7 +54,7 @@ class NoCoexistence(ArithmeticError):
 
 @dataclass(frozen=True)
 class Traced:
-    """Expansions by pieces: ``edges`` of θ (k + 1,), coefficients (k, 9, degree + 1) on [middle ± half].
+    """Expansions by pieces: ``edges`` of θ (k + 1,), coefficients (k, 10, degree + 1) on [middle ± half].
 
     The first piece has its middle at θ = 0 where ``signed``. ``inverse_*`` expand θ in √ln(p_x/p).
     """
@@ -195,7 +198,7 @@ def _extrapolated(seen: list[tuple[float, Values]], x: float) -> Values:
 
 
 def _functions(curve: _Curve, theta: Values, p_x: Values) -> Values:
-    """The functions (9, n) at θ of either sign; a negative one exchanges the phases."""
+    """The functions (9, n; all but the last) at θ of either sign; a negative one exchanges the phases."""
     liquid, vapour = curve.states(np.abs(theta))
     swap = theta < 0
     T = curve.T(theta)
@@ -236,6 +239,15 @@ def _transform(values: Values) -> Values:
     out = np.stack([(values * np.cos(k * angle)).sum(-1) * 2 / n for k in range(n)], axis=-1)
     out[..., 0] /= 2
     return out
+
+
+def _derivative(c: Values) -> Values:
+    """Coefficients of the derivative of Σ c_k T_k(u) with respect to u, as many as there are of c."""
+    out = np.zeros(c.size + 2, dtype=c.dtype)
+    for k in range(c.size - 1, 0, -1):
+        out[k - 1] = out[k + 1] + 2 * k * c[k]
+    out[0] /= 2
+    return out[: c.size]
 
 
 def roots(n: int, middle: Values, half: Values, dtype: Any) -> Values:
@@ -293,7 +305,7 @@ def trace(
     fitted(0.0 if analytic else 1e-4, theta_max)
     edges = np.array([pieces[0][0], *(p[1] for p in pieces)])
     middle, half = np.array([p[2] for p in pieces]), np.array([p[3] for p in pieces])
-    coefficients = np.stack([p[4] for p in pieces])
+    coefficients = np.stack([np.concatenate([p[4], _derivative(p[4][3])[None] / p[3]]) for p in pieces])
     inverse_edges, inverse = _inverse(edges, middle, half, coefficients[:, 0], tolerance)
     return Traced(float(T_x), float(p_x * R), float(rho_x), edges, middle, half, coefficients, inverse_edges, inverse)
 
