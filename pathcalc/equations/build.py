@@ -115,7 +115,30 @@ def build_model(
     ideal gas at 298.15 K and 1 bar. Raises :class:`UsageError` for an unknown equation or option and
     :class:`pathcalc.errors.InvalidCaseError` where the card lacks a constant the equation needs.
     """
-    built = builder(equation)(card, Options(volume_shift, constants, virial, more or {}))
+    plain = virial is None and ideal is None and not more
+    key = (id(card), equation, heat_capacity, volume_shift, constants)
+    if plain and key in _KEPT:
+        return _KEPT[key][1]
+    model = _built(card, equation, heat_capacity, ideal, Options(volume_shift, constants, virial, more or {}))
+    if plain:
+        if len(_KEPT) >= _MOST_KEPT:
+            _KEPT.clear()
+        _KEPT[key] = (card, model)
+    return model
+
+
+_MOST_KEPT = 64
+_KEPT: dict[tuple[Any, ...], tuple[Card, Model]] = {}
+"""Models built before, by the card they are of (held, so that its identity stays its own) and the options.
+
+A model does not change; what is worked out for it once (starts of the density roots) is then at hand for the next.
+"""
+
+
+def _built(
+    card: Card, equation: str, heat_capacity: str | float | None, ideal: IdealPart | None, options: Options
+) -> Model:
+    built = builder(equation)(card, options)
     part = _ideal_part(card, built, heat_capacity, ideal)
     T_triple = built.T_triple
     if T_triple is None:

@@ -2,7 +2,7 @@
 
 Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
 virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed,
-comparison-without-shift, limit-without-value, unchecked, past-equilibrium.
+comparison-without-shift, limit-without-value, unchecked, past-equilibrium, near-triple-point.
 """
 
 from __future__ import annotations
@@ -11,6 +11,9 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from pathcalc.equations.contract import Model
+from pathcalc.equilibrium.points import PHASES
+
 if TYPE_CHECKING:
     from pathcalc.legs.run import Place
     from pathcalc.path.solution import Solution
@@ -18,6 +21,8 @@ if TYPE_CHECKING:
 Warning_ = dict[str, str]
 
 CUBICS = frozenset({"van-der-waals", "redlich-kwong", "soave", "peng-robinson"})
+NEAR_TRIPLE = 0.03
+"""Relative distance in T above the triple point within which a wet state is warned of (common practice, no source)."""
 NEAR_CRITICAL = 0.05
 """Relative distance in T within which the fluctuations that no classical equation has begin to matter
 
@@ -55,6 +60,7 @@ def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
     low, high = model.T_range
     if not low <= T <= high:
         text = f"T = {T:.6g} K lies outside the stated range of {low:.6g} K to {high:.6g} K; treat it as extrapolated"
+        text += _stated(model, "extremes")
         rows.append(_warning("outside-range", name, text))
     ideal = model.ideal
     if not ideal.T_min <= T <= ideal.T_max:
@@ -69,9 +75,10 @@ def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
     if model.has_dome and abs(T / model.T_c - 1.0) < NEAR_CRITICAL and 0.4 < model.v_c / v < 2.0:
         text = (
             "the state is close to the critical point, where this equation is at its least accurate in "
-            "density and heat capacity"
+            "density and heat capacity" + _stated(model, "critical")
         )
         rows.append(_warning("near-critical", name, text))
+    rows.extend(_near_triple_point(solution, name, place))
     if model.equation in CUBICS and v < model.v_c / 1.5:
         text = (
             "a dense fluid: densities of a cubic equation are commonly off by 5 % to 20 % here, and heat "
@@ -82,6 +89,28 @@ def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
         text = "denser than half the critical density: a virial series cut after C is not to be trusted here"
         rows.append(_warning("virial-dense", name, text))
     return rows
+
+
+def _stated(model: Model, where: str) -> str:
+    """What the source of the equation states of its uncertainty there, to stand after a warning."""
+    found = [text for text in (model.info.uncertainty if model.info is not None else ()) if where in text]
+    return f"; stated uncertainty: {'; '.join(found)}" if found else ""
+
+
+def _near_triple_point(solution: Solution, name: str, place: Place) -> list[Warning_]:
+    """Liquid or wet vapour close above the triple point: a little colder, and a solid forms."""
+    model, card = solution.path.model, solution.path.card
+    phase = PHASES[int(place.points.phase[0])]
+    wet = phase in ("two-phase", "saturated-liquid", "saturated-vapour")
+    T, p = float(place.T[0]), float(place.p[0])
+    if not wet or not model.has_dome or model.T_triple * (1.0 + NEAR_TRIPLE) < T:
+        return []
+    limit = f" and {card.p_triple.value:.4g} Pa" if card.has("p_triple") else ""
+    text = (
+        f"wet fluid at {T:.5g} K and {p:.4g} Pa, close to the triple point at {model.T_triple:.5g} K{limit}: below it "
+        "a solid forms, which this calculation does not describe and which can block pipes and valves"
+    )
+    return [_warning("near-triple-point", name, text)]
 
 
 def _of_equation(solution: Solution) -> list[Warning_]:

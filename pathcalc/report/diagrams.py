@@ -41,6 +41,7 @@ _LOG_FROM = 3.0
 _MOST_POINTS = 160
 
 Array = NDArray[np.float64]
+_QUALITIES = (0.2, 0.4, 0.6, 0.8)
 
 
 class Drawing:
@@ -84,6 +85,23 @@ class Drawing:
         critical = (float(self._scaled(self.x, getattr(dome, f"{self.x}_c"))),
                     float(self._scaled(self.y, getattr(dome, f"{self.y}_c"))))  # fmt: skip
         return sides[0], sides[1], critical
+
+    def _quality_lines(self) -> list[tuple[Array, Array]]:
+        """Lines of constant quality, where a leg passes through the two-phase region."""
+        dome = self.ctx.solution.dome
+        if dome is None or not self._two_phase():
+            return []
+
+        def at(key: str, quality: float) -> Array:
+            if key in "Tp":
+                return np.asarray(self._scaled(key, getattr(dome, key)))
+            low, high = getattr(dome, f"{key}_l"), getattr(dome, f"{key}_v")
+            return np.asarray(self._scaled(key, low + quality * (high - low)))
+
+        return [(at(self.x, quality), at(self.y, quality)) for quality in _QUALITIES]
+
+    def _two_phase(self) -> bool:
+        return any("two" in str(p.phase) for c in self.ctx.solution.curves for p in c.pieces)
 
     def _touches(self) -> bool:
         phases = [str(p.phase) for c in self.ctx.solution.curves for p in c.pieces]
@@ -177,6 +195,8 @@ class Drawing:
             return
         axes.plot(dome[0], dome[1], color=_DOME, linewidth=0.9)
         axes.fill(dome[0], dome[1], color=_DOME, alpha=0.07, linewidth=0)
+        for xs, ys in self._quality_lines():
+            axes.plot(xs, ys, color=_DOME, linewidth=0.45, linestyle=(0, (6, 4)))
         (x0, x1), (y0, y1) = self.limits
         cx, cy = dome[2]
         if x0 < cx < x1 and y0 < cy < y1:
@@ -229,7 +249,15 @@ class Drawing:
             Line2D([], [], label=name, **self._style(i)) for i, name in enumerate(self._names()[: len(self.lines)])
         ]
         if self.dome_shown:
-            handles.append(Line2D([], [], label=say("diagrams.dome"), color=_DOME, linewidth=0.9))
+            handles.append(
+                Line2D(
+                    [],
+                    [],
+                    label=say("diagrams.dome.quality" if self._two_phase() else "diagrams.dome"),
+                    color=_DOME,
+                    linewidth=0.9,
+                )
+            )
         axes.legend(handles=handles, loc="upper left", bbox_to_anchor=(0.0, -(_BOTTOM - 0.06) / _AXES_HEIGHT),
                     ncols=self._legend_columns(), fontsize=8, frameon=False, borderaxespad=0,
                     handlelength=3.4, columnspacing=1.6, labelspacing=0.45, borderpad=0)  # fmt: skip

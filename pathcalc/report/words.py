@@ -231,6 +231,7 @@ WORDS: Final[dict[str, str]] = {
     "diagrams.alt.dome": "The two-phase region is outlined.",
     "diagrams.alt.nodome": "No two-phase region is drawn.",
     "diagrams.dome": "two-phase region",
+    "diagrams.dome.quality": "two-phase region, quality in steps of 0.2",
     # cautions
     "cautions.title": "Cautions",
     "cautions.lead": "General reminders, chosen by the fluid and the states of this case. They are common "

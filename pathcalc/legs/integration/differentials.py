@@ -61,12 +61,12 @@ def _inner(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
     """
     line = model.residual.coexistence
     if line is None:
-        return _in_panels(model, 0.0 * v, T, v, 1)
+        return _in_panels(model, None, T, v, 1)
     value, error = np.empty(T.size), np.empty(T.size)
     dense = (v < model.v_c) & (_ACROSS * model.T_c > T) & (line.T_low <= T)
     across, straight = np.flatnonzero(dense), np.flatnonzero(~dense)
     if straight.size:
-        value[straight], error[straight] = _refined(model, 0.0 * v[straight], T[straight], v[straight])
+        value[straight], error[straight] = _refined(model, None, T[straight], v[straight])
     if across.size:
         value[across], error[across] = _across(model, line, T[across], v[across])
     return value, error
@@ -79,7 +79,7 @@ def _across(model: Model, line: SaturationLine, T: Array, v: Array) -> tuple[Arr
     v' = [p' − (∂p/∂T)_v]/(∂p/∂v)_T of each phase; so c_v,l = c_v,v + T [(p_T v')_v − (p_T v')_l − (p' Δv)'].
     """
     sat = line.at_T(T)
-    vapour, slip = _refined(model, np.zeros(T.size), T, sat.v_vapour)
+    vapour, slip = _refined(model, None, T, sat.v_vapour)
     along = []
     for volume in (sat.v_liquid, sat.v_vapour):
         t = model.residual.pressure(T, volume)
@@ -92,25 +92,26 @@ def _across(model: Model, line: SaturationLine, T: Array, v: Array) -> tuple[Arr
     return saturated + rest, slip + more + _EXPANSION * T * np.abs(bent) + _ROUNDING * model.R
 
 
-def _refined(model: Model, rho: Array, T: Array, v: Array) -> tuple[Array, Array]:
-    """The integral from the density ``rho`` to 1/v, in more panels where it needs them."""
+def _refined(model: Model, rho: Array | None, T: Array, v: Array) -> tuple[Array, Array]:
+    """The integral from the density ``rho`` (None: zero) to 1/v, in more panels where it needs them."""
     value, error = _in_panels(model, rho, T, v, 1)
     for panels in _PANELS:
         rough = np.flatnonzero(error > _WANTED * model.R)
         if rough.size == 0:
             break
-        value[rough], estimated = _in_panels(model, rho[rough], T[rough], v[rough], panels)
+        value[rough], estimated = _in_panels(model, None if rho is None else rho[rough], T[rough], v[rough], panels)
         error[rough] = _CAUTION * estimated
     return value, error
 
 
-def _in_panels(model: Model, rho: Array, T: Array, v: Array, panels: int) -> tuple[Array, Array]:
-    if panels == 1 and not rho.any():
+def _in_panels(model: Model, rho: Array | None, T: Array, v: Array, panels: int) -> tuple[Array, Array]:
+    if panels == 1 and rho is None:
         return _panel(model, T, v / NODES[:, None], -T / v)
     total, slip = np.zeros(T.size), np.zeros(T.size)
-    width = (1.0 / v - rho) / panels
+    first = np.zeros(T.size) if rho is None else rho
+    width = (1.0 / v - first) / panels
     for panel in range(panels):
-        volume = 1.0 / (rho + width * (panel + NODES[:, None]))
+        volume = 1.0 / (first + width * (panel + NODES[:, None]))
         kronrod, error = _panel(model, T, volume, -T * width)
         total += kronrod
         slip += error

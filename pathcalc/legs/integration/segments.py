@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from typing import Literal
 
 import numpy as np
@@ -81,8 +82,13 @@ class BoundaryOf:
     def line(self) -> SaturationLine:
         """The table; computed once."""
         if self._line is None:
-            self._line = SaturationLine(self._model)
+            self._line = _line_of(self._model)
         return self._line
+
+
+@lru_cache(maxsize=16)
+def _line_of(model: Model) -> SaturationLine:
+    return SaturationLine(model)
 
 
 def integrate_segments(model: Model, boundary: BoundaryOf, segments: list[Segment], lanes: int) -> Integrals:
