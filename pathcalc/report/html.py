@@ -30,6 +30,7 @@ def environment() -> Environment:
     env.filters["lines"] = maths.mathml_lines
     env.filters["result"] = maths.result_html
     env.filters["symbol"] = symbol
+    env.filters["figure"] = maths.figure
     env.globals["say"] = say
     return env
 

@@ -27,6 +27,7 @@ def environment() -> Environment:
     env.filters["math"] = maths.inline_markdown
     env.filters["display"] = maths.display_markdown
     env.filters["result"] = maths.result_markdown
+    env.filters["figure"] = maths.figure
     env.filters["cell"] = cell
     env.filters["head"] = head
     env.globals["say"] = say
