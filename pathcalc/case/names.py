@@ -8,6 +8,12 @@ EQUATIONS = ("ideal-gas", "van-der-waals", "redlich-kwong", "soave", "peng-robin
 EQUATIONS_LATER = ("compressed", "measured")
 CUBICS = ("van-der-waals", "redlich-kwong", "soave", "peng-robinson")
 WITHOUT_SATURATION = ("ideal-gas", "virial")
+WITH_SATURATION = (*CUBICS, "reference")
+# words for quantities that people write where a symbol is wanted
+QUANTITY_WORDS = {
+    "temperature": "T", "pressure": "p", "volume": "v", "density": "rho", "energy": "u", "enthalpy": "h",
+    "entropy": "s", "quality": "x",
+}  # fmt: skip
 DATUMS = ("ideal-gas-298", "triple-liquid", "boiling-liquid", "liquid-0C")
 SATURATION_DATUMS = ("triple-liquid", "boiling-liquid", "liquid-0C")
 PATHS_LATER: tuple[str, ...] = ()
@@ -55,7 +61,7 @@ AMOUNTS = {"flow": ("mass-flow", "mole-flow"), "closed": ("mass", "mole", "volum
 
 UNIT_KINDS = {
     "T": ("temperature",), "p": ("pressure",), "energy": ("energy",), "mass": ("mass",), "time": ("time",),
-    "volume": ("volume",), "amount": ("mole",),
+    "volume": ("volume",), "amount": ("mole",), "power": ("power",),
 }  # fmt: skip
 UNIT_PRESETS = {
     "si": {"T": "K", "p": "Pa", "energy": "J", "mass": "kg", "time": "s", "volume": "m3", "amount": "mol"},

@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import contextlib
+from typing import TYPE_CHECKING
+
 import click
 
 from pathcalc.cli.findings import FORMATS, rendered
@@ -9,7 +12,10 @@ from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import PATH, Input, gather, root_option
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, loudness, write_utf8
-from pathcalc.errors import Finding, InvalidCaseError, PathcalcError
+from pathcalc.errors import Finding, InvalidCaseError, NoSolutionError, PathcalcError
+
+if TYPE_CHECKING:
+    from pathcalc.case import Case
 
 
 @click.command("check", short_help=COMMANDS["check"])
@@ -43,7 +49,9 @@ def command(talk: Talk, paths: tuple[str, ...], form: str, root: str | None) -> 
 
 def _check(item: Input, root: str | None, talk: Talk) -> tuple[int, list[Finding]]:
     try:
-        item.load(root)
+        case = item.load(root)
+        if case.fluid.card_path is not None:
+            _check_card(case)
     except InvalidCaseError as error:
         errors = any(finding.severity == "error" for finding in error.findings)
         return (error.exit_code if errors else 0), error.findings
@@ -54,6 +62,14 @@ def _check(item: Input, root: str | None, talk: Talk) -> tuple[int, list[Finding
     except Exception as error:
         return report_error(error, talk, item.shown), []
     return 0, []
+
+
+def _check_card(case: Case) -> None:
+    """Read the user's own card and put up its equation: whatever is wrong with them is wrong without solving."""
+    from pathcalc.path.fluid import card_of, model_of
+
+    with contextlib.suppress(NoSolutionError):
+        model_of(case, card_of(case))
 
 
 def _tally(valid: int, total: int) -> str:

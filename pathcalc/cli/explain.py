@@ -43,14 +43,15 @@ def _addresses(context: click.Context, parameter: click.Parameter, incomplete: s
 
 @click.command("explain", short_help=COMMANDS["explain"])
 @click.argument("case", type=PATH)
-@click.argument("quantity", shell_complete=_addresses)
+@click.argument("quantity", required=False, default="", shell_complete=_addresses)
 @root_option
 @loudness
 @click.pass_obj
 def command(talk: Talk, case: str, quantity: str, root: str | None) -> int:
     """Show how one number of a case came about: formula, numbers put in, result, source.
 
-    QUANTITY is an address such as start.h, "first stage.work", "cooler.delta.s" or totals.work.
+    QUANTITY is an address such as start.h, "first stage.work", "cooler.delta.s", totals.work or cycle.cop_cooling;
+    without it the addresses that have worked steps are listed.
     """
     from pathcalc.path.solution import solve
 
@@ -62,7 +63,7 @@ def command(talk: Talk, case: str, quantity: str, root: str | None) -> int:
         file, line, column = place_of(loaded, error.trouble.at) or (item.shown, 1, 1)
         talk.line(str(Finding(file, line, column, str(error.trouble).rpartition(" (")[0], error.trouble.code)))
         return error.exit_code
-    write(explained(solution, quantity.strip()))
+    write(explained(solution, quantity.strip()) if quantity.strip() else "\n".join(solution.explanations))
     return 0
 
 

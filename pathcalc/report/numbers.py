@@ -112,6 +112,11 @@ def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DI
     return min(6, max(0, digits - 1 - magnitude(largest, digits)))
 
 
+def decimals_within(error: float) -> int:
+    """Decimals of which the last is not smaller than ``error``; none at all for an error of one and more."""
+    return max(0, math.floor(-math.log10(error))) if error > 0.0 else 6
+
+
 def align(texts: Iterable[str]) -> list[Number]:
     """Give each text the invisible tail that lines its decimal point up with the others of the column."""
     items = list(texts)
