@@ -12,7 +12,9 @@ from pathcalc.errors import UsageError
 
 if TYPE_CHECKING:
     from pathcalc.case import Case
+    from pathcalc.cli.talk import Talk
     from pathcalc.path.solution import Solution
+    from pathcalc.words import Catalogue
 
 FORMATS = ("html", "md")
 DEFAULT_FOLDER = "reports"
@@ -25,6 +27,7 @@ class Reports:
     formats: tuple[str, ...]
     folder: Path
     taken: dict[str, str] = field(default_factory=dict)
+    words: Catalogue | None = None
 
     @classmethod
     def asked(cls, formats: str | None, output: str | None) -> Reports:
@@ -74,8 +77,23 @@ class Reports:
         name = PurePosixPath(case.id)
         folder = self.folder.joinpath(*name.parts[:-1])
         try:
-            places = write_reports(solution, set(self.formats), folder, name.name)
+            places = write_reports(solution, set(self.formats), folder, name.name, words=self.words)
         except OSError as error:
             return [], f"cannot write reports into {folder.as_posix()}: {error.strerror or error}"
         texts = {place.suffix: place.as_posix() for place in places if place.suffix in (".html", ".md")}
         return [texts[f".{form}"] for form in self.formats if f".{form}" in texts], ""
+
+
+def asked_words(file: str | None, reports: Reports, talk: Talk) -> Catalogue | None:
+    """The catalogue of the option ``--words``; says how many of its texts are English. UsageError if it is none."""
+    if file is None:
+        return None
+    if not reports.formats:
+        raise UsageError("--words is for reports; give --report html,md, or a folder with -o")
+    from pathcalc.words import catalogue
+
+    words = catalogue(file)
+    if words.missing:
+        share = f"{words.missing} of {len(words.texts)} texts"
+        talk.line(f"{file}: {share} {'is' if words.missing == 1 else 'are'} missing and stay English")
+    return words

@@ -8,7 +8,7 @@ import click
 
 from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import PATH, Input, Inputs, gather, place_of, root_option
-from pathcalc.cli.reports import Reports
+from pathcalc.cli.reports import Reports, asked_words
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, json_text, loudness, write_utf8
 from pathcalc.errors import Finding, NoSolutionError
@@ -33,11 +33,18 @@ OUTCOMES = {
 @click.option("--json", "as_json", is_flag=True, help="Print the results as JSON, in SI units.")
 @click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, or html,md.")
 @click.option("-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/.")
+@click.option("--words", type=click.Path(), metavar="FILE", help="Catalogue (TOML) of another language of the reports.")
 @root_option
 @loudness
 @click.pass_obj
 def command(
-    talk: Talk, paths: tuple[str, ...], as_json: bool, formats: str | None, output: str | None, root: str | None
+    talk: Talk,
+    paths: tuple[str, ...],
+    as_json: bool,
+    formats: str | None,
+    output: str | None,
+    words: str | None,
+    root: str | None,
 ) -> int:
     """Solve cases: a summary or JSON on standard output, and reports.
 
@@ -46,6 +53,7 @@ def command(
     called as the case's id, the folders of the id kept. -o alone writes html,md.
     """
     reports = Reports.asked(formats, output)
+    reports.words = asked_words(words, reports, talk)
     inputs = gather(paths, talk)
     codes = Solving(talk, root, as_json, reports).all(inputs)
     if inputs.many:
@@ -150,14 +158,12 @@ def _missed(solution: Solution, result: dict[str, Any]) -> list[str]:
             bound = f"at least {ctx.brief(kind, row['min'])}" if low else f"at most {ctx.brief(kind, row['max'])}"
             lines.append(plain(f"limit missed: {row['quantity']} = {ctx.measure(kind, row['value'])}, not {bound}"))
     if not all(row["passed"] for row in result["checks"]):
-        from pathcalc.path.checks import MEANING
+        from pathcalc.path.checks import meaning
     for row in result["checks"]:
         if not row["passed"]:
             at = f" at {row['at']}" if row["at"] else ""
-            meaning = MEANING.get(row["name"], "")
-            lines.append(
-                f"check failed: {row['name']}{at}: {row['value']:.3g} against {row['tolerance']:.2g}; {meaning}"
-            )
+            figures = f"{row['value']:.3g} against {row['tolerance']:.2g}"
+            lines.append(f"check failed: {row['name']}{at}: {figures}; {meaning(row['name'])}")
     return lines
 
 

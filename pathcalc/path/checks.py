@@ -18,26 +18,39 @@ from pathcalc.legs.run import Place, place_of
 from pathcalc.legs.ways import isochore, isotherm
 from pathcalc.path.solver import CYCLE_TOLERANCE, SolvedLeg
 from pathcalc.path.values import closure_of, rounding_of, scales
+from pathcalc.words import say
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
 
 Check = dict[str, Any]
 
-MEANING = {
-    "closure": "the two routes to the changes of s, u and h differ by more than their error",
-    "first law": "heat and work do not add up to the change of energy",
-    "heat as integral of T ds": "the heat of a reversible leg is not the integral of T ds",
-    "second law": "entropy, J/(kg K), would be destroyed: heat would flow from a colder to a warmer body, or a machine "
-    "would be better than reversible; look at the reservoir and the target of the leg",
-    "heat flows to the colder body": "the fluid passes the temperature of the reservoir (by so many K), so that part "
-    "of the heat would flow from the colder to the warmer body; look at the temperature of the reservoir",
-    "exergy balance": "exergy brought in less exergy destroyed is not the change of exergy",
-    "path independence": "another way between the same states gives other changes of s, u and h",
-    "cycle closes": "the last state is not the first one",
-    "energy balance of the path": "heat and work of all legs do not add up to the change of energy",
-}
-"""What it means when a check fails, for messages."""
+NAMES = (
+    "closure",
+    "first law",
+    "heat as integral of T ds",
+    "second law",
+    "heat flows to the colder body",
+    "exergy balance",
+    "path independence",
+    "cycle closes",
+    "energy balance of the path",
+)
+"""The checks by name, as results have them."""
+
+
+def name_in_words(name: str) -> str:
+    """The name of a check in the words in force; the name itself where it is none of ours."""
+    return say(f"check.{_key(name)}") if name in NAMES else name
+
+
+def meaning(name: str) -> str:
+    """What it means when a check fails, for messages; empty where it is none of ours."""
+    return say(f"meaning.{_key(name)}") if name in NAMES else ""
+
+
+def _key(name: str) -> str:
+    return name.replace(" ", "-")
 
 
 def _row(name: str, at: str, value: float, tolerance: float, passed: bool | None = None) -> Check:

@@ -14,12 +14,11 @@ import numpy as np
 
 from pathcalc.path.maths import number, shown, signed, with_unit
 from pathcalc.path.steps import Step
+from pathcalc.words import say
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
     from pathcalc.path.solver import SolvedLeg
-
-VAN_DER_WAALS = "J. D. van der Waals, thesis, Leiden 1873; closed forms derived in the module's text"
 
 
 def closed_form_steps(solution: Solution, solved: SolvedLeg, what: str) -> list[Step]:
@@ -57,7 +56,7 @@ def _ideal_parts(solution: Solution, solved: SolvedLeg) -> tuple[float, float]:
 
 
 def _source(solution: Solution) -> str:
-    return VAN_DER_WAALS if solution.path.model.equation == "van-der-waals" else "ideal gas, p v = R T"
+    return say("source.van-der-waals" if solution.path.model.equation == "van-der-waals" else "source.ideal-gas")
 
 
 def _entropy(solution: Solution, solved: SolvedLeg) -> Step:
@@ -71,7 +70,7 @@ def _entropy(solution: Solution, solved: SolvedLeg) -> Step:
     else:
         top, bottom = number(v2), number(v1)
     return Step(
-        title="Closed form of this equation",
+        title=say("step.closed-form"),
         formula=rf"\Delta s=\int_{{T_1}}^{{T_2}}\frac{{c_v^0}}{{T}}\,\mathrm{{d}}T+R\ln{ratio}",
         numbers=rf"{shown(thermal, 'entropy')}+{shown(R, 'entropy')}\times\ln\frac{{{top}}}{{{bottom}}}",
         result=with_unit(thermal + R * float(np.log((v2 - b) / (v1 - b))), "entropy"),
@@ -89,7 +88,7 @@ def _energy(solution: Solution, solved: SolvedLeg) -> Step:
         formula += r"-a_c\left(\frac{1}{v_2}-\frac{1}{v_1}\right)"
         numbers += rf"-{number(a * 1e-3)}\times\left(\frac{{1}}{{{number(v2)}}}-\frac{{1}}{{{number(v1)}}}\right)"
     return Step(
-        title="Closed form of this equation",
+        title=say("step.closed-form"),
         formula=formula,
         numbers=numbers,
         result=with_unit(caloric - a * (1.0 / v2 - 1.0 / v1), "energy"),
@@ -119,6 +118,4 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
             formula += r"+p_2\,v_2-p_1\,v_1"
             numbers += rf"+{shown(p2, 'p')}\times {number(v2)}-{signed(p1 * 1e-3)}\times {number(v1)}"
             value += p2 * v2 - p1 * v1
-    return [
-        Step("Closed form of this equation", formula, numbers, with_unit(value, "energy"), source=_source(solution))
-    ]
+    return [Step(say("step.closed-form"), formula, numbers, with_unit(value, "energy"), source=_source(solution))]

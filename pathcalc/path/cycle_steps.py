@@ -6,14 +6,15 @@ from typing import TYPE_CHECKING
 
 from pathcalc.path.maths import bracketed, number, shown
 from pathcalc.path.steps import Step
+from pathcalc.words import say
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
 
 _FORMULAS = {
-    "thermal_efficiency": ("Thermal efficiency", r"\eta=\frac{-\sum w}{\sum_{q>0} q}"),
-    "cop_cooling": ("Coefficient of performance, cooling", r"\varepsilon=\frac{\sum_{q>0} q}{\sum w}"),
-    "cop_heating": ("Coefficient of performance, heating", r"\varepsilon=\frac{-\sum_{q<0} q}{\sum w}"),
+    "thermal_efficiency": r"\eta=\frac{-\sum w}{\sum_{q>0} q}",
+    "cop_cooling": r"\varepsilon=\frac{\sum_{q>0} q}{\sum w}",
+    "cop_heating": r"\varepsilon=\frac{-\sum_{q<0} q}{\sum w}",
 }
 
 
@@ -32,12 +33,13 @@ def cycle_steps(solution: Solution) -> dict[str, list[Step]]:
         "cop_heating": (rf"-\left({_sum(solution, given)}\right)", work),
     }
     found: dict[str, list[Step]] = {}
-    for key, (title, formula) in _FORMULAS.items():
+    for key, formula in _FORMULAS.items():
         value = solution.cycle[key]
         if value != value:
             continue
         above, below = sums[key]
-        note = f"Work: {', '.join(worked)}. Heat taken in: {', '.join(taken)}; given off: {', '.join(given)}."
+        note = say("note.cycle", work=", ".join(worked), taken=", ".join(taken), given=", ".join(given))
+        title = say(f"step.cycle.{key}")
         found[f"cycle.{key}"] = [Step(title, formula, rf"\frac{{{above}}}{{{below}}}", number(value), note=note)]
     return found
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from importlib import import_module
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from pathcalc.path.closed_forms import closed_form_steps
 from pathcalc.path.cycle_steps import cycle_steps
@@ -11,16 +11,13 @@ from pathcalc.path.hand_steps import hand_steps
 from pathcalc.path.maths import bracketed, number, rough, shown, signed, uncertain, with_unit
 from pathcalc.path.state_steps import exergy_steps, start_steps, state_steps
 from pathcalc.path.steps import Step
-from pathcalc.path.streams import OTHER_NOTE, share_numbers, stream_steps
+from pathcalc.path.streams import share_numbers, stream_steps
+from pathcalc.words import say, say_of
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
     from pathcalc.path.solver import SolvedLeg
 
-MAXWELL = (
-    "Maxwell relation of the Helmholtz energy, (∂s/∂v)_T = (∂p/∂T)_v: H. B. Callen, Thermodynamics and an Introduction "
-    "to Thermostatistics, 2nd edition (Wiley 1985), chapter 7"
-)
 GENERAL_DS = (
     r"\Delta s=\int\left[\frac{c_v}{T}\,\mathrm{d}T+\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v\right]"
 )
@@ -34,13 +31,6 @@ IN_DOME = {
     "h": r"\Delta h=\int T\,\frac{\mathrm{d}p_\mathrm{sat}}{\mathrm{d}T}\,\mathrm{d}v",
 }
 """At constant temperature and pressure between the two phases."""
-SPLIT = "The first integral runs over the stretches of one phase, the second over the others."
-CLAPEYRON = " A two-phase piece by Clapeyron: the change of s is the slope of the vapour pressure times that of v."
-ALONG = (
-    "In the two-phase region the change is taken at constant temperature to the boundary (Clapeyron), along the "
-    "boundary by the differential of one phase, and back (Clapeyron): the integrand above holds for the stretches of "
-    "one phase."
-)
 KINDS = {"T": "T", "p": "p", "v": "v", "u": "energy", "h": "energy", "s": "entropy", "a": "energy", "g": "energy"}
 
 
@@ -92,35 +82,32 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
         rf"v_1={number(a.v)},\ v_2={number(b.v)}\ \mathrm{{m^3/kg}}"
     )
     own = all(segment.own for segment in solved.outcome.segments)
-    note = "" if own else "Irreversible: integrated along an equivalent reversible way between the same end states."
+    notes = [] if own else [say("note.equivalent")]
     pieces = solution.pieces(solved.leg.name)
     if (
         key == "s"
         and solution.path.model.equation == "reference"
         and any(piece["phase"] == "liquid" for piece in pieces)
     ):
-        note = (
-            note + " The heat capacity of cold liquid is reached from saturated vapour across the saturation line "
-            "(Clapeyron's relation differentiated): the isotherm itself runs through the unstable region."
-        ).strip()
+        notes.append(say("note.cold-liquid"))
     wet = [piece["phase"] == "two-phase" for piece in pieces]
     if any(wet):
         level = all(piece.family.level_in_dome for piece in solved.integrals.pieces if piece.in_dome)
         special = IN_DOME[key] if all(wet) and level else None
         if not level:
-            note = f"{note} {ALONG}".strip()
+            notes.append(say("note.along"))
         elif not all(wet):
             one_phase = general.partition("=")[2]
             general = rf"{general.partition('=')[0]}={one_phase}+{IN_DOME[key].partition('=')[2]}"
-            note = f"{note} {SPLIT}".strip()
+            notes.append(say("note.split"))
     steps = [
         Step(
-            title="Route 1: integral along the path",
+            title=say("step.route1"),
             formula=special or general,
             numbers=numbers,
             result=uncertain(leg["delta"][key], error, kind),
-            source=MAXWELL,
-            note=note,
+            source=say("source.maxwell"),
+            note=" ".join(notes),
         )
     ]
     if len(pieces) > 1 and key in ("s", "h"):
@@ -129,26 +116,29 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
         parts = [part if abs(part) > least else 0.0 for part in parts]
         steps.append(
             Step(
-                title="Pieces of the path, cut at phase boundaries and corners",
+                title=say("step.pieces"),
                 formula=rf"\Delta {key}=\sum_i \Delta {key}_i",
                 numbers="+".join(bracketed(part, kind) for part in parts),
                 result=with_unit(sum(parts), kind),
-                note=f"In order: {', '.join(piece['phase'] for piece in pieces)}." + (CLAPEYRON if any(wet) else ""),
+                note=" ".join([_order_of(pieces), *([say("note.clapeyron")] if any(wet) else [])]),
             )
         )
     return steps
+
+
+def _order_of(pieces: list[dict[str, Any]]) -> str:
+    return say("note.pieces", phases=", ".join(say_of("phase", piece["phase"]) for piece in pieces))
 
 
 def _route_2(solution: Solution, solved: SolvedLeg, key: str) -> Step:
     a, b = solution.states[solved.inlet_name], solution.states[solved.leg.name]
     kind, leg = KINDS[key], solution.legs[solved.leg.name]
     return Step(
-        title="Route 2: difference of the state function",
+        title=say("step.route2"),
         formula=rf"\Delta {key}={key}_2-{key}_1",
         numbers=rf"{shown(b[key], kind)}-{bracketed(a[key], kind)}",
         result=with_unit(b[key] - a[key], kind),
-        note=f"Closure of the leg (largest relative difference of the two routes over s, u and h): "
-        f"{rough(leg['maxwell']['closure'])}; error estimate {rough(leg['maxwell']['error'])}.",
+        note=say("note.closure", closure=rough(leg["maxwell"]["closure"]), error=rough(leg["maxwell"]["error"])),
     )
 
 
@@ -168,7 +158,7 @@ def _energy(solution: Solution, solved: SolvedLeg, key: str) -> list[Step]:
     leg = solution.legs[solved.leg.name]
     a, b = solution.states[solved.inlet_name], solution.states[solved.leg.name]
     step = Step(
-        title="Enthalpy from internal energy",
+        title=say("step.enthalpy-change"),
         formula=r"\Delta h=\Delta u+p_2\,v_2-p_1\,v_1",
         numbers=rf"{shown(leg['delta']['u'], 'energy')}+{shown(b.p, 'p')}\times {number(b.v)}"
         rf"-{shown(a.p, 'p')}\times {number(a.v)}",
@@ -182,23 +172,23 @@ def _free_energy(solution: Solution, solved: SolvedLeg, key: str, base: str) -> 
     delta = solution.legs[solved.leg.name]["delta"]
     a, b = solution.states[solved.inlet_name], solution.states[solved.leg.name]
     isothermal = abs(b.T / a.T - 1.0) < 1e-12
-    symbol = {"a": "Helmholtz energy", "g": "Gibbs energy"}[key]
+    energy = say("step.helmholtz" if key == "a" else "step.gibbs")
     if isothermal:
         formula = rf"\Delta {key}=\Delta {base}-T\,\Delta s"
         numbers = rf"{shown(delta[base], 'energy')}-{number(a.T)}\times {bracketed(delta['s'], 'entropy')}"
-        note = f"At constant temperature the change of {symbol} is the least work."
+        note = say("note.least-work", energy=energy)
         if key == "g" and not solution.path.setting.flow:
-            note = "At constant temperature the change of Gibbs energy is the least shaft work of steady flow."
+            note = say("note.least-shaft-work")
         if key == "a" and solution.path.setting.flow:
-            note = "At constant temperature the change of Helmholtz energy is the least work on a closed mass."
+            note = say("note.least-closed-work")
     else:
         formula = rf"\Delta {key}=\Delta {base}-\left(T_2\,s_2-T_1\,s_1\right)"
         numbers = (
             rf"{shown(delta[base], 'energy')}-\left({number(b.T)}\times {bracketed(b.s, 'entropy')}"
             rf"-{number(a.T)}\times {bracketed(a.s, 'entropy')}\right)"
         )
-        note = "Between different temperatures this depends on the datum of entropy; do not read it as work."
-    return [Step(symbol, formula, numbers, with_unit(delta[key], "energy"), note=note)]
+        note = say("note.datum")
+    return [Step(energy, formula, numbers, with_unit(delta[key], "energy"), note=note)]
 
 
 def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
@@ -216,7 +206,7 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
         eta = number(efficiency.value)
         steps.append(
             Step(
-                title="Reversible leg to the same end pressure",
+                title=say("step.reversible-work"),
                 formula=rf"w_s={energy}_{{2s}}-{energy}_1\quad(s_{{2s}}=s_1)",
                 numbers=rf"{shown(ideal, 'energy')}-{bracketed(a[energy], 'energy')}",
                 result=with_unit(change, "energy"),
@@ -228,12 +218,12 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
             if change > 0.0
             else rf"{eta}\times {bracketed(change, 'energy')}"
         )
-        title = "Isentropic efficiency"
+        title = say("step.isentropic")
     elif efficiency is not None:
         ideal = float(solved.integrals["v_dp"][0]) / model_M
         steps.append(
             Step(
-                title="Reversible isothermal work",
+                title=say("step.reversible-isothermal"),
                 formula=r"w_\mathrm{rev}=\int v\,\mathrm{d}p=\Delta g",
                 result=with_unit(ideal, "energy"),
             )
@@ -245,13 +235,13 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
             if ideal > 0.0
             else rf"{eta}\times {bracketed(ideal, 'energy')}"
         )
-        title = "Isothermal efficiency"
+        title = say("step.isothermal")
     elif against is not None:
         p_ext = against.value
-        title, formula = "Work against a constant pressure", r"w=-p_\mathrm{ext}\,(v_2-v_1)"
+        title, formula = say("step.against"), r"w=-p_\mathrm{ext}\,(v_2-v_1)"
         numbers = rf"-{shown(p_ext, 'p')}\times({number(b.v)}-{number(a.v)})"
     else:
-        title = "Work into the fluid"
+        title = say("step.work")
         formula = formulas["work_flow" if flow else "work_closed"]
         numbers = ""
         if solved.leg.path == "adiabatic":
@@ -261,23 +251,22 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
             numbers = rf"-{shown(a.p, 'p')}\times({number(b.v)}-{number(a.v)})"
         elif solved.leg.path == "isochoric" and flow:
             numbers = rf"{number(a.v)}\times({shown(b.p, 'p')}-{shown(a.p, 'p')})"
-    note = ""
     poly = getattr(solved.leg, "polytropic_efficiency", None)
     if poly is not None:
         sense = r"\frac{1}{\eta_p}" if b.p >= a.p else r"\eta_p"
         steps.append(
             Step(
-                title="Polytropic efficiency",
+                title=say("step.polytropic"),
                 formula=rf"\mathrm{{d}}h={sense}\,v\,\mathrm{{d}}p",
                 numbers=rf"\eta_p={number(poly.value)}",
-                note="Every small step of the machine has this efficiency; solved along ln p by collocation.",
+                note=say("note.polytropic"),
             )
         )
         push = float(solved.integrals["v_dp"][0]) / model_M
         up = b.p >= a.p
         steps.append(
             Step(
-                title="The same by the integral of v dp along the way",
+                title=say("step.polytropic-integral"),
                 formula=rf"w={sense}\int v\,\mathrm{{d}}p",
                 numbers=rf"\frac{{{shown(push, 'energy')}}}{{{number(poly.value)}}}"
                 if up
@@ -285,19 +274,18 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
                 result=with_unit(push / poly.value if up else push * poly.value, "energy"),
             )
         )
-    steps.append(Step(title, formula, numbers, with_unit(leg.work, "energy"), note=note))
+    steps.append(Step(title, formula, numbers, with_unit(leg.work, "energy")))
     return [*steps, *closed_form_steps(solution, solved, "work")]
 
 
 def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
     flow, leg = solution.path.setting.flow, solution.legs[solved.leg.name]
     if solved.leg.path in ("adiabatic", "throttling", "free-expansion", "separation", "mixing"):
-        return [Step("Heat", r"q=0", "", "0", note="The leg is adiabatic.")]
+        return [Step(say("step.heat"), r"q=0", "", "0", note=say("note.adiabatic"))]
     base = "h" if flow else "u"
-    law = "of a flow through a device" if flow else "of a closed mass"
     steps = [
         Step(
-            title=f"First law {law}",
+            title=say("step.first-law.flow" if flow else "step.first-law.closed"),
             formula=rf"q=\Delta {base}-w",
             numbers=rf"{shown(leg['delta'][base], 'energy')}-{bracketed(leg.work, 'energy')}",
             result=with_unit(leg.heat, "energy"),
@@ -307,7 +295,7 @@ def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
         integral = float(solved.integrals["T_ds"][0]) / solution.path.model.M
         steps.append(
             Step(
-                title="Second way: the heat of a reversible leg",
+                title=say("step.heat-integral"),
                 formula=r"q=\int T\,\mathrm{d}s",
                 result=with_unit(integral, "energy"),
             )
@@ -321,7 +309,7 @@ def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
     if reservoir is not None:
         return [
             Step(
-                title="Entropy generated, heat exchanged with a reservoir",
+                title=say("step.generated.reservoir"),
                 formula=r"s_\mathrm{gen}=\Delta s-\frac{q}{T_\mathrm{res}}",
                 numbers=rf"{shown(leg['delta']['s'], 'entropy')}"
                 rf"-\frac{{{shown(leg.heat, 'energy')}}}{{{number(reservoir.value)}}}",
@@ -332,22 +320,20 @@ def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
     if solved.outcome.other is not None:
         return [
             Step(
-                title="Entropy generated, streams parting or joining",
+                title=say("step.generated.streams"),
                 formula=r"s_\mathrm{gen}=\Delta s-r\,(s_o-s_1)",
                 numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{share_numbers(solution, solved, 's')}",
                 result=uncertain(leg.entropy_generated, abs(carried) * 1e-12, "entropy"),
-                note=OTHER_NOTE,
+                note=say("note.other-stream"),
             )
         ]
     return [
         Step(
-            title="Entropy generated, heat crossing at the fluid's own temperature"
-            if leg.heat
-            else "Entropy generated",
+            title=say("step.generated.own" if leg.heat else "step.generated"),
             formula=rf"s_\mathrm{{gen}}=\Delta s-{formulas['boundary']}",
             numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{bracketed(carried, 'entropy')}",
             result=with_unit(leg.entropy_generated, "entropy"),
-            note="Reversible by definition." if solved.outcome.reversible else "",
+            note=say("note.reversible") if solved.outcome.reversible else "",
         )
     ]
 
@@ -356,11 +342,11 @@ def _destroyed(solution: Solution, solved: SolvedLeg) -> list[Step]:
     leg, T0 = solution.legs[solved.leg.name], float(solution.path.setting.T0[0])
     return [
         Step(
-            title="Exergy destroyed",
+            title=say("step.destroyed"),
             formula=r"e_\mathrm{d}=T_0\,s_\mathrm{gen}",
             numbers=rf"{number(T0)}\times {bracketed(leg.entropy_generated, 'entropy')}",
             result=with_unit(leg.exergy_destroyed, "energy"),
-            source="Theorem of Gouy and Stodola; any textbook of thermodynamics",
+            source=say("source.gouy-stodola"),
         )
     ]
 
@@ -394,11 +380,11 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
         found[f"totals.{key}"] = [
             *(_amount_step(solution) if key == "heat" else []),
             Step(
-                title="Sum over the legs",
+                title=say("step.sum"),
                 formula=formula,
                 numbers=numbers,
                 result=rf"{signed(solution.totals[key] * 1e-3)}\ {unit}".replace("(", "").replace(")", ""),
-                note="Legs in order: " + ", ".join(solution.legs) + ".",
+                note=say("note.legs", names=", ".join(solution.legs)),
             ),
         ]
     return found
@@ -415,10 +401,10 @@ def _amount_step(solution: Solution) -> list[Step]:
     unit = r"\mathrm{kg/s}" if flow else r"\mathrm{kg}"
     formula = r"\dot m=\dot n\,M" if flow else r"m=n\,M"
     step = Step(
-        title="Amount",
+        title=say("step.amount"),
         formula=formula,
         numbers=rf"{number(moles)}\times {number(M)}",
         result=rf"{number(moles * M)}\ {unit}",
-        note="" if q is None else f"amount: {q.text}",
+        note="" if q is None else say("note.amount", amount=q.text),
     )
     return [step]

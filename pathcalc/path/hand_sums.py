@@ -76,7 +76,7 @@ def _sloping(path: SolvedPath, solved: SolvedLeg, piece: Piece, k: int, ds: floa
         rows = _boundary_rows(path, T_a, T_b, vapour, points)
         if abs(simpson([row[-1] for row in rows]) - along) <= NEAR * abs(along):
             break
-    phase = "saturated vapour" if vapour else "saturated liquid"
+    phase = "saturated-vapour" if vapour else "saturated-liquid"
     found.append(HandSum(name, number + len(found), phase, rows, simpson([row[-1] for row in rows]), along))
     if abs(near_b / v_b - 1.0) > 1e-12:
         found.append(replace(back, number=number + len(found)))

@@ -7,6 +7,8 @@ from __future__ import annotations
 
 import math
 
+from pathcalc.words import say
+
 DIGITS = 7
 UNITS = {
     "T": r"\mathrm{K}",
@@ -19,10 +21,18 @@ UNITS = {
 _SCALE = {"T": 1.0, "p": 1e-3, "v": 1.0, "energy": 1e-3, "entropy": 1e-3, "none": 1.0}
 
 
+_SIGNS = str.maketrans(dict.fromkeys("\\{}$^_%#&~`<", " "))
+
+
+def _word(key: str) -> str:
+    """Words within a formula: what LaTeX would read as a sign is left out."""
+    return say(key).translate(_SIGNS)
+
+
 def number(value: float, digits: int = DIGITS) -> str:
     """A number with ``digits`` significant digits, in powers of ten where it is very large or small."""
     if not math.isfinite(value):
-        return r"\text{undefined}"
+        return rf"\text{{{_word('maths.undefined')}}}"
     if value == 0.0:
         return "0"
     if 1e-4 <= abs(value) < 1e7:
@@ -59,7 +69,8 @@ def uncertain(value: float, error: float, kind: str) -> str:
     """A value with its integration error (two digits); 0 where the value is within that error."""
     if abs(value) <= error:
         value = 0.0
-    return rf"{with_unit(value, kind)}\quad(\text{{integration error}}\le {number(error * _SCALE[kind], 2)})"
+    words = _word("maths.integration-error")
+    return rf"{with_unit(value, kind)}\quad(\text{{{words}}}\le {number(error * _SCALE[kind], 2)})"
 
 
 _RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
@@ -68,6 +79,6 @@ _RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 def rough(value: float) -> str:
     """A small number in running text, two digits: 9.6×10⁻⁵."""
     if value == 0.0 or not math.isfinite(value):
-        return "0" if value == 0.0 else "undefined"
+        return "0" if value == 0.0 else say("maths.undefined")
     mantissa, exponent = f"{value:.1e}".split("e")
     return f"{mantissa}×10{str(int(exponent)).translate(_RAISED)}"

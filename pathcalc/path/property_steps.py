@@ -14,12 +14,11 @@ from pathcalc.path.equation_numbers import pressure_steps
 from pathcalc.path.maths import bracketed, number, shown, signed, with_unit
 from pathcalc.path.state_parts import STANDARD_KPA, gas_constant
 from pathcalc.path.steps import StateParts, Step
+from pathcalc.words import say
 
 if TYPE_CHECKING:
     from pathcalc.legs.run import Place
     from pathcalc.path.solution import Solution
-
-SPAN = "R. Span, Multiparameter Equations of State (Springer 2000), table 3.9"
 
 
 def property_steps(solution: Solution, name: str, parts: StateParts, place: Place) -> dict[str, list[Step]]:
@@ -38,17 +37,17 @@ def _energies(state: Mapping[str, Any]) -> dict[str, list[Step]]:
     u, h, s, T, p, v = (state[key] for key in ("u", "h", "s", "T", "p", "v"))
     Ts = rf"{number(T)}\times {bracketed(s, 'entropy')}"
     return {
-        "rho": [Step("Density", r"\rho=1/v", rf"1/{number(v)}", rf"{number(1.0 / v)}\ \mathrm{{kg/m^3}}")],
+        "rho": [Step(say("step.density"), r"\rho=1/v", rf"1/{number(v)}", rf"{number(1.0 / v)}\ \mathrm{{kg/m^3}}")],
         "u": [
             Step(
-                "Internal energy from enthalpy",
+                say("step.energy"),
                 r"u=h-p\,v",
                 rf"{shown(h, 'energy')}-{shown(p, 'p')}\times {number(v)}",
                 with_unit(u, "energy"),
             )
         ],
-        "a": [Step("Helmholtz energy", r"a=u-T\,s", rf"{shown(u, 'energy')}-{Ts}", with_unit(state["a"], "energy"))],
-        "g": [Step("Gibbs energy", r"g=h-T\,s", rf"{shown(h, 'energy')}-{Ts}", with_unit(state["g"], "energy"))],
+        "a": [Step(say("step.helmholtz"), r"a=u-T\,s", rf"{shown(u, 'energy')}-{Ts}", with_unit(state["a"], "energy"))],
+        "g": [Step(say("step.gibbs"), r"g=h-T\,s", rf"{shown(h, 'energy')}-{Ts}", with_unit(state["g"], "energy"))],
     }
 
 
@@ -60,37 +59,37 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
     return {
         "h": [
             Step(
-                "Enthalpy: ideal gas and residual part",
+                say("step.enthalpy"),
                 r"h=h^\circ+R\,T\left(\tau\alpha^\mathrm{r}_\tau+\delta\alpha^\mathrm{r}_\delta\right)",
                 rf"{number(q['h0'])}+{number(R)}\times {number(T)}\times\left({residual}\right)",
                 with_unit(state["h"], "energy"),
-                source=SPAN,
+                source=say("source.span"),
             )
         ],
         "s": [
             Step(
-                "Entropy: ideal gas and residual part",
+                say("step.entropy"),
                 r"s=s^\circ+R\,\ln\frac{p^\circ v}{R\,T}"
                 r"+R\left(\tau\alpha^\mathrm{r}_\tau-\alpha^\mathrm{r}\right)",
                 rf"{number(q['s0'])}+{number(R)}\times\ln\frac{{{number(STANDARD_KPA)}\times {number(v)}}}"
                 rf"{{{number(R)}\times {number(T)}}}"
                 rf"+{number(R)}\times\left({number(q['a_t'])}-{signed(q['a'])}\right)",
                 with_unit(state["s"], "entropy"),
-                source=SPAN,
+                source=say("source.span"),
             )
         ],
         "cv": [
             Step(
-                "Isochoric heat capacity",
+                say("step.cv"),
                 r"c_v=c_p^\circ-R-R\,\tau^2\alpha^\mathrm{r}_{\tau\tau}",
                 rf"{number(q['cp0'])}-{number(R)}-{number(R)}\times {signed(q['a_tt'])}",
                 with_unit(cv, "entropy"),
-                source=SPAN,
+                source=say("source.span"),
             )
         ],
         "cp": [
             Step(
-                "Isobaric heat capacity",
+                say("step.cp"),
                 r"c_p=c_v-T\,\frac{p_T^2}{p_v}",
                 rf"{shown(cv, 'entropy')}-{number(T)}\times\frac{{{p_T}^2}}{{{p_v}}}",
                 with_unit(cp, "entropy"),
@@ -98,17 +97,17 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         ],
         "sound_speed": [
             Step(
-                "Speed of sound",
+                say("step.sound"),
                 r"c=v\sqrt{-\frac{c_p}{c_v}\,p_v}",
                 rf"{number(v)}\times\sqrt{{-\frac{{{shown(cp, 'entropy')}}}{{{shown(cv, 'entropy')}}}\times"
                 rf"1000\times{in_product}}}",
                 rf"{number(state['sound_speed'])}\ \mathrm{{m/s}}",
-                note="The factor 1000 turns kPa into Pa.",
+                note=say("note.kilo"),
             )
         ],
         "expansivity": [
             Step(
-                "Isobaric expansivity",
+                say("step.expansivity"),
                 r"\alpha=-\frac{p_T}{v\,p_v}",
                 rf"-\frac{{{p_T}}}{{{number(v)}\times {in_product}}}",
                 rf"{number(state['expansivity'])}\ \mathrm{{1/K}}",
@@ -116,7 +115,7 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         ],
         "compressibility": [
             Step(
-                "Isothermal compressibility",
+                say("step.compressibility"),
                 r"\kappa_T=-\frac{1}{v\,p_v}",
                 rf"-\frac{{1}}{{{number(v)}\times {in_product}}}",
                 rf"{number(state['compressibility'] * 1e3)}\ \mathrm{{1/kPa}}",
@@ -124,7 +123,7 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         ],
         "joule_thomson": [
             Step(
-                "Joule–Thomson coefficient",
+                say("step.throttling"),
                 r"\mu=-\frac{v}{c_p}\,\frac{\delta\alpha^\mathrm{r}_\delta+\delta\tau\alpha^\mathrm{r}_{\delta\tau}"
                 r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}{1+2\,\delta\alpha^\mathrm{r}_\delta"
                 r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}",
@@ -135,7 +134,7 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         ],
         "Z": [
             Step(
-                "Compression factor",
+                say("step.Z"),
                 r"Z=\frac{p\,v}{R\,T}",
                 rf"\frac{{{shown(p, 'p')}\times {number(v)}}}{{{number(R)}\times {number(T)}}}",
                 number(Z),
@@ -143,11 +142,11 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         ],
         "fugacity_coefficient": [
             Step(
-                "Fugacity coefficient",
+                say("step.fugacity"),
                 r"\ln\varphi=\alpha^\mathrm{r}+Z-1-\ln Z",
                 rf"{number(q['a'])}+{number(Z)}-1-\ln\left({number(Z)}\right)",
                 rf"{number(math.log(phi))},\quad \varphi={number(phi)}",
-                source=SPAN,
+                source=say("source.span"),
             )
         ],
     }
@@ -161,7 +160,7 @@ def _of_two_phases(state: Mapping[str, Any], q: StateParts) -> dict[str, list[St
         return [Step(title, formula, rf"{number(low)}+{x}\times({number(high)}-{signed(low)})", result)]
 
     return {
-        "v": mixed("Volume of both phases", "v", q["v_l"], q["v_v"], with_unit(state["v"], "v")),
-        "h": mixed("Enthalpy of both phases", "h", q["h_l"], q["h_v"], with_unit(state["h"], "energy")),
-        "s": mixed("Entropy of both phases", "s", q["s_l"], q["s_v"], with_unit(state["s"], "entropy")),
+        "v": mixed(say("step.volume-mixed"), "v", q["v_l"], q["v_v"], with_unit(state["v"], "v")),
+        "h": mixed(say("step.enthalpy-mixed"), "h", q["h_l"], q["h_v"], with_unit(state["h"], "energy")),
+        "s": mixed(say("step.entropy-mixed"), "s", q["s_l"], q["s_v"], with_unit(state["s"], "entropy")),
     }

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from functools import cached_property
-from typing import TYPE_CHECKING, Any
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, TypeVar
 
 import numpy as np
 
@@ -24,10 +25,13 @@ from pathcalc.path.values import (
     piece_values,
     state_values,
 )
+from pathcalc.words import Catalogue, in_force, using
 
 if TYPE_CHECKING:
     from pathcalc.path.steps import Basis, Curve, Dome, HandSum, StateParts, Step
 
+
+T = TypeVar("T")
 
 _NO_QUANTITY = frozenset({"name", "path", "from", "to", "delta", "maxwell", "total", "carried", "other"})
 """Parts of the record of a leg that are no single number."""
@@ -43,6 +47,15 @@ class Solution:
     def __init__(self, path: SolvedPath, *, lanes: bool) -> None:
         self.path = path
         self._lanes = lanes
+        self._said: dict[tuple[str, Catalogue], Any] = {}
+
+    def _in_words(self, what: str, make: Callable[[Solution], T]) -> T:
+        """What ``make`` says of this solution in the words in force, made once for each catalogue."""
+        key = what, in_force()
+        if key not in self._said:
+            self._said[key] = make(self)
+        found: T = self._said[key]
+        return found
 
     @property
     def case(self) -> Case:
@@ -208,11 +221,17 @@ class Solution:
 
     @cached_property
     def warnings(self) -> list[dict[str, str]]:
-        """What a reader must know beside the numbers: code, at, text."""
+        """What a reader must know beside the numbers: code, at, text (English, whatever words are in force)."""
         self._of_one_lane("warnings")
+        with using():
+            return self.warnings_in_words
+
+    @property
+    def warnings_in_words(self) -> list[dict[str, str]]:
+        """The rows of ``warnings`` with their texts in the words in force, for a report."""
         from pathcalc.path.warnings import all_warnings
 
-        return all_warnings(self)
+        return self._in_words("warnings", all_warnings)
 
     @cached_property
     def comparison(self) -> list[dict[str, Any]]:
@@ -243,12 +262,12 @@ class Solution:
 
         return {solved.leg.name: hand_sums(self.path, solved) for solved in self.path.legs}
 
-    @cached_property
+    @property
     def explanations(self) -> dict[str, list[Step]]:
-        """How results came about, by address."""
+        """How results came about, by address, in the words in force."""
         from pathcalc.path.explanations import explain_all
 
-        return explain_all(self)
+        return self._in_words("explanations", explain_all)
 
     @cached_property
     def curves(self) -> list[Curve]:
@@ -264,12 +283,12 @@ class Solution:
 
         return dome_of(self)
 
-    @cached_property
+    @property
     def basis(self) -> Basis:
-        """The fluid's constants, equation and heat capacity with their sources."""
+        """The fluid's constants, equation and heat capacity with their sources, in the words in force."""
         from pathcalc.path.basis import basis_of
 
-        return basis_of(self)
+        return self._in_words("basis", basis_of)
 
     def to_dict(self) -> dict[str, Any]:
         """The results of an ordinary solve as one JSON object, SI, keys in a fixed order."""
@@ -279,14 +298,14 @@ class Solution:
             raise UsageError("a result object is of one solve; read states, legs and totals of a solve with lanes")
         return as_dict(self)
 
-    def report(self, form: str = "html") -> str:
-        """The calculation report as text: ``html`` or ``md``."""
+    def report(self, form: str = "html", *, words: Catalogue | Path | str | None = None) -> str:
+        """The calculation report as text: ``html`` or ``md``; ``words`` is a catalogue or its file, else English."""
         from pathcalc import report
 
         if form == "html":
-            return report.render_html(self)
+            return report.render_html(self, words=words)
         if form in ("md", "markdown"):
-            return report.render_markdown(self)[0]
+            return report.render_markdown(self, words=words)[0]
         raise UsageError(f"unknown report format {form!r}; known: html, md")
 
 

@@ -10,6 +10,7 @@ from pathcalc.path.maths import bracketed, number, shown, with_unit
 from pathcalc.path.property_steps import property_steps
 from pathcalc.path.steps import Step
 from pathcalc.quantities.values import Quantity, Relative
+from pathcalc.words import say, say_of
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
@@ -48,11 +49,11 @@ def start_steps(solution: Solution) -> dict[str, list[Step]]:
             continue
         found[f"start.{key}"] = [
             Step(
-                title="Given" if key in case.start else "From the equation of state at the given state",
+                title=say("step.given" if key in case.start else "step.start"),
                 formula=rf"{symbol}_1",
                 result=with_unit(value, kind),
                 source="; ".join(dict.fromkeys(citations.get(s, s) for s in sources)) if key in case.start else "",
-                note=f"start: {given}; phase {state.phase}",
+                note=say("note.start", given=given, phase=say_of("phase", state.phase)),
             )
         ]
     return _with_properties(solution, "start", solution.path.start, found)
@@ -86,10 +87,10 @@ def state_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
         steps = found.setdefault(f"{name}.{key}", [])
         steps.append(
             Step(
-                title="State at the end of the leg",
+                title=say("step.end"),
                 formula=rf"{symbol}_2",
                 result=with_unit(value, kind),
-                note=f"fixed by {fixed}; phase {state.phase}",
+                note=say("note.fixed", what=fixed, phase=say_of("phase", state.phase)),
             )
         )
     return _with_properties(solution, name, solved.end, found)
@@ -104,18 +105,17 @@ def _quality_steps(solution: Solution, name: str, place: Place) -> list[Step]:
     state = solution.states[name]
     low, high = float(v_l[0]) / M, float(v_v[0]) / M
     phases = "; ".join(
-        f"{text}: v = {volume:.7g} m3/kg, h = {float(t.h[0]) / M / 1e3:.7g} kJ/kg, "
+        f"{say_of('phase', phase)}: v = {volume:.7g} m3/kg, h = {float(t.h[0]) / M / 1e3:.7g} kJ/kg, "
         f"s = {float(t.s[0]) / M / 1e3:.7g} kJ/(kg K)"
-        for text, volume, t in (("saturated liquid", low, liquid), ("saturated vapour", high, vapour))
+        for phase, volume, t in (("saturated-liquid", low, liquid), ("saturated-vapour", high, vapour))
     )
     return [
         Step(
-            title="Quality by the lever rule",
+            title=say("step.quality"),
             formula=r"x=\frac{v-v'}{v''-v'}",
             numbers=rf"\frac{{{number(state.v)}-{number(low)}}}{{{number(high)}-{number(low)}}}",
             result=with_unit(state.x, "none"),
-            note=f"Coexisting at {state.T:.7g} K and {state.p / 1e3:.7g} kPa, from equal pressure and equal Gibbs "
-            f"energy of the phases. {phases}.",
+            note=say("note.coexisting", T=f"{state.T:.7g}", p=f"{state.p / 1e3:.7g}", phases=phases),
         )
     ]
 
@@ -125,18 +125,18 @@ def _what_fixes(solution: Solution, solved: SolvedLeg) -> str:
     parts = [_target_text(key, target) for key, target in leg.to.given().items()] if hasattr(leg, "to") else []
     held = _HELD.get(leg.path)
     if held is not None:
-        parts.insert(0, f"{held} as at the inlet")
+        parts.insert(0, say("fixed.inlet", symbol=held))
     for key in ("efficiency", "polytropic_efficiency", "against", "exponent", "pressure_drop"):
         item = getattr(leg, key, None)
         if item is not None:
-            parts.append(f"{key.replace('_', ' ')} {item.text}")
+            parts.append(say(f"fixed.{key}", value=item.text))
     if leg.path == "adiabatic" and len(parts) == 1:
-        parts.insert(0, "s as at the inlet")
+        parts.insert(0, say("fixed.inlet", symbol="s"))
     keep = getattr(leg, "keep", None)
     if keep is not None:
-        parts += ["T as at the inlet", f"saturated {keep}"]
+        parts += [say("fixed.inlet", symbol="T"), say(f"phase.saturated-{keep}")]
     if leg.path == "mixing":
-        parts += ["the mean enthalpy of the streams", "the lower of their pressures"]
+        parts += [say("fixed.mean-enthalpy"), say("fixed.lower-pressure")]
     return ", ".join(parts)
 
 
@@ -144,9 +144,9 @@ def _target_text(key: str, target: Quantity | Relative) -> str:
     if isinstance(target, Quantity):
         return f"{key} = {target.text}"
     if target.kind == "same_as":
-        return f"{key} as at {target.state}"
+        return say("fixed.as-at", symbol=key, state=target.state)
     assert target.amount is not None
-    return f"{key}: {target.kind} {target.amount.text}"
+    return say(f"fixed.{target.kind}", symbol=key, amount=target.amount.text)
 
 
 def exergy_steps(solution: Solution, name: str) -> list[Step]:
@@ -156,7 +156,7 @@ def exergy_steps(solution: Solution, name: str) -> list[Step]:
     T0, p0 = float(solution.path.setting.T0[0]), float(solution.path.setting.p0[0])
     h0, u0, s0, v0 = (float(x[0]) / M for x in (dead.h, dead.u, dead.s, dead.v))
     if h0 != h0:
-        return [Step("Exergy", note="The fluid has no state at the surroundings with this equation.")]
+        return [Step(say("step.no-exergy"), note=say("note.no-exergy"))]
     if solution.path.setting.flow:
         formula = r"e=(h-h_0)-T_0\,(s-s_0)"
         numbers = (
@@ -172,11 +172,10 @@ def exergy_steps(solution: Solution, name: str) -> list[Step]:
         )
     return [
         Step(
-            "Thermomechanical exergy",
+            say("step.exergy"),
             formula,
             numbers,
             with_unit(state.exergy, "energy"),
-            note=f"The dead state (index 0) is the fluid at the {T0:.6g} K and {p0 / 1e3:.6g} kPa of the surroundings; "
-            "its properties come from the equation of state there.",
+            note=say("note.dead-state", T=f"{T0:.6g}", p=f"{p0 / 1e3:.6g}"),
         )
     ]

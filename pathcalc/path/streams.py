@@ -6,15 +6,11 @@ from typing import TYPE_CHECKING
 
 from pathcalc.path.maths import bracketed, number, shown, signed, with_unit
 from pathcalc.path.steps import Step
+from pathcalc.words import say
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
     from pathcalc.path.solver import SolvedLeg
-
-OTHER_NOTE = (
-    "Per kilogram that goes on. Index o is the other stream, r its amount per amount that goes on: negative where it "
-    "leaves, positive where it joins."
-)
 
 
 def share_numbers(solution: Solution, solved: SolvedLeg, key: str) -> str:
@@ -40,14 +36,14 @@ def stream_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]
     joins = float(share[0]) > 0.0
     h1, h2 = float(solved.inlet.h[0]) / M, float(other.h[0]) / M
     whole, part = 1.0 - float(share[0]), signed(float(share[0]))
-    title = "Energy balance of the streams that join" if joins else "Energy balance of the streams that part"
+    title = say("step.join" if joins else "step.part")
     steps = [
         Step(
             title,
             r"h_2=(1-r)\,h_1+r\,h_o",
             rf"{number(whole)}\times {bracketed(h1, 'energy')}+{part}\times {bracketed(h2, 'energy')}",
             with_unit(end.h, "energy"),
-            note=f"{OTHER_NOTE} The other stream: {_state_text(solution, solved)}.",
+            note=f"{say('note.other-stream')} {say('note.other-state', state=_state_text(solution, solved))}",
         )
     ]
     found = {f"{name}.h": steps}
@@ -56,11 +52,11 @@ def stream_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]
         inlet = float(leg["amount"]) * whole
         if joins:
             numbers = rf"{number(inlet)}+{number(float(leg['other']['amount']))}"
-            formula, text = r"\dot m_2=\dot m_1+\dot m_o", "Amount after mixing"
+            formula, text = r"\dot m_2=\dot m_1+\dot m_o", say("step.amount.mixed")
         else:
             numbers = rf"\frac{{{number(inlet)}}}{{{number(whole)}}}"
-            formula, text = r"\dot m_2=\frac{\dot m_1}{1-r},\quad \dot m_o=\dot m_2-\dot m_1", "Amount kept"
-        amounts = f"The other stream: {abs(float(leg['other']['amount'])):.7g} kg/s."
+            formula, text = r"\dot m_2=\frac{\dot m_1}{1-r},\quad \dot m_o=\dot m_2-\dot m_1", say("step.amount.kept")
+        amounts = say("note.other-amount", amount=f"{abs(float(leg['other']['amount'])):.7g}")
         found[f"{name}.amount"] = [
             Step(text, formula, numbers, rf"{number(float(leg['amount']))}\ {unit}", note=amounts)
         ]

@@ -16,9 +16,10 @@ import numpy as np
 from pathcalc.equations.contract import Model
 from pathcalc.equilibrium.points import PHASES
 from pathcalc.equilibrium.saturation import saturation_at_T
-from pathcalc.path.checks import MEANING
+from pathcalc.path.checks import meaning, name_in_words
 from pathcalc.path.maths import rough
 from pathcalc.path.told import Told
+from pathcalc.words import say, say_of
 
 if TYPE_CHECKING:
     from pathcalc.legs.run import Place
@@ -57,12 +58,17 @@ def all_warnings(solution: Solution) -> list[Warning_]:
     with_other_way = {row["at"] for row in solution.checks if row["name"] == "path independence"}
     for name in solution.legs:
         if name not in with_other_way:
-            text = "path independence is not checked: there is no other way within the range of the equation"
-            rows.append(_warning("unchecked", name, text))
+            rows.append(_warning("unchecked", name, say("warning.unchecked")))
     for row in solution.checks:
         if not row["passed"]:
-            text = f"the check {row['name']!r} failed: {row['value']:.3g} against {row['tolerance']:.3g}; "
-            rows.append(_warning("check-failed", row["at"], text + MEANING[row["name"]]))
+            text = say(
+                "warning.check-failed",
+                name=f"'{name_in_words(row['name'])}'",
+                value=f"{row['value']:.3g}",
+                tolerance=f"{row['tolerance']:.3g}",
+                meaning=meaning(row["name"]),
+            )
+            rows.append(_warning("check-failed", row["at"], text))
     return _merged(rows)
 
 
@@ -81,49 +87,31 @@ def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
     told = Told(solution)
     low, high = model.T_range
     if not low <= T <= high:
-        text = (
-            f"{told.temperature(T)} lies outside the stated range of {told.temperature(low)} to "
-            f"{told.temperature(high)}; treat it as extrapolated"
-        )
-        text += _stated(model, "extremes")
-        rows.append(_warning("outside-range", name, text))
+        values = {"T": told.temperature(T), "low": told.temperature(low), "high": told.temperature(high)}
+        rows.append(_warning("outside-range", name, _stated(say("warning.outside-range", **values), model, "extremes")))
     ideal = model.ideal
     if not ideal.T_min <= T <= ideal.T_max:
-        text = (
-            f"{told.temperature(T)} lies outside the range of the ideal-gas heat capacity, "
-            f"{told.temperature(ideal.T_min)} to {told.temperature(ideal.T_max)}"
-        )
+        reach = {"low": told.temperature(ideal.T_min), "high": told.temperature(ideal.T_max)}
+        text = say("warning.heat-capacity-extrapolated", T=told.temperature(T), **reach)
         rows.append(_warning("heat-capacity-extrapolated", name, text))
     if p > model.p_max:
-        text = (
-            f"{told.pressure(p)} lies above the {told.pressure(model.p_max)} up to which the equation is meant to be "
-            "used"
-        )
+        text = say("warning.above-pressure-range", p=told.pressure(p), limit=told.pressure(model.p_max))
         rows.append(_warning("above-pressure-range", name, text))
     if model.has_dome and abs(T / model.T_c - 1.0) < NEAR_CRITICAL and 0.4 < model.v_c / v < 2.0:
-        text = (
-            "the state is close to the critical point, where this equation is at its least accurate in "
-            "density and heat capacity" + _stated(model, "critical")
-        )
-        rows.append(_warning("near-critical", name, text))
+        rows.append(_warning("near-critical", name, _stated(say("warning.near-critical"), model, "critical")))
     rows.extend(_near_triple_point(solution, name, place))
     rows.extend(_near_saturation(solution, name, place))
     if model.equation in CUBICS and v < model.v_c / 1.5:
-        text = (
-            "a dense fluid: densities of a cubic equation are commonly off by 5 % to 20 % here, and heat "
-            "capacities and compressibilities by more (common experience, no source)"
-        )
-        rows.append(_warning("dense-cubic", name, text))
+        rows.append(_warning("dense-cubic", name, say("warning.dense-cubic")))
     if model.equation == "virial" and v < 2.0 * model.v_c:
-        text = "denser than half the critical density: a virial series cut after C is not to be trusted here"
-        rows.append(_warning("virial-dense", name, text))
+        rows.append(_warning("virial-dense", name, say("warning.virial-dense")))
     return rows
 
 
-def _stated(model: Model, where: str) -> str:
-    """What the source of the equation states of its uncertainty there, to stand after a warning."""
+def _stated(warning: str, model: Model, where: str) -> str:
+    """A warning, and what the source of the equation states of its uncertainty there."""
     found = [text for text in (model.info.uncertainty if model.info is not None else ()) if where in text]
-    return f"; stated uncertainty: {'; '.join(found)}" if found else ""
+    return say("warning.stated", warning=warning, uncertainty="; ".join(found)) if found else warning
 
 
 def _near_triple_point(solution: Solution, name: str, place: Place) -> list[Warning_]:
@@ -135,12 +123,10 @@ def _near_triple_point(solution: Solution, name: str, place: Place) -> list[Warn
     if not wet or not model.has_dome or model.T_triple * (1.0 + NEAR_TRIPLE) < T:
         return []
     told = Told(solution)
-    limit = f" and {told.pressure(card.p_triple.value)}" if card.has("p_triple") else ""
-    text = (
-        f"wet fluid at {told.temperature(T)} and {told.pressure(p)}, close to the triple point at "
-        f"{told.temperature(model.T_triple)}{limit}: below it a solid "
-        "forms, which this calculation does not describe and which can block pipes and valves"
-    )
+    triple = told.temperature(model.T_triple)
+    if card.has("p_triple"):
+        triple = say("warning.triple-point", T=triple, p=told.pressure(card.p_triple.value))
+    text = say("warning.near-triple-point", T=told.temperature(T), p=told.pressure(p), triple=triple)
     return [_warning("near-triple-point", name, text)]
 
 
@@ -155,10 +141,12 @@ def _near_saturation(solution: Solution, name: str, place: Place) -> list[Warnin
         return []
     phase = PHASES[int(place.points.phase[0])]
     told = Told(solution)
-    text = (
-        f"taken as {phase}, but {told.pressure(p)} is only {rough(abs(p / p_sat - 1.0))} (relative) from the vapour "
-        f"pressure at {told.temperature(T)}: the last digits of the inputs decide the phase; where a saturated state "
-        "is meant, give x"
+    text = say(
+        "warning.near-saturation",
+        phase=say_of("phase", phase),
+        p=told.pressure(p),
+        apart=rough(abs(p / p_sat - 1.0)),
+        T=told.temperature(T),
     )
     return [_warning("near-saturation", name, text)]
 
@@ -175,10 +163,11 @@ def _full_of_liquid(solution: Solution) -> list[Warning_]:
                 T, v = after.ends.T_a[:1], after.ends.v_a[:1]
                 terms = solution.path.model.residual.pressure(T, v)
                 told = Told(solution)
-                where = f"{told.temperature(float(T[0]))} and {told.pressure(float(terms.p[0]))}"
-                text = (
-                    f"full of liquid from {where} on: no vapour is left, and the pressure rises by "
-                    f"{told.pressure_difference(float(terms.p_T[0]))} a kelvin there; give it room or relief"
+                text = say(
+                    "warning.full-of-liquid",
+                    T=told.temperature(float(T[0])),
+                    p=told.pressure(float(terms.p[0])),
+                    slope=told.pressure_difference(float(terms.p_T[0])),
                 )
                 rows.append(_warning("full-of-liquid", solved.leg.name, text))
     return rows
@@ -187,17 +176,9 @@ def _full_of_liquid(solution: Solution) -> list[Warning_]:
 def _of_equation(solution: Solution) -> list[Warning_]:
     model, rows = solution.path.model, []
     if model.equation in CUBICS and model.T_c < 50.0:
-        text = (
-            "a quantum gas (hydrogen, helium, neon): constants fitted at the critical point serve a cubic "
-            "equation badly at low temperature"
-        )
-        rows.append(_warning("quantum-gas", "fluid", text))
+        rows.append(_warning("quantum-gas", "fluid", say("warning.quantum-gas")))
     if np.isnan(solution.dead.h[0]):
-        text = (
-            "the fluid has no state at the temperature and pressure of the surroundings with this equation; "
-            "exergies of states are left out"
-        )
-        rows.append(_warning("no-dead-state", "surroundings", text))
+        rows.append(_warning("no-dead-state", "surroundings", say("warning.no-dead-state")))
     return rows
 
 
@@ -205,25 +186,24 @@ def _of_legs(solution: Solution) -> list[Warning_]:
     rows: list[Warning_] = []
     through = [leg.leg.name for leg in solution.path.legs if any(p.in_dome for p in leg.integrals.pieces)]
     if through:
-        text = "passes through the two-phase region; integrated piece by piece, the phases in equilibrium"
-        rows.append(_warning("two-phase", ", ".join(through), text))
+        rows.append(_warning("two-phase", ", ".join(through), say("warning.two-phase")))
     for row in solution.limits:
         if row["value"] is None:
             name = row["quantity"].rpartition(".")[0]
             phase = solution.states[name].phase if name in solution.states else ""
-            text = f"the limit is on a quantity without a value here (phase: {phase}); it counts as missed"
+            text = say("warning.limit-without-value", phase=say_of("phase", phase))
             rows.append(_warning("limit-without-value", row["quantity"], text))
     rows.extend(_past_equilibrium(solution))
     rows.extend(_full_of_liquid(solution))
     if solution.case.fluid.volume_shift is not None and solution.case.report.compare_with:
-        text = "the other equations are solved without the volume shift of the case: their dense states are not alike"
-        rows.append(_warning("comparison-without-shift", "comparison", text))
+        rows.append(_warning("comparison-without-shift", "comparison", say("warning.comparison-without-shift")))
     for equation in solution.case.report.compare_with:
         from pathcalc.path.comparison import solved_with
 
         other = solved_with(solution, equation)
         if isinstance(other, str):
-            rows.append(_warning("comparison-failed", "comparison", f"{equation}: {other}"))
+            text = say("warning.comparison-failed", equation=equation, reason=other)
+            rows.append(_warning("comparison-failed", "comparison", text))
     return rows
 
 
@@ -238,9 +218,6 @@ def _past_equilibrium(solution: Solution) -> list[Warning_]:
         p_ext, p = float(solution.path.setting.molar(against)[0]), float(solved.end.p[0])
         grows = float(solved.end.v[0]) > float(solved.inlet.v[0])
         if (grows and p < p_ext * (1.0 - 1e-9)) or (not grows and p > p_ext * (1.0 + 1e-9)):
-            text = (
-                f"ends at {told.pressure(p)}, beyond the {told.pressure(p_ext)} it moves against: left to itself the "
-                "fluid would come to rest there; the work stands only if something else carries it on"
-            )
+            text = say("warning.past-equilibrium", p=told.pressure(p), against=told.pressure(p_ext))
             rows.append(_warning("past-equilibrium", solved.leg.name, text))
     return rows

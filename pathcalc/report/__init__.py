@@ -8,6 +8,7 @@ from __future__ import annotations
 from pathlib import Path
 
 from pathcalc.report.view import SolutionLike
+from pathcalc.words import Catalogue, using
 
 __all__ = ["FORMATS", "SolutionLike", "render_html", "render_markdown", "write_reports"]
 
@@ -15,15 +16,22 @@ FORMATS = ("html", "md")
 """The formats :func:`write_reports` knows."""
 
 
-def render_html(solution: SolutionLike) -> str:
+Words = Catalogue | Path | str | None
+"""A catalogue of words, or the file of one; None is English."""
+
+
+def render_html(solution: SolutionLike, *, words: Words = None) -> str:
     """The report as one self-contained HTML page: no scripts, no requests, formulas and diagrams inside."""
     from pathcalc.report.html import render
     from pathcalc.report.view import build
 
-    return render(build(solution))
+    with using(words):
+        return render(build(solution))
 
 
-def render_markdown(solution: SolutionLike, stem: str | None = None) -> tuple[str, dict[str, bytes]]:
+def render_markdown(
+    solution: SolutionLike, stem: str | None = None, *, words: Words = None
+) -> tuple[str, dict[str, bytes]]:
     """The report as Markdown, and its diagrams as SVG files by the relative name the text refers to.
 
     ``stem`` begins the diagrams' file names; the last part of the case id where it is left out.
@@ -32,19 +40,31 @@ def render_markdown(solution: SolutionLike, stem: str | None = None) -> tuple[st
     from pathcalc.report.textsafe import file_stem
     from pathcalc.report.view import build
 
-    return render(build(solution), file_stem(stem or str(solution.to_dict()["case"]["id"])))
+    with using(words):
+        return render(build(solution), file_stem(stem or str(solution.to_dict()["case"]["id"])))
 
 
-def write_reports(solution: SolutionLike, formats: set[str], folder: Path, stem: str) -> list[Path]:
+def write_reports(
+    solution: SolutionLike, formats: set[str], folder: Path, stem: str, *, words: Words = None
+) -> list[Path]:
     """Write the reports into ``folder`` and return their paths: all of them whole, or none.
 
-    Raises UsageError for an unknown format or a stem that is no file name, OSError where the folder cannot
-    be written; nothing half-written is left behind.
+    ``words`` is a catalogue of another language, or its file. Raises UsageError for an unknown format, a stem that is
+    no file name or a file that is no catalogue, OSError where the folder cannot be written; nothing half-written is
+    left behind.
     """
     from pathcalc.report.files import check, write_all
-    from pathcalc.report.view import build
 
     check(formats, stem)
+    with using(words):
+        files = _files(solution, formats, stem)
+    return write_all(folder, files)
+
+
+def _files(solution: SolutionLike, formats: set[str], stem: str) -> dict[str, bytes]:
+    """The files of the reports by name."""
+    from pathcalc.report.view import build
+
     document = build(solution)
     files: dict[str, bytes] = {}
     if "html" in formats:
@@ -58,4 +78,4 @@ def write_reports(solution: SolutionLike, formats: set[str], folder: Path, stem:
         text, figures = render_text(document, file_stem(stem))
         files |= figures
         files[f"{stem}.md"] = text.encode()
-    return write_all(folder, files)
+    return files

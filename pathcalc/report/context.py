@@ -9,7 +9,8 @@ from typing import Any
 from pathcalc.report import numbers, units
 from pathcalc.report.derivations import Derivations
 from pathcalc.report.view import Cell, Column, SolutionLike, Table
-from pathcalc.report.words import WORDS, say
+from pathcalc.report.words import say
+from pathcalc.words import say_of
 
 P_AMBIENT = 101325.0
 """Pressure of the surroundings where the case gives none, Pa (contract of the case file)."""
@@ -33,7 +34,7 @@ class Context:
         self.flow = self.result["boundary"] == "flow"
         self.states: list[dict[str, Any]] = self.result["states"]
         self.legs: list[dict[str, Any]] = self.result["legs"]
-        self.warnings: list[dict[str, Any]] = self.result["warnings"]
+        self.warnings: list[dict[str, Any]] = pick(solution, "warnings_in_words", self.result["warnings"])
         self.ambient = float(pick(self.result["surroundings"], "p", P_AMBIENT))
         self.units = units.Units(
             pick(self.case, "units", {}),
@@ -191,4 +192,4 @@ def phase_words(phase: str | None) -> str:
     """The name of a phase as printed."""
     if not phase:
         return numbers.ABSENT
-    return WORDS.get(f"phase.{phase}", str(phase))
+    return say_of("phase", str(phase))

@@ -49,7 +49,7 @@ def inputs(ctx: Context) -> list[Input]:
     for leg in pick(case, "legs", []):
         found += _inputs_in(str(pick(leg, "name")), leg, pick(leg, "source"))
     for limit in pick(case, "limits", []):
-        address = f"limit {pick(limit, 'quantity')}"
+        address = say("basis.limit", quantity=pick(limit, "quantity"))
         found += _inputs_in(address, limit, pick(limit, "source"))
     return found
 

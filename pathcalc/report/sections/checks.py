@@ -6,6 +6,7 @@ from collections.abc import Mapping, Sequence
 from itertools import groupby
 from typing import Any
 
+from pathcalc.path.checks import name_in_words
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, phase_words
 from pathcalc.report.units import STATE_KINDS, kind_of
@@ -39,7 +40,7 @@ def _checks(ctx: Context) -> Table | Paragraph:
     columns.append(Column(say("col.outcome")))
     rows = [
         (
-            Cell(str(c["name"])),
+            Cell(name_in_words(str(c["name"]))),
             Cell(str(c["at"] or numbers.ABSENT)),
             _small(c["value"]),
             _small(c["tolerance"]),

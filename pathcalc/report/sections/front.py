@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from pathcalc.path.checks import name_in_words
 from pathcalc.path.warnings import NOTES
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, pick
@@ -104,12 +105,17 @@ def _checks(ctx: Context) -> Outcome:
     checks = ctx.result["checks"]
     failed = [c for c in checks if not c["passed"]]
     if failed:
-        names = ", ".join(f"{c['name']} ({c['at']})" if c["at"] else str(c["name"]) for c in failed)
+        names = ", ".join(_named(c) for c in failed)
         text = say("verdict.checks.failed", failed=len(failed), n=len(checks), names=names)
         return Outcome(label, text, "bad")
     if not checks:
         return Outcome(label, say("verdict.checks.none"), "plain")
     return Outcome(label, say("verdict.checks.passed", n=len(checks)), "good")
+
+
+def _named(check: dict[str, Any]) -> str:
+    name = name_in_words(str(check["name"]))
+    return say("verdict.check", name=name, at=check["at"]) if check["at"] else name
 
 
 def _result(ctx: Context) -> tuple[Outcome, ...]:
