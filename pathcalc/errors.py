@@ -2,6 +2,7 @@
 
 PathcalcError             exit code 5: our own fault unless a subclass says otherwise
 ├── UsageError            exit code 2: the command line or the call is wrong
+│   └── InvalidWordsError a catalogue of words is not valid; carries every finding
 ├── InvalidCaseError      exit code 3: a case, an included file or a card is not valid; carries every finding
 └── NoSolutionError       exit code 4: a valid case has no solution in the equation's range; carries the trouble
 """
@@ -52,6 +53,14 @@ class UsageError(PathcalcError):
     """The caller asked for something that cannot be asked."""
 
     exit_code = 2
+
+
+class InvalidWordsError(UsageError):
+    """A file is not a catalogue of words; ``findings`` holds everything that was found, in file order."""
+
+    def __init__(self, findings: Sequence[Finding]) -> None:
+        self.findings = list(findings)
+        super().__init__("\n".join(str(f) for f in self.findings))
 
 
 class InvalidCaseError(PathcalcError):

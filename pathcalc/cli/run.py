@@ -11,7 +11,7 @@ import click
 
 from pathcalc.cli.group import COMPLETE_VARIABLE, PROGRAM, PipeClosed, cli
 from pathcalc.cli.talk import Talk, one_line
-from pathcalc.errors import InvalidCaseError, PathcalcError
+from pathcalc.errors import InvalidCaseError, InvalidWordsError, PathcalcError
 
 INTERRUPTED = 130
 PIPE_CLOSED = 141
@@ -58,7 +58,7 @@ def _run(argv: Sequence[str] | None, talk: Talk) -> int:
 
 def report_error(error: Exception, talk: Talk, where: str = "") -> int:
     """Say on standard error what went wrong, and return the exit code for it."""
-    if isinstance(error, InvalidCaseError):
+    if isinstance(error, InvalidCaseError | InvalidWordsError):
         for finding in error.findings:
             if finding.file or finding.line:
                 talk.line(str(finding))

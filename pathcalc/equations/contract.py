@@ -12,6 +12,8 @@ from typing import NamedTuple, Protocol, TypeAlias
 import numpy as np
 from numpy.typing import NDArray
 
+from pathcalc.words import Saying
+
 Array: TypeAlias = NDArray[np.float64]
 
 R_CODATA = 8.314462618
@@ -200,22 +202,23 @@ class Parameter(NamedTuple):
     symbol: str
     value: float
     unit: str
-    source: str
+    source: str | Saying
 
 
 @dataclass(frozen=True)
 class EquationInfo:
     """What a report says about an equation: title, formula (LaTeX), constants, citation, range in words.
 
-    ``uncertainty`` holds what its source states, a line a property and region.
+    Texts of the catalogue of words are sayings. ``uncertainty`` holds what its source states, a line a property and
+    region.
     """
 
     name: str
-    title: str
+    title: str | Saying
     formula: str
     parameters: tuple[Parameter, ...]
-    source: str
-    range_text: str
+    source: str | Saying
+    range_text: str | Saying
     uncertainty: tuple[str, ...] = ()
 
 

@@ -25,6 +25,7 @@ from pathcalc.equations.ideal import NoResidual
 from pathcalc.equations.virial import Coefficient, VirialGas, orbey_vera_c, tsonopoulos_b
 from pathcalc.errors import UsageError
 from pathcalc.substances.card import Card, VirialCorrelation
+from pathcalc.words import Saying
 
 P_MAX_CUBIC = 1.0e8
 """Pressure (Pa) above which a cubic equation draws a warning (common practice, no source)."""
@@ -34,10 +35,6 @@ _VIRIAL_LEAST_TR = 0.6
 
 _CODATA_SOURCE = "CODATA 2018, E. Tiesinga et al., Rev. Mod. Phys. 93 (2021) 025010"
 _ALPHA = r"\alpha=\left[1+m\left(1-\sqrt{T/T_c}\right)\right]^2"
-_NO_LIMIT = (
-    "no range is stated by the source; liquid volumes are rough (common experience: 5 to 15 %), "
-    "more so near the critical point"
-)
 
 
 def _gas_constant() -> Parameter:
@@ -57,11 +54,11 @@ def ideal_gas(card: Card, options: Options) -> Built:
     """p v = R T."""
     info = EquationInfo(
         "ideal-gas",
-        "Ideal gas",
+        Saying("equation.ideal-gas"),
         r"p\,v = R\,T",
         (_gas_constant(),),
         "B. P. E. Clapeyron, J. de l'École Polytechnique 14 (1834) 153",
-        "a limiting law for low density; it knows neither condensation nor a Joule–Thomson effect",
+        Saying("reach.ideal-gas"),
     )
     rho_c = _optional(card, "rho_c")
     return Built(
@@ -76,14 +73,14 @@ def ideal_gas(card: Card, options: Options) -> Built:
     )
 
 
-def _shift(card: Card, options: Options) -> tuple[float, str]:
+def _shift(card: Card, options: Options) -> tuple[float, str | Saying]:
     if options.volume_shift == "card":
         if card.volume_shift is None:
             raise UsageError(f"the card of {card.name!r} gives no volume_shift; give a molar volume, or 0")
         return card.volume_shift.value, card.sources.get(card.volume_shift.source, card.volume_shift.source)
     if isinstance(options.volume_shift, str):
         raise UsageError(f"volume_shift is a molar volume or 'card', not {options.volume_shift!r}")
-    return float(options.volume_shift), "given in the case"
+    return float(options.volume_shift), Saying("source.case")
 
 
 def _cubic(
@@ -104,32 +101,33 @@ def _cubic(
     residual = TwoConstantCubic(form, alpha, T_c, p_c, shift=shift)
     if shift <= -residual.b * 0.5 or shift >= 0.9 * residual.b:
         raise UsageError(f"volume_shift {shift:g} m3/mol is too large beside b = {residual.b:g} m3/mol")
-    derived = "from T_c and p_c: the critical point of the equation lies there"
+    derived: str | Saying = Saying("source.critical" if critical is None else "source.card")
     parameters = [
         _gas_constant(),
         *(
             (
-                Parameter("T_c", T_c, "K", "from a and b of the card"),
-                Parameter("p_c", p_c, "Pa", "from a and b of the card"),
+                Parameter("T_c", T_c, "K", Saying("source.a-and-b")),
+                Parameter("p_c", p_c, "Pa", Saying("source.a-and-b")),
             )
             if critical
             else (_from_card(card, "T_c", "T_c", "K"), _from_card(card, "p_c", "p_c", "Pa"))
         ),
         *extra,
-        Parameter("a_c", residual.a_c, "Pa m6/mol2", "the card" if critical else derived),
-        Parameter("b", residual.b, "m3/mol", "the card" if critical else derived),
+        Parameter("a_c", residual.a_c, "Pa m6/mol2", derived),
+        Parameter("b", residual.b, "m3/mol", derived),
     ]
+    cited: str | Saying = source
     if shift:
         formula += r"\,,\quad v \to v + c"
-        source += "; volume shift: A. Péneloux, E. Rauzy, R. Fréze, Fluid Phase Equilib. 8 (1982) 7"
+        cited = Saying("source.shift", source=source)
         parameters.append(Parameter("c", shift, "m3/mol", shift_source))
     notes: tuple[str, ...] = ()
-    text = _NO_LIMIT
+    text = Saying("reach.cubic")
     if math.isfinite(alpha.T_max):
-        text += f"; not used above {alpha.T_max:.6g} K, where its attraction would rise again"
+        text = Saying("reach.cubic.below", T=f"{alpha.T_max:.6g}")
     elif isinstance(alpha, SoaveAlpha) and alpha.m < 0.0:
         notes = (f"m = {alpha.m:.4g} is negative: the attraction grows with temperature; doubtful here",)
-    info = EquationInfo(name, title, formula, tuple(parameters), source, text)
+    info = EquationInfo(name, title, formula, tuple(parameters), cited, text)
     return Built(
         residual=residual,
         info=info,
@@ -255,18 +253,17 @@ def virial(card: Card, options: Options) -> Built:
         stated = (_VIRIAL_LEAST_TR * T_c, math.inf)
     rho_c = card.rho_c.value if card.has("rho_c") else p_c / (0.29 * R_CODATA * T_c)
     residual = VirialGas(B, C, rho_c)
-    source = B.source or "coefficients given in the case"
+    source = B.source or Saying("source.case-coefficients")
     if C is not None and C.source:
-        source += f"; C: {C.source}"
+        source = Saying("source.virial", B=source, C=C.source)
     formula = r"\frac{p\,v}{R\,T}=1+\frac{B(T)}{v}" + (r"+\frac{C(T)}{v^2}" if C is not None else "")
     info = EquationInfo(
         "virial",
-        "Virial equation",
+        Saying("equation.virial"),
         formula,
-        (_gas_constant(), Parameter(r"\rho_\mathrm{max}", residual.rho_max, "mol/m3", "see the range")),
+        (_gas_constant(), Parameter(r"\rho_\mathrm{max}", residual.rho_max, "mol/m3", Saying("source.range"))),
         source,
-        f"gas only, up to {residual.rho_max:.4g} mol/m3 and the first density where (∂p/∂ρ)_T = 0; "
-        "below T_c it describes vapour alone and does not know where condensation begins",
+        Saying("reach.virial", rho=f"{residual.rho_max:.4g}"),
     )
     return Built(
         residual=residual,

@@ -18,6 +18,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from pathcalc.equations.contract import R_CODATA, Array, PressureLimits, PressureTerms, Reduced, SaturationLine
+from pathcalc.words import Saying
 
 _NEWTON_STEPS = 60
 
@@ -29,7 +30,7 @@ class Coefficient:
     T_ref: float
     terms: tuple[tuple[float, float], ...]
     """Pairs (c_k, t_k)."""
-    source: str = ""
+    source: str | Saying = ""
 
     def in_y(self, T: Array) -> tuple[Array, Array, Array]:
         """X, y X_y, y² X_yy with y = 1/T."""

@@ -57,7 +57,7 @@ def basis_of(solution: Solution) -> Basis:
     info = model.info
     assert info is not None
     parameters = tuple(
-        Constant(p.symbol, say(f"parameter.{_PARAMETERS.get(p.symbol, 'other')}"), p.value, p.unit, p.source)
+        Constant(p.symbol, say(f"parameter.{_PARAMETERS.get(p.symbol, 'other')}"), p.value, p.unit, str(p.source))
         for p in info.parameters
     )
     ideal = model.ideal
@@ -70,11 +70,11 @@ def basis_of(solution: Solution) -> Basis:
         formula=card.formula,
         hazards=tuple(card.hazards),
         constants=tuple(constants),
-        equation_title=info.title,
+        equation_title=str(info.title),
         equation_formula=info.formula,
         parameters=parameters,
-        equation_source=info.source,
-        range_text=info.range_text,
+        equation_source=str(info.source),
+        range_text=str(info.range_text),
         ideal_gas_text=say_of("form", form),
         ideal_gas_source=card.sources.get(source, source) or say("source.case"),
         ideal_gas_range=reach,

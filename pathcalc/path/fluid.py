@@ -11,6 +11,7 @@ from pathcalc.equations.virial import Coefficient
 from pathcalc.equilibrium.datum import with_datum
 from pathcalc.errors import Finding, InvalidCaseError
 from pathcalc.substances import Card, read_card
+from pathcalc.words import Saying
 
 if TYPE_CHECKING:
     from pathcalc.case.model import Case
@@ -73,7 +74,7 @@ def _molar(q: Quantity, card: Card) -> float:
 def _series(coefficients: tuple[Quantity, ...], T_ref: float) -> Coefficient:
     terms = tuple((q.value, float(k)) for k, q in enumerate(coefficients))
     named = [q.source for q in coefficients if q.source is not None]
-    return Coefficient(T_ref, terms, named[0] if named else "given in the case")
+    return Coefficient(T_ref, terms, named[0] if named else Saying("source.case"))
 
 
 def _place(case: Case, *keys: str) -> tuple[str, int, int]:

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 
 from pathcalc import __version__
 from pathcalc.path.values import DELTA_KEYS, EXCHANGE_KEYS, STATE_KEYS
+from pathcalc.words import using
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
@@ -25,6 +26,8 @@ def as_dict(solution: Solution) -> dict[str, Any]:
     """Everything of contract 6."""
     case, path = solution.case, solution.path
     setting = path.setting
+    with using():
+        sources = sources_of(solution)
     flow = case.boundary == "flow"
     mass = None if setting.moles is None else float(setting.moles[0]) * path.model.M
     return {
@@ -36,7 +39,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
             "equation": path.model.equation,
             "molar_mass": path.model.M,
             "datum": case.fluid.datum,
-            "sources": sources_of(solution),
+            "sources": sources,
         },
         "boundary": case.boundary,
         "amount": {"value": mass, "unit": "kg/s" if flow else "kg"},
@@ -72,9 +75,9 @@ def _leg(solution: Solution, name: str) -> dict[str, Any]:
 
 
 def sources_of(solution: Solution) -> list[str]:
-    """Citations of the equation, of its ideal part and of the substance's constants, each once."""
+    """Citations of the equation, its ideal part and the substance's constants, each once, in the words in force."""
     path = solution.path
-    found = [path.model.info.source] if path.model.info is not None else []
+    found = [str(path.model.info.source)] if path.model.info is not None else []
     card = path.card
     for key in ("molar_mass", "T_c", "p_c", "acentric", "T_triple"):
         if card.has(key):

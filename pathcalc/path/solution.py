@@ -233,6 +233,13 @@ class Solution:
 
         return self._in_words("warnings", all_warnings)
 
+    @property
+    def sources_in_words(self) -> list[str]:
+        """The citations of the fluid's data with what is said beside them in the words in force, for a report."""
+        from pathcalc.path.results import sources_of
+
+        return sources_of(self)
+
     @cached_property
     def comparison(self) -> list[dict[str, Any]]:
         """The same path with other equations, where the case asks for it."""

@@ -14,7 +14,7 @@ from pathlib import Path
 
 from pathcalc.words.catalogue import Catalogue, catalogue, english
 
-__all__ = ["SYMBOLS", "WORDS", "Catalogue", "catalogue", "english", "in_force", "say", "say_of", "using"]
+__all__ = ["SYMBOLS", "WORDS", "Catalogue", "Saying", "catalogue", "english", "in_force", "say", "say_of", "using"]
 
 _CHOSEN: ContextVar[Catalogue | None] = ContextVar("words", default=None)
 
@@ -46,6 +46,25 @@ def say(key: str, **values: object) -> str:
 def say_of(table: str, name: str) -> str:
     """The text of a name that may have none, such as a phase or an equation: the name itself where it has none."""
     return in_force().texts.get(f"{table}.{name}", name)
+
+
+class Saying:
+    """A text that is said when it is read: ``str()`` gives it in the words then in force."""
+
+    def __init__(self, key: str, **values: object) -> None:
+        self.key, self.values = key, values
+
+    def __str__(self) -> str:
+        return say(self.key, **self.values)
+
+    def __repr__(self) -> str:
+        return f"Saying({', '.join([repr(self.key), *(f'{k}={v!r}' for k, v in self.values.items())])})"
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, Saying) and (self.key, self.values) == (other.key, other.values)
+
+    def __hash__(self) -> int:
+        return hash(self.key)
 
 
 class _Texts(Mapping[str, str]):

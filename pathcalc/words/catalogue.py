@@ -10,7 +10,7 @@ from pathlib import Path
 from string import Formatter
 from typing import Any
 
-from pathcalc.errors import UsageError
+from pathcalc.errors import Finding, InvalidWordsError, UsageError
 
 _ENGLISH = Path(__file__).with_name("en.toml")
 _LINE = re.compile(
@@ -38,36 +38,33 @@ def english() -> Catalogue:
     """The English catalogue, read once."""
     text = _ENGLISH.read_text(encoding="utf-8")
     plain = _plain(text)
-    return Catalogue(_ENGLISH.name, plain if plain is not None else dict(_flat(_parsed(text, _ENGLISH.name))))
+    return Catalogue(_ENGLISH.name, plain if plain is not None else dict(_flat(_parsed(text, _ENGLISH))))
 
 
 def catalogue(path: Path | str) -> Catalogue:
     """The catalogue of a file, its gaps filled with English.
 
-    Raises UsageError, a line a fault with its place (``file:line:column: error: …``), for a file that cannot be read,
-    is no TOML, has keys or values in braces that the English one has not, or lacks a value that the English one has.
+    Raises UsageError for a file that cannot be read, InvalidWordsError (with the place of every fault) for one that
+    is no TOML, has a key or a value in braces that the English one has not, or lacks a value that the English one has.
     """
     file = Path(path)
     try:
         with file.open("rb") as stream:
             data = stream.read(_MOST + 1)
         if len(data) > _MOST:
-            raise UsageError(f"{file}:1:1: error: the file is too large for a catalogue of words")
+            raise _invalid(file, 1, 1, "the file is too large for a catalogue of words", "file-too-large")
         text = data.decode("utf-8-sig")
     except OSError as error:
         raise UsageError(f"{file}: cannot be read: {error.strerror or error}") from error
     except UnicodeDecodeError as error:
-        raise UsageError(f"{file}:1:1: error: not UTF-8; save the catalogue as UTF-8") from error
+        raise _invalid(file, 1, 1, "not UTF-8; save the catalogue as UTF-8", "encoding") from error
     text = text.replace("\r\n", "\n")
-    own = dict(_flat(_parsed(text, str(file))))
+    own = dict(_flat(_parsed(text, file)))
     known = english().texts
     places = _places(text)
-    wrong = sorted(
-        (places.get(key, (1, 1)), fault) for key, value in own.items() for fault in _faults(key, value, known)
-    )
-    if wrong:
-        lines = "\n".join(f"{file}:{line}:{column}: error: {fault}" for (line, column), fault in wrong)
-        raise UsageError(lines)
+    faults = [(places.get(key, (1, 1)), *fault) for key, value in own.items() for fault in _faults(key, value, known)]
+    if faults:
+        raise InvalidWordsError([Finding(str(file), *place, text, code) for place, text, code in sorted(faults)])
     texts = {key: own.get(key, text) for key, text in known.items()}
     return Catalogue(file.name, texts, len(known) - len(own))
 
@@ -84,33 +81,38 @@ def placeholders(text: str) -> set[str]:
     return found
 
 
-def _faults(key: str, value: Any, known: Mapping[str, str]) -> Iterator[str]:
-    """What is wrong with one text, for a message."""
+def _invalid(file: Path, line: int, column: int, text: str, code: str) -> InvalidWordsError:
+    return InvalidWordsError([Finding(str(file), line, column, text, code)])
+
+
+def _faults(key: str, value: Any, known: Mapping[str, str]) -> Iterator[tuple[str, str]]:
+    """What is wrong with one text: messages with their codes."""
     if key not in known:
         import difflib
 
         near = difflib.get_close_matches(key, known, 1)
-        yield f"no text of the reports has the key {key!r}" + (f"; did you mean {near[0]!r}?" if near else "")
+        hint = f"; did you mean {near[0]!r}?" if near else ""
+        yield f"no text of the reports has the key {key!r}{hint}", "unknown-key"
         return
     if not isinstance(value, str):
-        yield f"{key} is no text; write it in quotes"
+        yield f"{key} is no text; write it in quotes", "wrong-type"
         return
     if not value.strip() and known[key].strip():
-        yield f"{key} is empty; leave the key out to keep the English text"
+        yield f"{key} is empty; leave the key out to keep the English text", "empty-value"
         return
     try:
         given = placeholders(value)
     except ValueError as error:
-        yield f"{key}: {error}"
+        yield f"{key}: {error}", "bad-braces"
         return
     wanted = placeholders(known[key])
     for names, what in ((wanted - given, "lacks"), (given - wanted, "has, unlike the English text,")):
         if names:
-            yield f"{key} {what} {', '.join(f'{{{name}}}' for name in sorted(names))}"
+            yield f"{key} {what} {', '.join(f'{{{name}}}' for name in sorted(names))}", "bad-braces"
 
 
-def _parsed(text: str, name: str) -> dict[str, Any]:
-    """TOML as tables. UsageError with the place where it is none."""
+def _parsed(text: str, file: Path) -> dict[str, Any]:
+    """TOML as tables. InvalidWordsError with the place where it is none."""
     import tomllib
 
     try:
@@ -118,9 +120,9 @@ def _parsed(text: str, name: str) -> dict[str, Any]:
     except tomllib.TOMLDecodeError as error:
         found = re.search(r"^(.*) \(at line (\d+), column (\d+)\)$", str(error))
         what, line, column = found.groups() if found else (str(error), str(text.count("\n") + 1), "1")
-        raise UsageError(f"{name}:{line}:{column}: error: {what[:1].lower()}{what[1:]}") from error
+        raise _invalid(file, int(line), int(column), what[:1].lower() + what[1:], "toml-syntax") from error
     except RecursionError as error:
-        raise UsageError(f"{name}:1:1: error: tables within tables without end") from error
+        raise _invalid(file, 1, 1, "tables within tables without end", "toml-syntax") from error
 
 
 def _flat(table: Mapping[str, Any], lead: str = "") -> Iterator[tuple[str, Any]]:

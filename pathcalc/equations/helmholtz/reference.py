@@ -9,6 +9,7 @@ from pathcalc.equations.helmholtz.residual import HelmholtzResidual
 from pathcalc.substances.card import Card
 from pathcalc.substances.reference import Reference
 from pathcalc.substances.reference_reader import read_reference
+from pathcalc.words import Saying
 
 FORMULAS = {
     "power": r"\sum n\,\delta^{d}\tau^{t}",
@@ -68,15 +69,20 @@ def describe(found: Reference) -> EquationInfo:
         Parameter("R", found.gas_constant, "J/(mol K)", source),
         Parameter("T_r", found.reducing.T, "K", source),
         Parameter(r"\rho_r", found.reducing.rho, "mol/m3", source),
-        Parameter("T_c", found.summit.T, "K", "critical point of the equation itself"),
-        Parameter("p_c", found.summit.p, "Pa", "critical point of the equation itself"),
-        Parameter(r"\rho_c", found.summit.rho, "mol/m3", "critical point of the equation itself"),
+        Parameter("T_c", found.summit.T, "K", Saying("source.own-critical")),
+        Parameter("p_c", found.summit.p, "Pa", Saying("source.own-critical")),
+        Parameter(r"\rho_c", found.summit.rho, "mol/m3", Saying("source.own-critical")),
         Parameter("N", float(count), "1", source),
     )
     valid, limits = found.valid, found.limits
-    text = (
-        f"stated for {valid.T_min:.6g} K to {valid.T_max:.6g} K, up to {valid.p_max / 1e6:.6g} MPa and "
-        f"{valid.rho_max:.6g} mol/m3; extrapolated to {limits.T_max:.6g} K and {limits.p_max / 1e6:.6g} MPa at most"
+    text = Saying(
+        "reach.reference",
+        low=f"{valid.T_min:.6g}",
+        high=f"{valid.T_max:.6g}",
+        p=f"{valid.p_max / 1e6:.6g}",
+        rho=f"{valid.rho_max:.6g}",
+        T_most=f"{limits.T_max:.6g}",
+        p_most=f"{limits.p_max / 1e6:.6g}",
     )
     return EquationInfo(
         name="reference",

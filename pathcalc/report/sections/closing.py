@@ -76,7 +76,8 @@ def made(ctx: Context) -> Section:
         (Cell(say("made.digest")), Cell(str(case["sha256"]), "code")),
         (Cell(say("made.equation")), Cell(str(fluid["equation"]))),
     ]
-    rows += [(Cell(say("made.sources")), Cell(_source(s))) for s in fluid["sources"]]
+    sources = pick(ctx.solution, "sources_in_words", fluid["sources"])
+    rows += [(Cell(say("made.sources")), Cell(_source(s))) for s in sources]
     columns = [Column(say("col.item")), Column(say("col.value"))]
     blocks = (ctx.table(say("made.caption"), columns, rows), Paragraph(say("made.repeat")))
     return Section("made", say("made.title"), blocks)

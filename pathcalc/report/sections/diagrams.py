@@ -37,7 +37,9 @@ def _figure(ctx: Context, name: str) -> Figure:
         "diagrams.alt",
         x=say(f"q.{x}"),
         y=say(f"q.{y}"),
-        scales=say("diagrams.alt.log", axes=" and ".join(log)) if log else "",
+        scales=say("diagrams.alt.log", axes=say("diagrams.and", first=log[0], last=log[1]) if len(log) > 1 else log[0])
+        if log
+        else "",
         states=states,
         dome=say("diagrams.alt.dome" if drawing.dome_shown else "diagrams.alt.nodome"),
     )

@@ -12,6 +12,7 @@ from pathcalc.report.context import Context, phase_words, pick
 from pathcalc.report.units import DELTA_KINDS, LEG_KINDS, STATE_KINDS, TOTAL_KINDS, kind_of
 from pathcalc.report.view import Block, Cell, Column, Heading, Notice, Paragraph, Section, Table
 from pathcalc.report.words import SYMBOLS, say
+from pathcalc.words import say_of
 
 _STATE_TABLES = (
     ("results.caption.states", ("T", "p", "v", "rho", "x"), True),
@@ -109,7 +110,11 @@ def _legs(ctx: Context) -> Table:
     columns += [ctx.column(f"col.{k}", SYMBOLS[k], LEG_KINDS[k]) for k in _FLOWS]
     rows = []
     for leg in ctx.legs:
-        row = [_way(ctx, leg), Cell(str(leg["name"]), mark=ctx.mark(leg["name"])), Cell(str(leg["path"]))]
+        row = [
+            _way(ctx, leg),
+            Cell(str(leg["name"]), mark=ctx.mark(leg["name"])),
+            Cell(say_of("path", str(leg["path"]))),
+        ]
         rows.append(row + [ctx.cell(LEG_KINDS[k], leg[k], f"{leg['name']}.{k}") for k in _FLOWS])
     return ctx.table(say("results.caption.legs", per=per_unit(ctx)), columns, rows, head=1)
 

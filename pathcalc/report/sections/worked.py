@@ -8,6 +8,7 @@ from pathcalc.report.context import Context
 from pathcalc.report.units import pretty
 from pathcalc.report.view import Block, Formulas, Heading, Paragraph, Section, Symbols, Worked
 from pathcalc.report.words import say
+from pathcalc.words import say_of
 
 _ABREAST = 5
 """States in one table, so that it fits a printed page."""
@@ -66,7 +67,7 @@ def _heading(ctx: Context, name: str) -> str:
     if leg is None:
         return name
     way = f"{ctx.state_number(leg['from'])}\u2009→\u2009{ctx.state_number(leg['to'])}"
-    return say("worked.leg", way=way, name=name, path=leg["path"])
+    return say("worked.leg", way=way, name=name, path=say_of("path", leg["path"]))
 
 
 def _states(ctx: Context) -> list[Block]:
