@@ -228,6 +228,15 @@ class Solution:
         return all(row["passed"] for row in (*self.checks, *self.limits))
 
     @cached_property
+    def streams(self) -> dict[str, dict[str, Any]]:
+        """Streams that leave by separation or join by mixing, by leg: amount (kg/s, negative where it leaves), T, p, v,
+
+        u, h, s, x.
+        """
+        self._of_one_lane("streams")
+        return {name: leg["other"] for name, leg in self.legs.items() if leg["other"] is not None}
+
+    @cached_property
     def state_parts(self) -> tuple[StateParts, ...]:
         """What the properties of the states are put together from, in the order of the path."""
         self._of_one_lane("parts of states")

@@ -40,7 +40,6 @@ def test_missed_limit_says_which(run: Run, cases: Path) -> None:
         (("solve", "--report", "hmtl", "good.yaml"), "did you mean 'html'?"),
         (("solve", "--report", ",", "good.yaml"), "names no format"),
         (("check", "empty"), "no case in this folder"),
-        (("explain", "good.yaml"), "Missing argument"),
         (("explain", "empty", "start.T"), "is a folder"),
         (("explain", "good.yaml", "valv.T"), "did you mean 'valve.T'?"),
         (("substances", "nitrogn"), "did you mean nitrogen"),
