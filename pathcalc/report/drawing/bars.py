@@ -51,24 +51,27 @@ def heat_and_work(ctx: Context, title: str, description: str) -> str:
     values = [float(scale.of(v) or 0.0) for row in rows for v in (row.heat, row.work)]
     words = [ctx.number(kind, v) for row in rows for v in (row.heat, row.work)]
     loose = len(rows) <= _LOOSE
-    left = _EDGE if loose else _EDGE + max(text.width(row.label, style.SMALLEST) for row in rows) + 8.0
+    left = _EDGE + 2.0 if loose else _EDGE + max(text.width(row.label, style.SMALLEST) for row in rows) + 8.0
     axis = _signed_axis(values, words, left)
     y = _legend(canvas, fills, edges, scale.unit, whole=kind == "total", flow=ctx.flow)
-    top = y
-    for row in rows:
-        if loose:
-            name = text.shortened(f"{row.label}  {row.name}", style.SMALLEST, style.WIDTH - 2 * _EDGE)
-            canvas.text(_EDGE, y + 13.0, name)
-            y += 18.0
-        else:
-            canvas.text(_EDGE, y + 18.0, row.label)
-        for key, value in (("heat", row.heat), ("work", row.work)):
-            number = float(scale.of(value) or 0.0)
-            _bar(canvas, axis, y, number, ctx.number(kind, value), fills[key], edges[key])
-            y += 15.0
-        y += 5.0 if loose else 3.0
     zero = float(axis(0.0))
-    canvas.line(np.array([[zero, top], [zero, y]]), stroke=style.INK)
+    for row in rows:
+        found = [(key, value) for key, value in (("heat", row.heat), ("work", row.work)) if value]
+        name = (
+            text.shortened(f"{row.label}  {row.name}", style.SMALLEST, style.WIDTH - 2 * _EDGE) if loose else row.label
+        )
+        base = y + (13.0 if loose else 11.5)
+        canvas.text(_EDGE, base, name)
+        if not found:
+            after = _EDGE + text.width(name, style.SMALLEST) + 12.0
+            canvas.text(after, base, say("diagrams.bars.nothing"), fill=style.SOFT)
+        y += 18.0 if loose else 0.0
+        for key, value in found:
+            _bar(canvas, axis, y, float(scale.of(value) or 0.0), ctx.number(kind, value), fills[key], edges[key])
+            canvas.line(np.array([[zero, y - 1.0], [zero, y + 15.0]]), stroke=style.INK)
+            y += 15.0
+        y += 15.0 if not found and not loose else 0.0
+        y += 5.0 if loose else 3.0
     return canvas.render(y + 4.0, title, description)
 
 
@@ -155,8 +158,9 @@ def exergy(ctx: Context, found: ExergyBalance, title: str, description: str) -> 
     edges = {"work": style.WORK, "heat": style.HEAT, "stream": style.SOFT}
     words = [ctx.number(kind, row.value) for row in rows]
     right = max(text.width(w, style.SMALLEST) for w in words)
-    names = [row.words for row in rows]
-    left = _EDGE + min(215.0, max(text.width(n, style.SMALLEST) for n in names) + 10.0)
+    indents = {"destroyed": 12.0}
+    wide = max(text.width(row.words, style.SMALLEST) + indents.get(row.kind, 0.0) for row in rows)
+    left = _EDGE + min(220.0, wide + 10.0)
     spans = _spans([float(scale.of(row.value) or 0.0) for row in rows], [row.kind for row in rows])
     low, high = min(0.0, *(min(s) for s in spans)), max(0.0, *(max(s) for s in spans))
     stop = style.WIDTH - _EDGE - right - 12.0
@@ -169,7 +173,7 @@ def exergy(ctx: Context, found: ExergyBalance, title: str, description: str) -> 
             destroyed = True
             canvas.text(_EDGE, y + 14.0, say("diagrams.exergy.destroyed"), fill=style.SOFT)
             y += 19.0
-        indent = 12.0 if row.kind == "destroyed" else 0.0
+        indent = indents.get(row.kind, 0.0)
         label = text.shortened(row.words, style.SMALLEST, left - _EDGE - indent - 6.0)
         canvas.text(_EDGE + indent, y + 14.0, label)
         x0, x1 = sorted((float(axis(a)), float(axis(b))))

@@ -13,7 +13,7 @@ from pathcalc.report.drawing.canvas import Canvas
 from pathcalc.report.drawing.labels import Room, around, beside, together
 from pathcalc.report.drawing.plane import ISOLINES, KINDS, Leg, Plane
 from pathcalc.report.drawing.scale import Scale
-from pathcalc.report.numbers import short
+from pathcalc.report.numbers import short, ten_to
 from pathcalc.report.textsafe import clean
 from pathcalc.report.words import SYMBOLS, say
 
@@ -24,6 +24,7 @@ _BELOW = 44.0
 _LINE = 17.0
 _MOST_NAMED = 18
 _SHORTEST_ARROW = 24.0
+_OUTSIDE = 12.0
 
 
 class Diagram:
@@ -39,6 +40,7 @@ class Diagram:
         self.sy: Scale = plane.scales[1].on(self.box[3], self.box[1])
         self._ticks = (self._ticks_x(), ticks_y)
         self.room = Room(self.box)
+        self._arrows: list[Array] = []
 
     def _ticks_x(self) -> list[tuple[float, str]]:
         """As many ticks as have room beside each other."""
@@ -56,6 +58,15 @@ class Diagram:
 
     def _on_sheet(self, values: Array) -> Array:
         return np.column_stack([self.sx(values[:, 0]), self.sy(values[:, 1])])
+
+    def _stroke(self, path: Array, tolerance: float = 0.15, **attributes: str | float) -> None:
+        """A line, thinned and cut off a little outside the view."""
+        runs = lines.cut(path, self.box, _OUTSIDE)
+        self.canvas.line(lines.joined([lines.thinned(run, tolerance) for run in runs]), closed=False, **attributes)
+
+    def _keep_off(self, path: Array, weight: float) -> None:
+        for run in lines.cut(path, self.box):
+            self.room.ink(lines.dots(run), weight)
 
     # drawing
 
@@ -88,14 +99,15 @@ class Diagram:
         canvas.line(np.array(grid).reshape(-1, 2), stroke=style.GRID, stroke_width=0.8)
         canvas.line(np.array([[x0, y0], [x0, y1], [x1, y1]]), stroke=style.INK)
         for value, label in self._ticks[0]:
-            canvas.text(float(self.sx(value)), y1 + 16.0, label, anchor="middle")
+            last = style.WIDTH - 0.5 * text.width(label, style.SMALLEST) - 1.0
+            canvas.text(min(float(self.sx(value)), last), y1 + 16.0, label, anchor="middle")
         for value, label in self._ticks[1]:
             canvas.text(x0 - 6.0, float(self.sy(value)) + 4.5, label, anchor="end")
-        for key, x, y, turned in (
-            (plane.x, 0.5 * (x0 + x1), y1 + 36.0, False),
-            (plane.y, 14.0, 0.5 * (y0 + y1), True),
+        for key, scale, x, y, turned in (
+            (plane.x, self.sx, 0.5 * (x0 + x1), y1 + 36.0, False),
+            (plane.y, self.sy, 14.0, 0.5 * (y0 + y1), True),
         ):
-            unit = self.unit_of(key)
+            unit = (f"{ten_to(scale.power)}\u00a0" if scale.power else "") + self.unit_of(key)
             canvas.text(x, y, say(f"q.{key}"), anchor="middle", turned=turned, symbol=SYMBOLS[key], unit=unit)
 
     def unit_of(self, key: str) -> str:
@@ -109,12 +121,12 @@ class Diagram:
             return
         outline = self._on_sheet(plane.dome)
         self._outline = outline
-        canvas.line(lines.thinned(outline), stroke=style.DOME, stroke_width=1.1, fill=style.DOME, fill_opacity=0.07)
-        self.room.ink(lines.dots(outline), 0.5)
+        inside = lines.thinned(lines.polygon_cut(outline, self.box, _OUTSIDE))
+        canvas.line(inside, closed=True, fill=style.DOME, fill_opacity=0.07)
+        self._stroke(outline, stroke=style.DOME, stroke_width=1.1)
+        self._keep_off(outline, 0.5)
         for quality in plane.qualities:
-            canvas.line(
-                lines.thinned(self._on_sheet(quality)), stroke=style.DOME, stroke_width=0.5, stroke_dasharray="6 4"
-            )
+            self._stroke(self._on_sheet(quality), stroke=style.DOME, stroke_width=0.5, stroke_dasharray="6 4")
         x, y = self._on_sheet(plane.critical[None, :])[0]
         if bool(lines.within(np.array([[x, y]]), self.box)[0]):
             cross = np.array([[x - 5, y], [x + 5, y], [np.nan, np.nan], [x, y - 5], [x, y + 5]])
@@ -125,7 +137,7 @@ class Diagram:
         found = []
         for value, points in self.plane.isolines:
             path = self._on_sheet(points)
-            self.canvas.line(lines.thinned(path, 0.25), stroke=style.ISO, stroke_width=0.8)
+            self._stroke(path, 0.25, stroke=style.ISO, stroke_width=0.8)
             found.append((value, lines.visible(path, self.box)))
         return [(value, path) for value, path in found if len(path) > 8]
 
@@ -134,29 +146,28 @@ class Diagram:
             for points in paths:
                 path = self._on_sheet(points)
                 dash = style.OTHER_DASHES[k % len(style.OTHER_DASHES)]
-                self.canvas.line(lines.thinned(path, 0.25), stroke=style.OTHER, stroke_width=1.0, stroke_dasharray=dash)
-                self.room.ink(lines.dots(path), 0.3)
+                self._stroke(path, 0.25, stroke=style.OTHER, stroke_width=1.0, stroke_dasharray=dash)
+                self._keep_off(path, 0.3)
 
     def _leg(self, i: int, leg: Leg, path: Array) -> None:
-        canvas, stroke = self.canvas, style.of_leg(i)
-        thin = lines.thinned(path)
-        self.room.ink(lines.dots(path), 2.0)
+        stroke = style.of_leg(i)
+        self._keep_off(path, 2.0)
         for stretch in self._in_two_phases(leg, path):
-            canvas.line(
-                lines.thinned(stretch),
+            self._stroke(
+                stretch,
                 stroke=stroke.colour,
                 stroke_width=style.BAND_WIDTH,
                 stroke_opacity=style.BAND_OPACITY,
             )
         if leg.way is not None:
-            way = lines.thinned(self._on_sheet(leg.way))
-            canvas.line(way, stroke=stroke.colour, stroke_width=1.1, stroke_dasharray="0.8 3", stroke_linecap="round")
-            self.room.ink(lines.dots(way), 0.8)
+            way = self._on_sheet(leg.way)
+            self._stroke(way, stroke=stroke.colour, stroke_width=1.1, stroke_dasharray="0.8 3", stroke_linecap="round")
+            self._keep_off(way, 0.8)
         if leg.states:
-            canvas.line(thin, stroke=stroke.colour, stroke_width=style.LEG_WIDTH, stroke_dasharray=stroke.dash)
+            self._stroke(path, stroke=stroke.colour, stroke_width=style.LEG_WIDTH, stroke_dasharray=stroke.dash)
         else:
-            canvas.line(thin, stroke=stroke.colour, stroke_width=style.OPEN_WIDTH, stroke_dasharray=stroke.dash)
-            canvas.line(thin, stroke=style.PAPER, stroke_width=style.OPEN_CORE)
+            self._stroke(path, stroke=stroke.colour, stroke_width=style.OPEN_WIDTH, stroke_dasharray=stroke.dash)
+            self._stroke(path, stroke=style.PAPER, stroke_width=style.OPEN_CORE)
 
     def _in_two_phases(self, leg: Leg, path: Array) -> list[Array]:
         """The stretches of a leg inside the dome: from its pieces, or for a straight line from the outline."""
@@ -174,13 +185,18 @@ class Diagram:
         length = lines.measured(seen)
         if len(seen) < 2 or length[-1] < _SHORTEST_ARROW:
             return None
-        spot = 0.55 * length[-1]
+        spots = [part * float(length[-1]) for part in (0.55, 0.4, 0.7, 0.3, 0.8)]
+        spot = next((s for s in spots if not self._arrow_there(lines.at(seen, length, s))), spots[0])
         head = lines.arrowhead(seen, length, spot, 12.0)
         leg, colour = self.plane.legs[i], style.of_leg(i).colour
         self.canvas.line(head, closed=True, stroke=colour, stroke_width=1.4, fill=colour if leg.states else style.PAPER)
         place = lines.at(seen, length, spot)
+        self._arrows.append(place)
         self.room.boxes.append(around(float(place[0]), float(place[1]), 11.0, 11.0))
         return place
+
+    def _arrow_there(self, spot: Array) -> bool:
+        return any(float(np.hypot(*(spot - other))) < 16.0 for other in self._arrows)
 
     def _states(self) -> None:
         spots = self._on_sheet(self.plane.points)
@@ -202,7 +218,7 @@ class Diagram:
         if not len(seen) or len(self.plane.legs) > _MOST_NAMED:
             return
         label = f"{self.plane.start_of(i) + 1}–{self.plane.end_of(i) + 1}"
-        wide, high = text.width(label, style.SMALLEST), 11.0
+        wide, high = text.width(label, style.SMALLEST), 12.0
         spots = []
         for k, part in enumerate((0.55, 0.45, 0.65, 0.35, 0.75, 0.25)):
             x, y = seen[min(int(part * len(seen)), len(seen) - 1)]
@@ -218,9 +234,11 @@ class Diagram:
     def _isoline_values(self, found: list[tuple[float, Array]]) -> None:
         for value, path in found:
             label = short(value, 4)
-            wide, high = text.width(label, style.SMALLEST), 11.0
+            wide, high = text.width(label, style.SMALLEST) + 6.0, 13.0
             x, y = self.room.settle(self._along(path, wide, high), wide, high)
-            self.canvas.text(x, y + 4.5, label, anchor="middle", halo=True, fill=style.SOFT)
+            left, top = x - 0.43 * wide, y - 0.5 * high
+            self.canvas.rect(left, top, 0.86 * wide, high, fill=style.PAPER, fill_opacity=0.8)
+            self.canvas.text(x, y + 4.5, label, anchor="middle", fill=style.SOFT)
 
     def _along(self, path: Array, wide: float, high: float) -> list[tuple[float, float, float]]:
         """Spots on a line for its value, the ends first."""
@@ -255,8 +273,9 @@ class Diagram:
             key = ISOLINES[plane.name]
             words = say(f"diagrams.iso.{key}", unit=self.unit_of(key))
             entries.append(legend.Entry("thin", words, style.Stroke(style.ISO, ""), key=True))
-        for k, (equation, _) in enumerate(plane.others):
+        for k, (equation, paths) in enumerate(plane.others):
             dash = style.OTHER_DASHES[k % len(style.OTHER_DASHES)]
-            words = say("diagrams.other", equation=equation)
+            seen = any(plane.in_view(path) for path in paths)
+            words = say("diagrams.other" if seen else "diagrams.other.unseen", equation=equation)
             entries.append(legend.Entry("thin", words, style.Stroke(style.OTHER, dash), key=True))
         return entries

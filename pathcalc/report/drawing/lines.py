@@ -65,18 +65,65 @@ def within(points: Array, box: Box, gap: float = 0.0) -> NDArray[np.bool_]:
     return (x >= box[0] - gap) & (x <= box[2] + gap) & (y >= box[1] - gap) & (y <= box[3] + gap)
 
 
+def cut(points: Array, box: Box, gap: float = 0.0) -> list[Array]:
+    """The stretches of a line inside the box (made wider by ``gap`` all round), in order (Liang and Barsky, 1984)."""
+    points = points[np.isfinite(points).all(axis=1)]
+    if len(points) < 2:
+        return []
+    a, way = points[:-1], np.diff(points, axis=0)
+    low, high = np.array(box[:2]) - gap, np.array(box[2:]) + gap
+    with np.errstate(all="ignore"):
+        one, two = (low - a) / way, (high - a) / way
+    still = way == 0.0
+    outside = (still & ((a < low) | (a > high))).any(axis=1)
+    enter = np.where(still, 0.0, np.minimum(one, two)).max(axis=1).clip(0.0, None)
+    leave = np.where(still, 1.0, np.maximum(one, two)).min(axis=1).clip(None, 1.0)
+    runs: list[list[Array]] = []
+    before = -2
+    for i in np.flatnonzero((enter < leave) & ~outside).tolist():
+        if before == i - 1 and enter[i] == 0.0 and leave[before] == 1.0:
+            runs[-1].append(a[i] + leave[i] * way[i])
+        else:
+            runs.append([a[i] + enter[i] * way[i], a[i] + leave[i] * way[i]])
+        before = i
+    return [np.array(run) for run in runs]
+
+
 def visible(points: Array, box: Box) -> Array:
     """The longest stretch of the line inside the box, as even points."""
-    even = dots(points, 2.0, 900)
-    if len(even) < 2:
-        return even
-    inside = np.concatenate([[False], within(even, box), [False]])
-    edges = np.flatnonzero(np.diff(inside.astype(int)))
-    if not edges.size:
-        return even[:0]
-    starts, stops = edges[::2], edges[1::2]
-    k = int(np.argmax(stops - starts))
-    return even[starts[k] : stops[k]]
+    runs = cut(points, box)
+    if not runs:
+        return points[:0]
+    return dots(runs[int(np.argmax([measured(run)[-1] for run in runs]))], 2.0, 900)
+
+
+def joined(runs: list[Array]) -> Array:
+    """Stretches as one array, a row of NaN between them."""
+    gap = np.full((1, 2), np.nan)
+    return np.concatenate([part for run in runs for part in (run, gap)]) if runs else np.empty((0, 2))
+
+
+def polygon_cut(points: Array, box: Box, gap: float) -> Array:
+    """The part of a closed outline inside the box (Sutherland and Hodgman, 1974)."""
+    for axis, limit, sign in (
+        (0, box[0] - gap, 1.0),
+        (0, box[2] + gap, -1.0),
+        (1, box[1] - gap, 1.0),
+        (1, box[3] + gap, -1.0),
+    ):
+        kept: list[Array] = []
+        side = sign * (points[:, axis] - limit)
+        for i in range(len(points)):
+            j = i - 1
+            if (side[i] >= 0.0) != (side[j] >= 0.0):
+                share = side[j] / (side[j] - side[i])
+                kept.append(points[j] + share * (points[i] - points[j]))
+            if side[i] >= 0.0:
+                kept.append(points[i])
+        if not kept:
+            return np.empty((0, 2))
+        points = np.array(kept)
+    return points
 
 
 def inside_outline(points: Array, outline: Array) -> NDArray[np.bool_]:

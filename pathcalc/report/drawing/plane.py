@@ -62,7 +62,7 @@ class Plane:
         self.legs = [self._leg(i, curve) for i, curve in enumerate(self._curves)]
         self.others = self._others()
         self.scales = self._scales(self._window(self._near_others()))
-        self.dome_shown = self._in_view(self.dome)
+        self.dome_shown = self.in_view(self.dome)
         self.isolines = self._isolines()
 
     # values
@@ -170,8 +170,9 @@ class Plane:
             near &= (places > -_OTHERS_REACH) & (places < 1.0 + _OTHERS_REACH)
         return cloud[near]
 
-    def _in_view(self, points: Array | None) -> bool:
-        if points is None:
+    def in_view(self, points: Array | None) -> bool:
+        """Whether any of the points lies within the axes."""
+        if points is None or not len(points):
             return False
         places = np.column_stack([scale(points[:, axis]) for axis, scale in enumerate(self.scales)])
         return bool(np.any(((places > 0.0) & (places < 1.0)).all(axis=1)))

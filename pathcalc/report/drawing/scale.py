@@ -49,9 +49,19 @@ class Scale:
         """The same axis laid between two other places."""
         return Scale(self.low, self.high, self.log, start, stop)
 
+    @property
+    def power(self) -> int:
+        """The power of ten that is taken out of the ticks' texts; 0 unless the values are small and evenly ticked."""
+        largest = max(abs(self.low), abs(self.high))
+        return math.floor(math.log10(largest)) if largest < 0.01 and not self._by_decades else 0
+
+    @property
+    def _by_decades(self) -> bool:
+        return self.log and math.log10(self.high / self.low) > _NARROW
+
     def ticks(self, most: int) -> list[tuple[float, str]]:
         """At most so many round values (three at least), each with its text; on long log axes powers of ten."""
-        if self.log and math.log10(self.high / self.low) > _NARROW:
+        if self._by_decades:
             return [(v, written(v)) for v in self._log_ticks(most)]
         return self._even_ticks(most)
 
@@ -63,11 +73,9 @@ class Scale:
                 size = step * 10.0**exponent
                 first, last = math.ceil(self.low / size - 1e-9), math.floor(self.high / size + 1e-9)
                 if last - first + 1 <= most:
-                    digits = max(0, -exponent + (1 if step == 2.5 else 0) - (1 if step == 10.0 else 0))
-                    values = [round(k * size, digits + 1) for k in range(first, last + 1)]
-                    if digits > 4:
-                        return [(v, written(v)) for v in values]
-                    return [(v, fixed(v, digits)) for v in values]
+                    digits = self.power - exponent + (1 if step == 2.5 else 0) - (1 if step == 10.0 else 0)
+                    values = [k * size for k in range(first, last + 1)]
+                    return [(v, fixed(v / 10.0**self.power, max(0, digits))) for v in values]
         return []
 
     def _log_ticks(self, most: int) -> list[float]:

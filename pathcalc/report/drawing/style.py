@@ -14,7 +14,7 @@ COLOURS = ("#1f4e8c", "#b3471d", "#0f7a6c", "#7a3b86", "#6f6212", "#4a5560")
 """Six inks, at least 4.5 to 1 against white, apart in lightness and in the red–green dimension."""
 DASHES = ("", "9 3.5", "2.6 2.6", "11 3 2.6 3", "6 2.4 1.6 2.4 1.6 2.4")
 """With six inks thirty different lines; numbers on the lines tell them apart in print."""
-OTHER_DASHES = ("1.2 2.6", "6 3", "8 2.5 1.2 2.5", "3 2 3 5")
+OTHER_DASHES = ("7 3", "3.5 2.2", "11 2.5 2 2.5", "7 2 2 2 2 2")
 """For the paths of other equations."""
 
 INK, SOFT, GRID, DOME, ISO, OTHER = "#1c242c", "#4d5965", "#e3e7ea", "#5b6670", "#9aa4ad", "#39434c"

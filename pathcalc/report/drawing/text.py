@@ -19,7 +19,8 @@ _ASCII = (
     260, 334, 584,
 )  # fmt: skip
 _OTHERS = {"\u2212": 584, "→": 1000, "…": 1000, "\u202f": 200, "\u00a0": 278, "°": 400, "³": 333, "²": 333, "·": 278}
-_SPARE = 1.05
+_SPARE = 1.16
+"""What DejaVu Sans, the usual stand-in where none of the family is installed, is wider; measured on labels."""
 
 
 def width(text: str, size: float, *, bold: bool = False) -> float:

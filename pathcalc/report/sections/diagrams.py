@@ -85,8 +85,10 @@ def _and(items: Sequence[str]) -> str:
     return ", ".join(items[:-1]) + (" and " if len(items) > 1 else "") + items[-1]
 
 
-def _heat_and_work(ctx: Context) -> Figure:
+def _heat_and_work(ctx: Context) -> Figure | Paragraph:
     rows, kind = bars.flows(ctx)
+    if not any(row.heat or row.work for row in rows):
+        return Paragraph(say("diagrams.bars.none"))
     listed = "; ".join(
         say(
             "diagrams.bars.alt.leg",
