@@ -110,7 +110,9 @@ def _signed_axis(values: Sequence[float], words: Sequence[str], left: float) -> 
 def _bar(canvas: Canvas, axis: Scale, y: float, value: float, words: str, fill: str, edge: str) -> None:
     zero, end = float(axis(0.0)), float(axis(value))
     if abs(end - zero) > 0.3:
-        canvas.rect(min(zero, end), y + 1.0, abs(end - zero), 12.0, fill=fill, stroke=edge, stroke_width=1)
+        canvas.rect(
+            min(zero, end), y + 1.0, abs(end - zero), 12.0, fill=fill, stroke=edge, stroke_width=1, data_bar=words
+        )
     anchor, gap = ("end", -5.0) if value < 0 else ("start", 5.0)
     canvas.text(end + gap, y + 11.5, words, anchor=anchor)
 
@@ -178,7 +180,8 @@ def exergy(ctx: Context, found: ExergyBalance, title: str, description: str) -> 
         canvas.text(_EDGE + indent, y + 14.0, label)
         x0, x1 = sorted((float(axis(a)), float(axis(b))))
         edge = edges.get(row.kind, style.INK)
-        canvas.rect(x0, y + 3.0, max(x1 - x0, 0.6), 13.0, fill=fills[row.kind], stroke=edge, stroke_width=1)
+        long = max(x1 - x0, 0.6)
+        canvas.rect(x0, y + 3.0, long, 13.0, fill=fills[row.kind], stroke=edge, stroke_width=1, data_bar=number)
         canvas.text(style.WIDTH - _EDGE, y + 14.0, number, anchor="end")
         step = float(axis(b))
         if row is not rows[-1]:

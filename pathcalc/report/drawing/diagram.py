@@ -82,10 +82,11 @@ class Diagram:
         for i, (leg, path) in enumerate(zip(self.plane.legs, legs, strict=True)):
             self._leg(i, leg, path)
         canvas.end()
-        arrows = [self._arrow(i, path) for i, path in enumerate(legs)]
+        for i, path in enumerate(legs):
+            self._arrow(i, path)
         self._states()
         for i, path in enumerate(legs):
-            self._leg_number(i, path, arrows[i])
+            self._leg_number(i, path)
         self._isoline_values(iso)
         height = self.box[3] + _BELOW
         height += legend.draw(canvas, self._legend(), height)
@@ -152,6 +153,7 @@ class Diagram:
     def _leg(self, i: int, leg: Leg, path: Array) -> None:
         stroke = style.of_leg(i)
         self._keep_off(path, 2.0)
+        self.canvas.begin(data_leg=self.way_of(i))
         for stretch in self._in_two_phases(leg, path):
             self._stroke(
                 stretch,
@@ -168,6 +170,11 @@ class Diagram:
         else:
             self._stroke(path, stroke=stroke.colour, stroke_width=style.OPEN_WIDTH, stroke_dasharray=stroke.dash)
             self._stroke(path, stroke=style.PAPER, stroke_width=style.OPEN_CORE)
+        self.canvas.end()
+
+    def way_of(self, i: int) -> str:
+        """The numbers of the states that leg ``i`` joins, as they stand on its line."""
+        return f"{self.plane.start_of(i) + 1}–{self.plane.end_of(i) + 1}"
 
     def _in_two_phases(self, leg: Leg, path: Array) -> list[Array]:
         """The stretches of a leg inside the dome: from its pieces, or for a straight line from the outline."""
@@ -179,21 +186,21 @@ class Diagram:
         held = even[lines.inside_outline(even, self._outline)]
         return [held] if len(held) > 2 else []
 
-    def _arrow(self, i: int, path: Array) -> Array | None:
-        """An arrowhead about the middle of the leg; its place, None for a leg too short to carry one."""
+    def _arrow(self, i: int, path: Array) -> None:
+        """An arrowhead about the middle of the leg, away from those of legs on the same line; none on a short leg."""
         seen = lines.visible(path, self.box)
         length = lines.measured(seen)
         if len(seen) < 2 or length[-1] < _SHORTEST_ARROW:
-            return None
+            return
         spots = [part * float(length[-1]) for part in (0.55, 0.4, 0.7, 0.3, 0.8)]
         spot = next((s for s in spots if not self._arrow_there(lines.at(seen, length, s))), spots[0])
         head = lines.arrowhead(seen, length, spot, 12.0)
         leg, colour = self.plane.legs[i], style.of_leg(i).colour
-        self.canvas.line(head, closed=True, stroke=colour, stroke_width=1.4, fill=colour if leg.states else style.PAPER)
+        fill = colour if leg.states else style.PAPER
+        self.canvas.line(head, closed=True, data_arrow=self.way_of(i), stroke=colour, stroke_width=1.4, fill=fill)
         place = lines.at(seen, length, spot)
         self._arrows.append(place)
         self.room.boxes.append(around(float(place[0]), float(place[1]), 11.0, 11.0))
-        return place
 
     def _arrow_there(self, spot: Array) -> bool:
         return any(float(np.hypot(*(spot - other))) < 16.0 for other in self._arrows)
@@ -212,12 +219,12 @@ class Diagram:
             self.canvas.text(at[0], at[1] + 5.0, label, halo=True)
         self.canvas.end()
 
-    def _leg_number(self, i: int, path: Array, arrow: Array | None) -> None:
+    def _leg_number(self, i: int, path: Array) -> None:
         """The leg's end states beside its line; a hair line leads to it where it had to move away."""
         seen = lines.visible(path, self.box)
         if not len(seen) or len(self.plane.legs) > _MOST_NAMED:
             return
-        label = f"{self.plane.start_of(i) + 1}–{self.plane.end_of(i) + 1}"
+        label = self.way_of(i)
         wide, high = text.width(label, style.SMALLEST), 12.0
         spots = []
         for k, part in enumerate((0.55, 0.45, 0.65, 0.35, 0.75, 0.25)):
@@ -238,7 +245,7 @@ class Diagram:
             x, y = self.room.settle(self._along(path, wide, high), wide, high)
             left, top = x - 0.43 * wide, y - 0.5 * high
             self.canvas.rect(left, top, 0.86 * wide, high, fill=style.PAPER, fill_opacity=0.8)
-            self.canvas.text(x, y + 4.5, label, anchor="middle", fill=style.SOFT)
+            self.canvas.text(x, y + 4.5, label, anchor="middle", data_isoline=label, fill=style.SOFT)
 
     def _along(self, path: Array, wide: float, high: float) -> list[tuple[float, float, float]]:
         """Spots on a line for its value, the ends first."""

@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
-from dataclasses import dataclass, field
+from collections.abc import Iterable, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,51 +11,65 @@ from pathcalc.report.drawing.lines import Box
 
 Array = NDArray[np.float64]
 
+_CELL = 2.0
 DIRECTIONS = np.deg2rad([45, 135, 315, 225, 90, 270, 0, 180, 67, 113, 247, 293])
 
 
-@dataclass
 class Room:
     """What is taken on a sheet: the frame to stay in, dots of lines with their weight, boxes of texts and signs."""
 
-    frame: Box
-    boxes: list[Box] = field(default_factory=list)
-    _dots: list[tuple[Array, float]] = field(default_factory=list)
+    def __init__(self, frame: Box) -> None:
+        self.frame = frame
+        self.boxes: list[Box] = []
+        columns, rows = (int((frame[i + 2] - frame[i]) / _CELL) + 1 for i in (0, 1))
+        self._cells = np.zeros((columns, rows))
+        self._sums: Array | None = None
 
     def ink(self, dots: Array, weight: float) -> None:
         """Lines that texts keep off, the more the heavier they weigh."""
         if len(dots):
-            self._dots.append((dots, weight))
+            columns, rows = self._cell(dots[:, 0], 0), self._cell(dots[:, 1], 1)
+            np.add.at(self._cells, (columns, rows), weight)
+            self._sums = None
 
-    def cost(self, box: Box) -> float:
-        """How badly a text in the box would stand: out of the frame, over texts, over lines."""
-        x0, y0, x1, y1 = box
-        f = self.frame
-        out = max(0.0, f[0] - x0) + max(0.0, f[1] - y0) + max(0.0, x1 - f[2]) + max(0.0, y1 - f[3])
-        total = 100.0 * out
-        for a0, b0, a1, b1 in self.boxes:
-            wide, high = min(x1, a1) - max(x0, a0), min(y1, b1) - max(y0, b0)
-            if wide > 0.0 and high > 0.0:
-                total += 30.0 + wide * high
-        for dots, weight in self._dots:
-            x, y = dots[:, 0], dots[:, 1]
-            hit = (x > x0) & (x < x1) & (y > y0) & (y < y1)
-            total += weight * float(np.count_nonzero(hit))
+    def _cell(self, places: Array, axis: int) -> NDArray[np.intp]:
+        cells = np.floor((places - self.frame[axis]) / _CELL)
+        return cells.clip(0, self._cells.shape[axis] - 1).astype(np.intp)
+
+    def _inked(self, boxes: Array) -> Array:
+        """The weight of the lines under each of the boxes (n, 4), from sums over the cells."""
+        if self._sums is None:
+            self._sums = np.pad(self._cells.cumsum(axis=0).cumsum(axis=1), ((1, 0), (1, 0)))
+        x0, y0 = self._cell(boxes[:, 0], 0), self._cell(boxes[:, 1], 1)
+        x1, y1 = self._cell(boxes[:, 2], 0) + 1, self._cell(boxes[:, 3], 1) + 1
+        total: Array = self._sums[x1, y1] - self._sums[x0, y1] - self._sums[x1, y0] + self._sums[x0, y0]
         return total
 
-    def settle(self, spots: Iterable[tuple[float, float, float]], width: float, height: float) -> tuple[float, float]:
-        """The best of the spots (x, y of the middle, its own cost) for a text of that size; it is taken then."""
-        best, least, chosen = (0.0, 0.0), np.inf, None
-        for x, y, own in spots:
-            box = around(x, y, width, height)
-            cost = own + self.cost(box)
-            if cost < least - 1e-9:
-                best, least, chosen = (x, y), cost, box
-                if least <= 0.0:
-                    break
-        if chosen is not None:
-            self.boxes.append(chosen)
-        return best
+    def costs(self, boxes: Array) -> Array:
+        """How badly a text in each of the boxes (n, 4) would stand: out of the frame, over texts, over lines."""
+        f = self.frame
+        low, high = boxes[:, :2], boxes[:, 2:]
+        out = np.maximum(np.array(f[:2]) - low, 0.0).sum(axis=1) + np.maximum(high - np.array(f[2:]), 0.0).sum(axis=1)
+        total: Array = 100.0 * out + self._inked(boxes)
+        if self.boxes:
+            taken = np.array(self.boxes)
+            shared = np.minimum(high[:, None], taken[None, :, 2:]) - np.maximum(low[:, None], taken[None, :, :2])
+            over = (shared > 0.0).all(axis=2)
+            total += np.where(over, 30.0 + shared.prod(axis=2), 0.0).sum(axis=1)
+        return total
+
+    def settle(self, spots: Sequence[tuple[float, float, float]], width: float, height: float) -> tuple[float, float]:
+        """The best of the spots (x, y of the middle, its own cost) for a text of that size; it is taken then.
+
+        Of equally good ones the first.
+        """
+        table = np.array(spots, dtype=float)
+        half = np.array([0.5 * width, 0.5 * height])
+        boxes = np.hstack([table[:, :2] - half, table[:, :2] + half])
+        k = int(np.argmin(np.round(table[:, 2] + self.costs(boxes), 6)))
+        x, y = float(table[k, 0]), float(table[k, 1])
+        self.boxes.append(around(x, y, width, height))
+        return x, y
 
 
 def around(x: float, y: float, width: float, height: float) -> Box:

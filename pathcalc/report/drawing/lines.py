@@ -70,6 +70,8 @@ def cut(points: Array, box: Box, gap: float = 0.0) -> list[Array]:
     points = points[np.isfinite(points).all(axis=1)]
     if len(points) < 2:
         return []
+    if within(points, box, gap).all():
+        return [points]
     a, way = points[:-1], np.diff(points, axis=0)
     low, high = np.array(box[:2]) - gap, np.array(box[2:]) + gap
     with np.errstate(all="ignore"):
