@@ -58,7 +58,9 @@ def heat_and_work(ctx: Context, title: str, description: str) -> str:
     for row in rows:
         found = [(key, value) for key, value in (("heat", row.heat), ("work", row.work)) if value]
         name = (
-            text.shortened(f"{row.label}  {row.name}", style.SMALLEST, style.WIDTH - 2 * _EDGE) if loose else row.label
+            text.shortened(f"{row.label}\u2002{row.name}", style.SMALLEST, style.WIDTH - 2 * _EDGE)
+            if loose
+            else row.label
         )
         base = y + (13.0 if loose else 11.5)
         canvas.text(_EDGE, base, name)

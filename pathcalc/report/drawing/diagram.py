@@ -265,7 +265,7 @@ class Diagram:
         for i, leg in enumerate(plane.legs if len(plane.legs) <= _MOST_NAMED else ()):
             way = f"{plane.start_of(i) + 1} → {plane.end_of(i) + 1}"
             kind = "leg" if leg.states else "open"
-            entries.append(legend.Entry(kind, f"{way}  {clean(self.ctx.legs[i]['name'])}", style.of_leg(i)))
+            entries.append(legend.Entry(kind, f"{way}\u2002{clean(self.ctx.legs[i]['name'])}", style.of_leg(i)))
         plain = style.Stroke(style.INK, "")
         if any(not leg.states for leg in plane.legs):
             entries.append(legend.Entry("open", say("diagrams.nostates"), plain, key=True))
