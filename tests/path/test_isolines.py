@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import numpy as np
 import pytest
 
@@ -31,6 +33,8 @@ def test_isolines_agree_with_an_independent_library() -> None:
     assert [line.value for line in lines if line.key == "p"] == pytest.approx([2e5, 12e5])
     seen = 0
     for line in lines:
+        for one, two in pairwise(line.pieces):
+            assert all(getattr(one, k)[-1] == getattr(two, k)[0] for k in ("T", "p", "v", "s", "h"))
         for piece in line.pieces:
             assert np.ptp(getattr(piece, line.key)) == 0.0
             if piece.phase == "two-phase":
