@@ -42,8 +42,8 @@ def isolines_of(solution: Solution) -> list[Isoline]:
     gap = _BEYOND_T * max(high_T - low_T, 0.02 * high_T)
     grid_T = np.linspace(max(low_T - gap, 0.5 * low_T), high_T + gap, POINTS)
     grid_p = np.geomspace(low_p / _BEYOND_P, high_p * _BEYOND_P, POINTS)
-    isobars = distinct(np.log(p), max(_SAME * float(np.log(high_p / low_p)), 0.002))
-    isotherms = distinct(T, max(_SAME * (high_T - low_T), 0.05))
+    isobars = distinct(np.log(p), max(_SAME * float(np.log(high_p / low_p)), 0.01))
+    isotherms = distinct(T, max(_SAME * (high_T - low_T), 0.1))
     with np.errstate(all="ignore"):
         return _lines(model, "p", p[isobars], grid_T) + _lines(model, "T", T[isotherms], grid_p)
 

@@ -163,8 +163,14 @@ def exergy(ctx: Context, found: ExergyBalance, title: str, description: str) -> 
     words = [ctx.number(kind, row.value) for row in rows]
     right = max(text.width(w, style.SMALLEST) for w in words)
     indents = {"destroyed": 12.0}
-    wide = max(text.width(row.words, style.SMALLEST) + indents.get(row.kind, 0.0) for row in rows)
-    left = _EDGE + min(220.0, wide + 10.0)
+    ways = {clean(leg["name"]): f"{ctx.state_number(leg['from'])} → {ctx.state_number(leg['to'])}" for leg in ctx.legs}
+    names = [
+        f"{ways[row.words]}\u2002{row.words}" if row.kind == "destroyed" and row.words in ways else row.words
+        for row in rows
+    ]
+    head = say("diagrams.exergy.destroyed")
+    wide = [text.width(n, style.SMALLEST) + indents.get(row.kind, 0.0) for n, row in zip(names, rows, strict=True)]
+    left = _EDGE + min(230.0, max(*wide, text.width(head, style.SMALLEST)) + 10.0)
     spans = _spans([float(scale.of(row.value) or 0.0) for row in rows], [row.kind for row in rows])
     low, high = min(0.0, *(min(s) for s in spans)), max(0.0, *(max(s) for s in spans))
     stop = style.WIDTH - _EDGE - right - 12.0
@@ -172,13 +178,13 @@ def exergy(ctx: Context, found: ExergyBalance, title: str, description: str) -> 
     canvas.text(style.WIDTH - _EDGE, 15.0, say("diagrams.exergy.unit", unit=scale.unit), anchor="end", fill=style.SOFT)
     y, top = 22.0, 22.0
     destroyed = False
-    for row, (a, b), number in zip(rows, spans, words, strict=True):
+    for row, name, (a, b), number in zip(rows, names, spans, words, strict=True):
         if row.kind == "destroyed" and not destroyed:
             destroyed = True
-            canvas.text(_EDGE, y + 14.0, say("diagrams.exergy.destroyed"), fill=style.SOFT)
+            canvas.text(_EDGE, y + 14.0, head, fill=style.SOFT)
             y += 19.0
         indent = indents.get(row.kind, 0.0)
-        label = text.shortened(row.words, style.SMALLEST, left - _EDGE - indent - 6.0)
+        label = text.shortened(name, style.SMALLEST, left - _EDGE - indent - 6.0)
         canvas.text(_EDGE + indent, y + 14.0, label)
         x0, x1 = sorted((float(axis(a)), float(axis(b))))
         edge = edges.get(row.kind, style.INK)

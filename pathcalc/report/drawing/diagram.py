@@ -215,7 +215,7 @@ class Diagram:
         for numbers, (x, y) in together(placed):
             label = ", ".join(str(n) for n in numbers)
             wide = text.width(label, style.STATE_SIZE, bold=True)
-            at = self.room.settle(beside(x, y, wide, 12.0, (5.0, 8.0, 12.0, 17.0, 24.0, 32.0)), wide, 12.0)
+            at = self.room.settle(beside(x, y, wide, 13.0, (6.0, 9.0, 13.0, 18.0, 25.0, 33.0)), wide, 13.0)
             self.canvas.text(at[0], at[1] + 5.0, label, halo=True)
         self.canvas.end()
 
