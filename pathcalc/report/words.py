@@ -297,18 +297,59 @@ WORDS: Final[dict[str, str]] = {
     "comparison.absent": "no solution",
     # diagrams
     "diagrams.title": "Diagrams",
-    "diagrams.lead": "States are numbered as in the state table. Lines are told apart by style and number; "
-    "arrows show the direction. The line of an irreversible leg is the way along which it was integrated, "
-    "not a row of states the fluid passed through.",
+    "diagrams.lead": "States are numbered as in the state table; each leg carries the numbers of the states it "
+    "joins, and an arrow in its direction. A double line is not a row of states: the fluid of such a leg (one with "
+    "losses, a throttle, an expansion without resistance) passes through none of the states along it, and where the "
+    "leg is integrated by another way than the straight one, that way is dotted.",
     "diagrams.absolute": "{unit} absolute",
-    "diagrams.none": "The case asks for no diagrams.",
+    "diagrams.none": "There is no leg to be drawn.",
     "diagrams.curve": "{y}–{x} diagram",
     "diagrams.alt": "{y} against {x}{scales}. States: {states}. {dome}",
     "diagrams.alt.log": ", logarithmic {axes}",
     "diagrams.alt.dome": "The two-phase region is outlined.",
     "diagrams.alt.nodome": "No two-phase region is drawn.",
+    "diagrams.alt.nostates": "Not a row of states: {legs}.",
+    "diagrams.alt.iso.p": "Isobars at {values} {unit}.",
+    "diagrams.alt.iso.T": "Isotherms at {values} {unit}.",
+    "diagrams.alt.others": "Thin lines show the same path by {equations}.",
     "diagrams.dome": "two-phase region",
-    "diagrams.dome.quality": "two-phase region, quality in steps of 0.2",
+    "diagrams.dome.quality": "two-phase region, x by 0.2",
+    "diagrams.nostates": "not a row of states",
+    "diagrams.way": "way of integration",
+    "diagrams.twophase": "leg in two phases",
+    "diagrams.iso.p": "isobars, {unit}",
+    "diagrams.iso.T": "isotherms, {unit}",
+    "diagrams.other": "path by {equation}",
+    "diagrams.other.unseen": "path by {equation}, not in view",
+    "diagrams.bars.title": "Heat and work of the legs",
+    "diagrams.bars.total": "Heat and work of the legs, for the whole amount.",
+    "diagrams.bars.e": "Heat and work of the legs, per unit of fluid.",
+    "diagrams.bars.whole": "Whole path: heat {heat}, work {work}.",
+    "diagrams.bars.sign": "to the right: into the fluid · to the left: out of it",
+    "diagrams.bars.none": "No leg takes in or gives off heat or work.",
+    "diagrams.bars.nothing": "no heat, no work",
+    "diagrams.bars.alt": "Heat and work of each leg, positive into the fluid. {rows}.",
+    "diagrams.bars.alt.leg": "{leg}: heat {heat}, work {work}",
+    "diagrams.exergy.title": "Exergy balance",
+    "diagrams.exergy.unit": "exergy, {unit}",
+    "diagrams.exergy.at": "at state {state}",
+    "diagrams.exergy.heat.in": "gained with heat",
+    "diagrams.exergy.heat.out": "given off with heat",
+    "diagrams.exergy.work.in": "gained with work",
+    "diagrams.exergy.work.out": "given off with work",
+    "diagrams.exergy.stream.in": "with a stream that joins",
+    "diagrams.exergy.stream.out": "with a stream that parts",
+    "diagrams.exergy.destroyed": "destroyed in",
+    "diagrams.exergy.rest": "the other legs",
+    "diagrams.exergy.caption.flow": "Exergy balance of the whole path, from the first state to the last. Exergy goes "
+    "with heat as q (1 − T₀/T), T being the reservoir’s temperature where a leg names one, else the fluid’s own.",
+    "diagrams.exergy.caption.closed": "Exergy balance of the whole path, from the first state to the last. Work is "
+    "counted less what displaces the surroundings, w + p₀ Δv; exergy goes with heat as q (1 − T₀/T), T being the "
+    "reservoir’s temperature where a leg names one, else the fluid’s own.",
+    "diagrams.exergy.alt": "Exergy from the first state to the last, step by step: {rows}.",
+    "diagrams.exergy.alt.destroyed": "destroyed in {leg}",
+    "diagrams.exergy.none": "No exergy balance is drawn: a state has no exergy against these surroundings, or the "
+    "amount changes along a path that gives none.",
     # cautions
     "cautions.title": "Cautions",
     "cautions.lead": "General reminders, chosen by the fluid and the states of this case. They are common "

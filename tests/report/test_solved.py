@@ -74,7 +74,7 @@ def test_page_carries_the_numbers_of_the_results(solved: Any) -> None:
         assert f">{work}<" in html or f">{work}\u00a0kW<" in html
         assert f"1 of 2 missed: totals.work = {work}\u00a0kW" in html
         assert "the surroundings’ 1.013\u00a0bar" in html
-        assert html.count("<svg") == 4
+        assert html.count("<svg") == 6
     if name == "cycle":
         assert "coefficient of performance, cooling" in html
         assert "The two-phase region is outlined." in html
