@@ -101,7 +101,7 @@ def scientific(x: float | None, digits: int = 2) -> str:
 
 def ten_to(exponent: int) -> str:
     """A power of ten, such as 10⁻³."""
-    return "10" + str(exponent).translate(_SUPERSCRIPTS)
+    return "10" + str(exponent).translate(SUPERSCRIPTS)
 
 
 def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DIGITS) -> int:
