@@ -17,6 +17,7 @@ COMMANDS = {
     "check": "Validate cases without solving them.",
     "solve": "Solve cases: summary or JSON, and reports.",
     "explain": "Show how one number came about.",
+    "regress": "Hold a library of cases against its stored results.",
     "substances": "List the substances, or show one in full.",
     "schema": "Print the JSON Schema of the case file.",
     "new": "Write a commented case to start from.",

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+import os
 from collections.abc import Mapping
 from functools import cache
 from pathlib import Path
@@ -13,6 +14,7 @@ if TYPE_CHECKING:
 
 CARDS = Path(__file__).resolve().parents[1] / "substances" / "cards"
 REFERENCE = "reference"
+BUILT_IN = "built-in:"
 GROUPS = ("pathcalc.legs", "pathcalc.equations", "pathcalc.substances")
 MAX_BYTES = 64_000_000
 
@@ -37,27 +39,25 @@ def software() -> Mapping[str, str]:
     return dict(sorted(found.items(), key=lambda item: (item[0] not in ("pathcalc", "numpy", "scipy"), item[0])))
 
 
-def files_of(case: Case, name: str) -> dict[str, str | None]:
-    """Digests of the case's own file and of all it includes or names, by path relative to its folder.
-
-    None stands for a file that was looked for and is not there (a published equation beside the case's own card).
-    """
-    found: dict[str, str | None] = {name: sha256(case.text.encode())}
-    for included, text in case.includes:
-        found[included] = sha256(text.encode())
-    if case.fluid.card_path is not None:
-        card = next((n for n in found if Path(n).name == Path(case.fluid.card_path or "").name), None)
-        if card is not None:
-            beside = (Path(card).parent / REFERENCE / Path(card).name).as_posix()
-            found.setdefault(beside, None)
+def files_of(case: Case, name: str) -> dict[str, str]:
+    """Digests of the case's own file and of all it includes, by path relative to its folder."""
+    found = {name: sha256(case.text.encode())}
+    own = _own_cards(case)
+    found.update({n: sha256(text.encode()) for n, text in case.includes if n not in own})
     return found
 
 
 def cards_of(case: Case) -> dict[str, str | None]:
-    """Digests of the built-in card of the case's substance and of its published equation, by path under the cards.
+    """Digests of the card of the case's substance and of its published equation.
 
-    A card of another package is named by that package's version instead, in the software.
+    Built-in cards go by ``built-in:`` and their path under the cards, the user's own by their path relative to the
+    case's folder. None stands for an equation that was looked for and is not there. A card of another package is
+    named by that package's version instead, in the software.
     """
+    own = _own_cards(case)
+    if own:
+        texts = dict(case.includes)
+        return {name: sha256(texts[name].encode()) if name in texts else None for name in own}
     if case.fluid.substance is None:
         return {}
     from pathcalc.substances.catalogue import card_path
@@ -65,7 +65,16 @@ def cards_of(case: Case) -> dict[str, str | None]:
     path = card_path(case.fluid.substance)
     if path.parent != CARDS:
         return {}
-    return {name: built_in(name) for name in (path.name, f"{REFERENCE}/{path.name}")}
+    return {f"{BUILT_IN}{name}": built_in(name) for name in (path.name, f"{REFERENCE}/{path.name}")}
+
+
+def _own_cards(case: Case) -> list[str]:
+    """Paths of the user's own card and of its published equation, relative to the case's folder."""
+    card = case.fluid.card_path
+    if card is None or case.path is None:
+        return []
+    name = Path(os.path.relpath(card, case.path.parent.resolve())).as_posix()
+    return [name, (Path(name).parent / REFERENCE / Path(name).name).as_posix()]
 
 
 @cache
@@ -90,14 +99,12 @@ def file_digest(path: Path) -> str | None:
 def changes(accepted: Mapping[str, Any], stored_software: Mapping[str, str], folder: Path) -> list[str]:
     """What differs from when a result was accepted: files, cards, software, a text each; empty if nothing does."""
     found = []
-    for name, digest in accepted["files"].items():
-        now = file_digest(folder / name)
+    for name, digest in {**accepted["files"], **accepted["cards"]}.items():
+        inside = name.removeprefix(BUILT_IN)
+        now = built_in(inside) if name.startswith(BUILT_IN) else file_digest(folder / name)
         if now != digest:
             what = "is new" if digest is None else "is gone or cannot be read" if now is None else "has changed"
-            found.append(f"{name} {what}")
-    for name, digest in accepted["cards"].items():
-        if built_in(name) != digest:
-            found.append(f"built-in card {name} has changed")
+            found.append(f"{'built-in card ' if inside != name else ''}{inside} {what}")
     found += software_changes({**stored_software, **accepted.get("plugins", {})}, software())
     return found
 
