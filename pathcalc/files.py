@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import os
+import shutil
 from collections.abc import Mapping
 from pathlib import Path
 
@@ -29,6 +30,8 @@ def write_all(folder: Path, files: Mapping[str, bytes]) -> list[Path]:
                 stream.write(content)
                 stream.flush()
                 os.fsync(stream.fileno())
+            if target.exists():
+                shutil.copymode(target, temporary)
         for temporary, target in begun:
             os.replace(temporary, target)
     except BaseException:

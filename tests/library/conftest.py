@@ -3,13 +3,12 @@
 from __future__ import annotations
 
 import subprocess
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from pathlib import Path
 from typing import Any
 
 import pytest
-
-Here = Callable[..., subprocess.CompletedProcess[str]]
+from library_cases import Here
 
 
 @pytest.fixture

@@ -6,10 +6,13 @@ import json
 import os
 import subprocess
 import sys
+from collections.abc import Callable
 from pathlib import Path
-from typing import Any
+from typing import Any, TypeAlias
 
 ROOT = Path(__file__).parents[2]
+Here: TypeAlias = Callable[..., subprocess.CompletedProcess[str]]
+"""The command line run in this process; see the fixture ``here``."""
 
 GAS = """\
 pathcalc: 1
