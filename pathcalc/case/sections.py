@@ -160,6 +160,16 @@ class SeriesField(_Field):
         return {"anyOf": [one, {"type": "array", "items": one, "minItems": 1}]}
 
 
+class Revision(Strict):
+    """An entry of the revision history."""
+
+    revision: Text = Field(description="Mark of the revision.", examples=["A"])
+    date: Annotated[str, DateField()] | None = Field(
+        default=None, description="Day, year-month-day.", examples=["2026-03-02"]
+    )
+    text: Text = Field(description="What changed, and why.", examples=["First issue."])
+
+
 class Record(Strict):
     """What a checker needs beside the numbers."""
 
@@ -177,6 +187,19 @@ class Record(Strict):
     )
     assumptions: list[Text] | None = Field(
         default=None, description="Assumptions, one text each.", examples=[["Steady flow."]]
+    )
+    unconfirmed: list[Text] | None = Field(
+        default=None,
+        description="Assumptions that are yet to be confirmed, one text each; the report shows them up front.",
+        examples=[["Inlet pressure, until the pipework is measured."]],
+    )
+    conclusions: list[Text] | None = Field(
+        default=None, description="What the author concludes, one text each.", examples=[["The booster will do."]]
+    )
+    revisions: list[Revision] | None = Field(
+        default=None,
+        description="History of the revisions, oldest first.",
+        examples=[[{"revision": "A", "date": "2026-03-02", "text": "First issue."}]],
     )
     notes: list[Text] | None = Field(default=None, description="Notes, one text each.", examples=[["See revision A."]])
     sources: dict[Text, Text] | None = Field(

@@ -105,6 +105,10 @@ def _step(i: int, step: Step) -> list[str]:
     rows += [("with " if "=" in numbers else lead, numbers)] if numbers else []
     rows += [(lead, readable(step.result))] if step.result else []
     lines += [f"   {'   ' if mark else ''}{mark}{text}" for mark, text in rows]
+    if step.table is not None:
+        grid = [[plain_maths(text) for text in row] for row in (step.table.heads, *step.table.rows)]
+        widths = [max(map(len, column)) for column in zip(*grid, strict=True)]
+        lines += ["   " + "   ".join(t.rjust(w) for t, w in zip(row, widths, strict=True)) for row in grid]
     lines += [f"   source: {step.source}"] if step.source else []
     lines += [f"   note: {step.note}"] if step.note else []
     return [*lines, ""]

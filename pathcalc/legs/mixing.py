@@ -77,6 +77,6 @@ def solve(leg: Mixing, run: LegRun) -> Outcome:
         nothing,
         reversible=False,
         moles=run.moles + extra,
-        carried_h=share * (joining.h - a.h),
-        carried_s=share * (joining.s - a.s),
+        other=joining,
+        other_share=share,
     )

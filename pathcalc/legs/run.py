@@ -70,8 +70,8 @@ class Outcome:
     ``exchange`` is evaluated once the integrals of the way are known. ``reversible`` says that the fluid passes
     through the states of the way, so that its heat is the integral of T ds. ``ideal`` is the end of the reversible
     leg that an isentropic efficiency refers to. ``moles`` is the amount from this leg on where it changes (phases
-    parted, streams joined); then the results of the leg count per amount leaving, and ``carried_h`` and
-    ``carried_s`` are the enthalpy and entropy that the other stream brings, per mole leaving.
+    parted, streams joined); then the results of the leg count per amount that goes on, and ``other`` is the stream
+    that leaves or joins, ``other_share`` its amount per amount that goes on: negative where it leaves.
     """
 
     end: Place
@@ -80,8 +80,20 @@ class Outcome:
     reversible: bool
     ideal: Place | None = None
     moles: Array | None = None
-    carried_h: Array | None = None
-    carried_s: Array | None = None
+    other: Place | None = None
+    other_share: Array | None = None
+
+    def carried(self, inlet: Place, key: str) -> Array:
+        """What the other stream brings of u, h, s or v, counted from the inlet, per mole that goes on; (n,).
+
+        With n_o moles of the other stream, n y_end − n_in y_in ∓ n_o y_o = n [Δy − carried]: of every extensive
+        property the balance over all streams is the change of the leg less what is carried.
+        """
+        if self.other is None or self.other_share is None:
+            return np.zeros(inlet.T.shape)
+        here: Array = getattr(inlet, key)
+        there: Array = getattr(self.other, key)
+        return self.other_share * (there - here)
 
 
 def nothing(i: Integrals) -> Exchange:

@@ -67,6 +67,6 @@ def solve(leg: Separation, run: LegRun) -> Outcome:
         nothing,
         reversible=False,
         moles=None if run.moles is None else run.moles * share,
-        carried_h=weight * (a.h - other.h),
-        carried_s=weight * (a.s - other.s),
+        other=other,
+        other_share=-weight,
     )

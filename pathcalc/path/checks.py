@@ -77,11 +77,6 @@ def _leg_checks(solution: Solution, solved: SolvedLeg) -> list[Check]:
     return rows
 
 
-def _carried(solved: SolvedLeg, carried: Array | None) -> Array:
-    """What streams that join or leave bring, per mole of the leg; nothing for most legs."""
-    return np.zeros(solved.ds.size) if carried is None else carried
-
-
 def _energy_scale(solution: Solution, solved: SolvedLeg) -> float:
     row = 2 if solution.path.setting.flow else 1
     magnitude = solved.integrals.magnitude
@@ -101,7 +96,7 @@ def _first_law(solution: Solution, solved: SolvedLeg, rounding: float) -> Check:
         heat, work = i["T_ds"], i["v_dp"] if flow else -i["p_dv"]
         error = _error_of(solved, "T_ds", "v_dp" if flow else "p_dv")
     else:
-        heat, work = solved.exchange.heat + _carried(solved, solved.outcome.carried_h), solved.exchange.work
+        heat, work = solved.exchange.heat + solved.outcome.carried(solved.inlet, "h"), solved.exchange.work
         error = _error_of(solved, "dh" if flow else "du")
     scale = _energy_scale(solution, solved)
     miss = abs(float((heat + work - change)[0])) / scale
@@ -153,7 +148,7 @@ def _exergy_balance(solution: Solution, solved: SolvedLeg, rounding: float) -> C
         change = (b.u - a.u) + p0 * (b.v - a.v) - T0 * entropy
         useful = solved.exchange.work + p0 * (b.v - a.v)
     with_heat = solved.exchange.heat - T0 * (solved.ds - solved.entropy_generated)
-    with_heat = with_heat + _carried(solved, solved.outcome.carried_h)
+    with_heat = with_heat + solved.outcome.carried(solved.inlet, "h")
     miss = useful + with_heat - T0 * solved.entropy_generated - change
     scale = _energy_scale(solution, solved) + float((T0 * scales(solution.path, solved)[0])[0])
     energy = "dh" if setting.flow else "du"
@@ -210,7 +205,7 @@ def _path_checks(solution: Solution) -> list[Check]:
     total = change = scale = 0.0
     for leg in path.legs:
         share = 1.0 if leg.moles is None else float(leg.moles[0])
-        brought = leg.exchange.heat + leg.exchange.work + _carried(leg, leg.outcome.carried_h)
+        brought = leg.exchange.heat + leg.exchange.work + leg.outcome.carried(leg.inlet, "h")
         total += share * float(brought[0])
         change += share * float((getattr(leg.end, energy) - getattr(leg.inlet, energy))[0])
         scale += share * _energy_scale(solution, leg)

@@ -6,15 +6,21 @@ from importlib import import_module
 from typing import TYPE_CHECKING
 
 from pathcalc.path.closed_forms import closed_form_steps
-from pathcalc.path.maths import bracketed, number, shown, signed, uncertain, with_unit
+from pathcalc.path.cycle_steps import cycle_steps
+from pathcalc.path.hand_steps import hand_steps
+from pathcalc.path.maths import bracketed, number, rough, shown, signed, uncertain, with_unit
 from pathcalc.path.state_steps import exergy_steps, start_steps, state_steps
 from pathcalc.path.steps import Step
+from pathcalc.path.streams import OTHER_NOTE, share_numbers, stream_steps
 
 if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
     from pathcalc.path.solver import SolvedLeg
 
-MAXWELL = "Maxwell relation of the Helmholtz energy, (∂s/∂v)_T = (∂p/∂T)_v; any textbook of thermodynamics"
+MAXWELL = (
+    "Maxwell relation of the Helmholtz energy, (∂s/∂v)_T = (∂p/∂T)_v: H. B. Callen, Thermodynamics and an Introduction "
+    "to Thermostatistics, 2nd edition (Wiley 1985), chapter 7"
+)
 GENERAL_DS = (
     r"\Delta s=\int\left[\frac{c_v}{T}\,\mathrm{d}T+\left(\frac{\partial p}{\partial T}\right)_v\mathrm{d}v\right]"
 )
@@ -22,7 +28,22 @@ GENERAL_DU = (
     r"\Delta u=\int\left[c_v\,\mathrm{d}T+\left(T\left(\frac{\partial p}{\partial T}\right)_v-p\right)"
     r"\mathrm{d}v\right]"
 )
-DOME_DS = r"\Delta s=\frac{\mathrm{d}p_\mathrm{sat}}{\mathrm{d}T}\,\Delta v"
+IN_DOME = {
+    "s": r"\Delta s=\int\frac{\mathrm{d}p_\mathrm{sat}}{\mathrm{d}T}\,\mathrm{d}v",
+    "u": r"\Delta u=\int\left(T\,\frac{\mathrm{d}p_\mathrm{sat}}{\mathrm{d}T}-p_\mathrm{sat}\right)\mathrm{d}v",
+    "h": r"\Delta h=\int T\,\frac{\mathrm{d}p_\mathrm{sat}}{\mathrm{d}T}\,\mathrm{d}v",
+}
+"""At constant temperature and pressure between the two phases."""
+SPLIT = "The first integral runs over the stretches of one phase, the second over the others."
+CLAPEYRON = (
+    " A two-phase piece by Clapeyron: the entropy change is the slope of the vapour pressure times the change of "
+    "volume."
+)
+ALONG = (
+    "In the two-phase region the change is taken at constant temperature to the boundary (Clapeyron), along the "
+    "boundary by the differential of one phase, and back (Clapeyron): the integrand above holds for the stretches of "
+    "one phase."
+)
 KINDS = {"T": "T", "p": "p", "v": "v", "u": "energy", "h": "energy", "s": "entropy", "a": "energy", "g": "energy"}
 
 
@@ -32,10 +53,12 @@ def explain_all(solution: Solution) -> dict[str, list[Step]]:
     found.update(start_steps(solution))
     found["start.exergy"] = exergy_steps(solution, "start")
     for solved in solution.path.legs:
-        found.update(_leg(solution, solved))
-        found.update(state_steps(solution, solved))
+        for part in (_leg(solution, solved), stream_steps(solution, solved), state_steps(solution, solved)):
+            for address, steps in part.items():
+                found[address] = [*found.get(address, []), *steps]
         found[f"{solved.leg.name}.exergy"] = exergy_steps(solution, solved.leg.name)
     found.update(_totals(solution))
+    found.update(cycle_steps(solution))
     return found
 
 
@@ -74,11 +97,25 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
     own = all(segment.own for segment in solved.outcome.segments)
     note = "" if own else "Irreversible: integrated along an equivalent reversible way between the same end states."
     pieces = solution.pieces(solved.leg.name)
-    if solution.path.model.equation == "reference" and any(piece["phase"] == "liquid" for piece in pieces):
+    if (
+        key == "s"
+        and solution.path.model.equation == "reference"
+        and any(piece["phase"] == "liquid" for piece in pieces)
+    ):
         note = (
             note + " The heat capacity of cold liquid is reached from saturated vapour across the saturation line "
             "(Clapeyron's relation differentiated): the isotherm itself runs through the unstable region."
         ).strip()
+    wet = [piece["phase"] == "two-phase" for piece in pieces]
+    if any(wet):
+        level = all(piece.family.level_in_dome for piece in solved.integrals.pieces if piece.in_dome)
+        special = IN_DOME[key] if all(wet) and level else None
+        if not level:
+            note = f"{note} {ALONG}".strip()
+        elif not all(wet):
+            one_phase = general.partition("=")[2]
+            general = rf"{general.partition('=')[0]}={one_phase}+{IN_DOME[key].partition('=')[2]}"
+            note = f"{note} {SPLIT}".strip()
     steps = [
         Step(
             title="Route 1: integral along the path",
@@ -99,9 +136,7 @@ def _route_1(solution: Solution, solved: SolvedLeg, key: str, general: str, spec
                 formula=rf"\Delta {key}=\sum_i \Delta {key}_i",
                 numbers="+".join(bracketed(part, kind) for part in parts),
                 result=with_unit(sum(parts), kind),
-                note="In order: " + ", ".join(piece["phase"] for piece in pieces) + ". "
-                "A two-phase piece by Clapeyron: the entropy change is the slope of the vapour pressure times the "
-                "change of volume.",
+                note=f"In order: {', '.join(piece['phase'] for piece in pieces)}." + (CLAPEYRON if any(wet) else ""),
             )
         )
     return steps
@@ -116,13 +151,14 @@ def _route_2(solution: Solution, solved: SolvedLeg, key: str) -> Step:
         numbers=rf"{shown(b[key], kind)}-{bracketed(a[key], kind)}",
         result=with_unit(b[key] - a[key], kind),
         note=f"Closure of the leg (largest relative difference of the two routes over s, u and h): "
-        f"{leg['maxwell']['closure']:.1e}; error estimate {leg['maxwell']['error']:.1e}.",
+        f"{rough(leg['maxwell']['closure'])}; error estimate {rough(leg['maxwell']['error'])}.",
     )
 
 
 def _entropy(solution: Solution, solved: SolvedLeg) -> list[Step]:
     special = formulas_of(solved).get("ds")
     steps = _route_1(solution, solved, "s", GENERAL_DS, special)
+    steps += hand_steps(solution.hand_sums[solved.leg.name])
     steps += closed_form_steps(solution, solved, "s")
     return [*steps, _route_2(solution, solved, "s")]
 
@@ -296,14 +332,14 @@ def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
             )
         ]
     carried = leg["delta"]["s"] - leg.entropy_generated
-    if solved.outcome.carried_s is not None:
+    if solved.outcome.other is not None:
         return [
             Step(
                 title="Entropy generated, streams parting or joining",
-                formula=r"s_\mathrm{gen}=\Delta s-s_\mathrm{carried}",
-                numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{bracketed(carried, 'entropy')}",
-                result=with_unit(leg.entropy_generated, "entropy"),
-                note="Per kilogram leaving; the carried entropy is what the other stream brings, weighed by amounts.",
+                formula=r"s_\mathrm{gen}=\Delta s-r\,(s_o-s_1)",
+                numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{share_numbers(solution, solved, 's')}",
+                result=uncertain(leg.entropy_generated, abs(carried) * 1e-12, "entropy"),
+                note=OTHER_NOTE,
             )
         ]
     return [

@@ -60,3 +60,14 @@ def uncertain(value: float, error: float, kind: str) -> str:
     if abs(value) <= error:
         value = 0.0
     return rf"{with_unit(value, kind)}\quad(\text{{integration error}}\le {number(error * _SCALE[kind], 2)})"
+
+
+_RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
+
+
+def rough(value: float) -> str:
+    """A small number in running text, two digits: 9.6×10⁻⁵."""
+    if value == 0.0 or not math.isfinite(value):
+        return "0" if value == 0.0 else "undefined"
+    mantissa, exponent = f"{value:.1e}".split("e")
+    return f"{mantissa}×10{str(int(exponent)).translate(_RAISED)}"

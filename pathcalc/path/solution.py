@@ -26,7 +26,11 @@ from pathcalc.path.values import (
 )
 
 if TYPE_CHECKING:
-    from pathcalc.path.steps import Basis, Curve, Dome, Step
+    from pathcalc.path.steps import Basis, Curve, Dome, HandSum, StateParts, Step
+
+
+_NO_QUANTITY = frozenset({"name", "path", "from", "to", "delta", "maxwell", "total", "carried", "other"})
+"""Parts of the record of a leg that are no single number."""
 
 
 class Solution:
@@ -95,7 +99,7 @@ class Solution:
 
     @cached_property
     def _total_arrays(self) -> dict[str, Any]:
-        setting, M = self.path.setting, self.path.model.M
+        setting = self.path.setting
         if setting.moles is None:
             nothing: dict[str, Any] = dict.fromkeys(EXCHANGE_KEYS)
             return {**nothing, "delta": dict.fromkeys(DELTA_KEYS)}
@@ -107,20 +111,11 @@ class Solution:
             totals[key] = total
         ends = {"T": (self.path.start.T, self._last.T), "p": (self.path.start.p, self._last.p)}
         delta: dict[str, Any] = {key: last - first for key, (first, last) in ends.items()}
-        first, last = self._amount_at_ends
-        delta["v"] = (self._last.v * last - self.path.start.v * first) / M
-        for key in EXTENSIVE_ENERGIES:
-            changes = (leg["delta"][key] * leg["amount"] for leg in self._leg_arrays.values())
+        for key in ("v", *EXTENSIVE_ENERGIES):
+            changes = ((leg["delta"][key] - leg["carried"][key]) * leg["amount"] for leg in self._leg_arrays.values())
             delta[key] = sum(changes, np.zeros(setting.n))
         ok = setting.status.ok
         return {**totals, "delta": {key: np.where(ok, delta[key], np.nan) for key in DELTA_KEYS}}
-
-    @property
-    def _amount_at_ends(self) -> tuple[Any, Any]:
-        """Mass (or mass flow) at the start and after the last leg."""
-        M = self.path.model.M
-        first, last = self.path.setting.moles, self.path.legs[-1].moles
-        return (None, None) if first is None or last is None else (first * M, last * M)
 
     @property
     def _last(self) -> Place:
@@ -128,7 +123,11 @@ class Solution:
 
     @cached_property
     def totals(self) -> Record:
-        """Sums over the legs in J or W, J/K or W/K; None where the case gives no amount."""
+        """Sums over the legs in J or W, J/K or W/K; None where the case gives no amount.
+
+        ``delta`` is the balance over all streams: what leaves at the end and by separation, less what comes in at the
+        start and by mixing (of T and p the difference of the ends), so that heat and work add up to it.
+        """
         found: Record = self._out(self._total_arrays)
         return found
 
@@ -158,12 +157,14 @@ class Solution:
         places: list[Mapping[str, Any]] = []
         if name == "totals":
             places = [self.totals]
+        elif name == "cycle" and self.cycle is not None:
+            places = [self.cycle]
         else:
             places = [where[name] for where in (self.states, self.legs) if name in where]
         for place in places:
             if key.startswith("delta.") and "delta" in place and key[6:] in place["delta"]:
                 return place["delta"][key[6:]]
-            if key in place and key not in ("name", "path", "from", "to", "delta", "maxwell", "total"):
+            if key in place and key not in _NO_QUANTITY:
                 return place[key]
         raise UsageError(f"no result {address!r}; {self._nearest(address)}")
 
@@ -174,6 +175,7 @@ class Solution:
         known += [f"{name}.{key}" for name in self.legs for key in EXCHANGE_KEYS]
         known += [f"{name}.delta.{key}" for name in self.legs for key in DELTA_KEYS]
         known += [f"totals.{key}" for key in EXCHANGE_KEYS]
+        known += [f"cycle.{key}" for key in self.cycle or ()]
         near = difflib.get_close_matches(address, known, 1)
         return f"did you mean {near[0]!r}?" if near else "write <state or leg>.<key> or totals.<key>"
 
@@ -224,6 +226,22 @@ class Solution:
     def passed(self) -> bool:
         """True if every check and every limit is met."""
         return all(row["passed"] for row in (*self.checks, *self.limits))
+
+    @cached_property
+    def state_parts(self) -> tuple[StateParts, ...]:
+        """What the properties of the states are put together from, in the order of the path."""
+        self._of_one_lane("parts of states")
+        from pathcalc.path.state_parts import parts_of
+
+        return parts_of(self)
+
+    @cached_property
+    def hand_sums(self) -> dict[str, tuple[HandSum, ...]]:
+        """The integrals of every leg as sums for a pocket calculator, by leg."""
+        self._of_one_lane("sums")
+        from pathcalc.path.hand_sums import hand_sums
+
+        return {solved.leg.name: hand_sums(self.path, solved) for solved in self.path.legs}
 
     @cached_property
     def explanations(self) -> dict[str, list[Step]]:

@@ -150,8 +150,8 @@ def _solve_leg(setting: Setting, leg: LegModel, inlet: Place, inlet_name: str, m
     ds = integrals["ds"]
     own_temperature = outcome.reversible and getattr(leg, "reservoir", None) is None
     generated = np.zeros(setting.n) if own_temperature else ds - exchange.entropy_in
-    if outcome.carried_s is not None:
-        generated = generated - outcome.carried_s
+    if outcome.other is not None:
+        generated = generated - outcome.carried(inlet, "s")
     noise = 64.0 * np.finfo(float).eps * integrals.magnitude[0]
     generated = np.where(np.isfinite(ds), np.where(np.abs(generated) <= noise, 0.0, generated), np.nan)
     moles = moles if outcome.moles is None else outcome.moles

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from pathcalc.equations.properties import thermal
 from pathcalc.legs.run import Place
 from pathcalc.path.maths import bracketed, number, shown, with_unit
+from pathcalc.path.property_steps import property_steps
 from pathcalc.path.steps import Step
 from pathcalc.quantities.values import Quantity, Relative
 
@@ -50,10 +51,24 @@ def start_steps(solution: Solution) -> dict[str, list[Step]]:
                 title="Given" if key in case.start else "From the equation of state at the given state",
                 formula=rf"{symbol}_1",
                 result=with_unit(value, kind),
-                source="; ".join(citations.get(s, s) for s in sources) if key in case.start else "",
+                source="; ".join(dict.fromkeys(citations.get(s, s) for s in sources)) if key in case.start else "",
                 note=f"start: {given}; phase {state.phase}",
             )
         ]
+    return _with_properties(solution, "start", solution.path.start, found)
+
+
+def _with_properties(
+    solution: Solution, name: str, place: Place, fixed: dict[str, list[Step]]
+) -> dict[str, list[Step]]:
+    """What fixes the state, then how its properties follow; the volume of one phase is what the equation is solved
+
+    for, so that it is checked by the pressure."""
+    parts = next(item for item in solution.state_parts if item.state == name)
+    found = dict(fixed)
+    for key, steps in property_steps(solution, name, parts, place).items():
+        address = f"{name}.{key}"
+        found[address] = [*found.get(address, []), *steps]
     return found
 
 
@@ -77,7 +92,7 @@ def state_steps(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
                 note=f"fixed by {fixed}; phase {state.phase}",
             )
         )
-    return found
+    return _with_properties(solution, name, solved.end, found)
 
 
 def _quality_steps(solution: Solution, name: str, place: Place) -> list[Step]:
@@ -117,6 +132,11 @@ def _what_fixes(solution: Solution, solved: SolvedLeg) -> str:
             parts.append(f"{key.replace('_', ' ')} {item.text}")
     if leg.path == "adiabatic" and len(parts) == 1:
         parts.insert(0, "s as at the inlet")
+    keep = getattr(leg, "keep", None)
+    if keep is not None:
+        parts += ["T as at the inlet", f"saturated {keep}"]
+    if leg.path == "mixing":
+        parts += ["the mean enthalpy of the streams", "the lower of their pressures"]
     return ", ".join(parts)
 
 

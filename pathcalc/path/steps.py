@@ -14,13 +14,20 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
 
+class StepTable(NamedTuple):
+    """Values a step is summed from: LaTeX heads and rows of numbers in LaTeX, one text a column."""
+
+    heads: tuple[str, ...]
+    rows: tuple[tuple[str, ...], ...]
+
+
 @dataclass(frozen=True)
 class Step:
     """One step of a worked calculation: the symbols, then the numbers, then the result.
 
     ``formula`` and ``numbers`` are LaTeX without dollar signs (``numbers`` is the formula with the case's
     numbers put in). ``result`` is LaTeX when it holds a backslash, ``^``, ``_`` or a brace, plain text
-    otherwise. An empty string leaves that line out.
+    otherwise. An empty string leaves that line out. ``table`` holds the values that ``numbers`` are taken from.
     """
 
     title: str
@@ -29,6 +36,52 @@ class Step:
     result: str = ""
     source: str = ""
     note: str = ""
+    table: StepTable | None = None
+
+
+class Part(NamedTuple):
+    """One figure a property is worked out from: a key, its symbol (LaTeX), its unit and its value in that unit."""
+
+    key: str
+    symbol: str
+    unit: str
+    value: float
+
+
+@dataclass(frozen=True)
+class StateParts:
+    """What the properties of a state are put together from; ``wet`` where two phases coexist."""
+
+    state: str
+    wet: bool
+    parts: tuple[Part, ...]
+
+    def __getitem__(self, key: str) -> float:
+        """The value of a part by its key. KeyError if there is none."""
+        for part in self.parts:
+            if part.key == key:
+                return part.value
+        raise KeyError(key)
+
+
+@dataclass(frozen=True)
+class HandSum:
+    """A stretch of a leg as a sum that a person can do, K, kPa, m3/kg, kJ/kg, kJ/(kg K).
+
+    In one phase: an odd number of points at equal steps of the coordinate x from 0 to 1, with the integrand ds/dx,
+    for Simpson's rule. In the dome at constant temperature: no points, but the Clapeyron product.
+    ``simpson`` and ``quadrature`` are the change of entropy both ways, kJ/(kg K).
+    """
+
+    leg: str
+    number: int
+    phase: str
+    rows: tuple[tuple[float, ...], ...]
+    """x, T, p, v, c_v, (dp/dT)_v, dT/dx, dv/dx, ds/dx at each point."""
+    simpson: float
+    quadrature: float
+    clapeyron: tuple[float, float, float, float] | None = None
+    """T, dp_sat/dT, v at the beginning and at the end."""
 
 
 @dataclass(frozen=True, eq=False)

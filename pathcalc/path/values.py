@@ -135,8 +135,30 @@ def leg_values(path: SolvedPath, solved: SolvedLeg) -> dict[str, Any]:
         "amount": mass,
         "total": {key: None if mass is None else value * mass for key, value in exchange.items()},
         "maxwell": {"ds": ds / M, "du": du / M, "dh": dh / M, "error": error, "closure": closure},
+        "carried": _carried(path, solved),
+        "other": _other(path, solved),
     }
     return _blank(values, setting.status.ok)
+
+
+def _carried(path: SolvedPath, solved: SolvedLeg) -> dict[str, Array]:
+    """What a stream that joins or leaves brings, per kilogram that goes on, counted from the inlet."""
+    M, outcome, a = path.model.M, solved.outcome, solved.inlet
+    found = {key: outcome.carried(a, key) / M for key in ("v", "u", "h", "s")}
+    other, share = outcome.other, outcome.other_share
+    Ts = np.zeros_like(a.T) if other is None or share is None else share * (other.T * other.s - a.T * a.s) / M
+    return {**found, "a": found["u"] - Ts, "g": found["h"] - Ts}
+
+
+def _other(path: SolvedPath, solved: SolvedLeg) -> dict[str, Any] | None:
+    """The stream that joins or leaves: amount (kg or kg/s, negative where it leaves) and state, per kilogram."""
+    other, share = solved.outcome.other, solved.outcome.other_share
+    if other is None or share is None:
+        return None
+    M = path.model.M
+    mass = None if solved.moles is None else share * solved.moles * M
+    state = {"T": other.T, "p": other.p, "v": other.v / M, "u": other.u / M, "h": other.h / M, "s": other.s / M}
+    return {"amount": mass, **state, "x": other.points.x}
 
 
 def _blank(values: dict[str, Any], ok: NDArray[np.bool_]) -> dict[str, Any]:

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
 from pathcalc.report import numbers, units
+from pathcalc.report.derivations import Derivations
 from pathcalc.report.view import Cell, Column, SolutionLike, Table
 from pathcalc.report.words import WORDS, say
 
@@ -39,6 +41,7 @@ class Context:
             molar_mass=float(self.result["fluid"]["molar_mass"]),
             ambient=self.ambient,
         )
+        self.derivations = Derivations(solution, [str(leg["name"]) for leg in self.legs])
         self._tables = 0
         self._figures = 0
         self._decimals = self._steady_decimals()
@@ -105,17 +108,19 @@ class Context:
             if column.numeric:
                 for row, aligned in zip(grid, numbers.align([r[i].text for r in grid]), strict=True):
                     old = row[i]
-                    row[i] = Cell(aligned.text, old.role, aligned.pad, old.mark)
+                    row[i] = replace(old, text=aligned.text, pad=aligned.pad)
         return Table(caption, tuple(columns), tuple(tuple(r) for r in grid), head, self.number_table())
 
     def column(self, words: str, symbol: str, kind: str) -> Column:
         """A numeric column for a kind of quantity, its unit in the head."""
         return Column(say(words), symbol, self.units[kind].unit, numeric=True)
 
-    def cell(self, kind: str, si: float | None) -> Cell:
-        """A numeric cell."""
+    def cell(self, kind: str, si: float | None, address: str = "") -> Cell:
+        """A numeric cell; with its ``address`` it links to how the value came about, where that is shown."""
         text = self.number(kind, si)
-        return Cell(text, "absent" if text == numbers.ABSENT else "number")
+        if text == numbers.ABSENT:
+            return Cell(text, "absent")
+        return Cell(text, "number", link=self.derivations.anchor(address) if address else "")
 
     # names
 

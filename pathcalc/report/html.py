@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any
 from markupsafe import Markup
 
 from pathcalc.report import maths, templating
-from pathcalc.report.textsafe import clean_lines, css_string
+from pathcalc.report.textsafe import clean, clean_lines, css_string
 from pathcalc.report.view import Document, Figure
 from pathcalc.report.words import say
 
@@ -18,6 +18,9 @@ if TYPE_CHECKING:
 
     from pathcalc.report.company import Company
     from pathcalc.report.index import Index
+
+RUNNING = 80
+"""Characters of the running header, at 8 points on the narrower of A4 and Letter."""
 
 
 @lru_cache(maxsize=4)
@@ -28,6 +31,7 @@ def environment(company: Company | None = None) -> Environment:
         "lines": maths.mathml_lines,
         "result": maths.result_html,
         "symbol": symbol,
+        "figure": maths.figure,
     }
     return templating.environment(_finalize, filters, company.loader if company else None)
 
@@ -59,6 +63,12 @@ def render_index(index: Index, company: Company | None = None) -> str:
     return _page("index.html.j2", index, company, {"drawing": str})
 
 
+def _short(text: str) -> str:
+    """As much of a running header as one line of a sheet holds."""
+    line = clean(text)
+    return line if len(line) <= RUNNING else f"{line[: RUNNING - 1]}…"
+
+
 def _page(name: str, doc: Document | Index, company: Company | None, more: Mapping[str, Any]) -> str:
     env = environment(company)
     assert env.loader is not None
@@ -68,7 +78,7 @@ def _page(name: str, doc: Document | Index, company: Company | None, more: Mappi
         "doc": doc,
         "style": Markup(style + (company.style if company else "")),
         "logo": company.logo if company else Markup(),
-        "running": Markup(css_string(doc.running)),
+        "running": Markup(css_string(_short(doc.running))),
         "sheet": Markup(css_string(say("doc.sheet"))),
         "of": Markup(css_string(say("doc.of"))),
     }

@@ -92,10 +92,15 @@ def solved(
         title=document.title,
         number=str(getattr(record, "number", None) or ""),
         revision=str(getattr(record, "revision", None) or ""),
-        outcomes=(*document.outcomes[:2], _warnings(len(result["warnings"]))),
+        outcomes=(*_of_report(document), _warnings(len(result["warnings"]))),
         messages=(say("index.message.unwritten"),) if unwritten else (),
         files=tuple(files),
     )
+
+
+def _of_report(document: Document) -> list[Outcome]:
+    labels = (say("verdict.limits"), say("verdict.checks"))
+    return [next(o for o in document.outcomes if o.label == label) for label in labels]
 
 
 def _warnings(n: int) -> Outcome:

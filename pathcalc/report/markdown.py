@@ -27,6 +27,7 @@ def environment(company: Company | None = None) -> Environment:
         "math": maths.inline_markdown,
         "display": maths.display_markdown,
         "result": maths.result_markdown,
+        "figure": maths.figure,
         "cell": cell,
         "head": head,
         "address": address,

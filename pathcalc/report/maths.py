@@ -11,6 +11,7 @@ from xml.etree import ElementTree
 
 from markupsafe import Markup, escape
 
+from pathcalc.report.numbers import MINUS, SUPERSCRIPTS
 from pathcalc.report.textsafe import clean, inline_code, markdown
 
 _SPACES = {
@@ -82,6 +83,7 @@ _LONG = 48
 _SIGNS = frozenset("−+±")
 _OPENERS = frozenset("([{=≈<>≤≥×·+−/,;:")
 _NAMESPACE = "http://www.w3.org/1998/Math/MathML"
+_POWER = re.compile(r"\\times 10\^\{([^{}]*)\}")
 _LATEX_SIGNS = re.compile(r"[\\^_{}]")
 
 
@@ -172,6 +174,12 @@ def _signs(row: ElementTree.Element) -> None:
             node.set("form", "prefix")
         if node.tag != "mspace":
             before = text if node.tag == "mo" else "operand"
+
+
+def figure(latex: str) -> str:
+    """A number in LaTeX as plain text, for a table: minus sign and raised power."""
+    text = latex.replace("-", MINUS)
+    return _POWER.sub(lambda m: "×10" + m[1].replace(MINUS, "-").translate(SUPERSCRIPTS), text)
 
 
 def is_latex(text: str) -> bool:

@@ -17,7 +17,7 @@ ABSENT = "\u2013"
 SIGNIFICANT_DIGITS = 6
 _SMALLEST_POWER = -4
 _LARGE = 1e9
-_SUPERSCRIPTS = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
+SUPERSCRIPTS = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 
 
 @dataclass(frozen=True)
@@ -96,7 +96,7 @@ def scientific(x: float | None, digits: int = 2) -> str:
     if x == 0:
         return "0"
     mantissa, exponent = f"{x:.{digits - 1}e}".split("e")
-    return mantissa.replace("-", MINUS) + "×10" + str(int(exponent)).translate(_SUPERSCRIPTS)
+    return mantissa.replace("-", MINUS) + "×10" + str(int(exponent)).translate(SUPERSCRIPTS)
 
 
 def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DIGITS) -> int:

@@ -11,7 +11,7 @@ the worked steps alone.
     the results object of one lane, SI, exactly as ``pathcalc solve --json`` writes it;
 ``solution.case``
     the case: record, fluid, start, legs, limits, units, report block, text, digest;
-``solution.explanations``, ``.curves``, ``.dome``, ``.basis``
+``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``
     the records of :mod:`pathcalc.path.steps`.
 """
 
@@ -21,7 +21,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any, Literal, Protocol
 
-from pathcalc.path.steps import Basis, Curve, Dome, Step
+from pathcalc.path.steps import Basis, Curve, Dome, StateParts, Step
 
 
 class SolutionLike(Protocol):
@@ -37,6 +37,8 @@ class SolutionLike(Protocol):
     def dome(self) -> Dome | None: ...
     @property
     def basis(self) -> Basis: ...
+    @property
+    def state_parts(self) -> Sequence[StateParts]: ...
     def to_dict(self) -> dict[str, Any]: ...
 
 
@@ -45,12 +47,16 @@ Role = Literal["text", "number", "code", "good", "bad", "absent"]
 
 @dataclass(frozen=True)
 class Cell:
-    """One table cell. ``pad`` lines decimals up; ``mark`` is a short remark beside the text (a warning)."""
+    """One table cell. ``pad`` lines decimals up; ``mark`` is a short remark beside the text (a warning).
+
+    ``link`` is the anchor of the place that shows how the value came about.
+    """
 
     text: str
     role: Role = "text"
     pad: str = ""
     mark: str = ""
+    link: str = ""
 
 
 @dataclass(frozen=True)
@@ -121,21 +127,27 @@ class Formulas:
 
 @dataclass(frozen=True)
 class Symbols:
-    """A table of constants, whose symbols are LaTeX: (symbol, meaning, value, unit, source)."""
+    """A table whose rows begin with a symbol in LaTeX; the other cells are text.
+
+    Columns from ``numeric`` on hold numbers; ``anchors`` are those of the columns, empty where a column has none.
+    """
 
     caption: str
     columns: tuple[str, ...]
-    rows: tuple[tuple[str, str, str, str, str], ...]
+    rows: tuple[tuple[str, ...], ...]
     number: int = 0
+    numeric: int | None = None
+    anchors: tuple[str, ...] = ()
     kind: Literal["symbols"] = "symbols"
 
 
 @dataclass(frozen=True)
 class Worked:
-    """Worked steps towards one or more quantities."""
+    """Worked steps towards one or more quantities; ``anchor`` is where their values link to."""
 
     title: str
     steps: tuple[Step, ...]
+    anchor: str = ""
     kind: Literal["worked"] = "worked"
 
 

@@ -12,7 +12,7 @@ from typing import Any
 
 import numpy as np
 
-from pathcalc.path.steps import Basis, Constant, Curve, CurvePiece, Dome, Step
+from pathcalc.path.steps import Basis, Constant, Curve, CurvePiece, Dome, StateParts, Step
 from pathcalc.quantities import Quantity, Relative, parse_text
 
 R = 8.314462618
@@ -33,6 +33,7 @@ class MadeSolution:
     curves: list[Curve] = field(default_factory=list)
     dome: Dome | None = None
     basis: Basis = field(default_factory=lambda: nitrogen_basis())
+    state_parts: tuple[StateParts, ...] = ()
 
     def to_dict(self) -> dict[str, Any]:
         return self.result

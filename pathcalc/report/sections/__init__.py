@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 from pathcalc.report.context import Context
-from pathcalc.report.sections import basis, checks, closing, diagrams, fluid, front, results, worked
+from pathcalc.report.sections import basis, checks, closing, conclusions, diagrams, fluid, front, results, worked
 from pathcalc.report.view import Document, Figure, Section, SolutionLike
 
 _SECTIONS = (
+    conclusions.revisions,
     front.purpose,
     basis.section,
     fluid.section,
@@ -16,6 +17,7 @@ _SECTIONS = (
     diagrams.section,
     checks.section,
     checks.comparison,
+    conclusions.section,
     worked.section,
     closing.cautions,
     closing.made,

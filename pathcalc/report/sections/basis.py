@@ -130,6 +130,9 @@ def section(ctx: Context) -> Section:
     columns = [Column(say(f"col.{c}")) for c in ("input", "written", "si", "uncertainty", "source")]
     rows = [_row(i) for i in found]
     blocks.append(ctx.table(say("basis.caption.inputs"), columns, rows))
+    if bare:
+        names = ", ".join(i.address for i in found if not i.source)
+        blocks += [Heading(say("basis.unsourced")), Paragraph(say("basis.unsourced.lead", names=names))]
     sources = pick(pick(ctx.case, "record"), "sources", {})
     if sources:
         columns = [Column(say("col.source")), Column(say("col.citation"))]
@@ -154,6 +157,9 @@ def section(ctx: Context) -> Section:
         blocks.append(Bullets(tuple(str(a) for a in stated)))
     else:
         blocks.append(Paragraph(say("basis.assumptions.none"), blank=True))
+    open_ones = pick(pick(ctx.case, "record"), "unconfirmed", [])
+    if open_ones:
+        blocks += [Heading(say("basis.unconfirmed")), Bullets(tuple(str(a) for a in open_ones))]
     return Section("basis", say("basis.title"), tuple(blocks))
 
 

@@ -34,14 +34,15 @@ def header(ctx: Context, sections: tuple[Section, ...], figures: tuple[Figure, .
         running=running,
         facts=tuple(facts),
         signatories=(pick(record, "author", ""), pick(record, "checker", ""), pick(record, "approver", "")),
-        outcomes=(_limits(ctx), _checks(ctx), _warnings(ctx), _inputs(ctx)),
+        outcomes=(limits_outcome(ctx), _checks(ctx), _warnings(ctx), _inputs(ctx), *_unconfirmed(ctx)),
         evidence=say("verdict.evidence"),
         sections=sections,
         figures=figures,
     )
 
 
-def _limits(ctx: Context) -> Outcome:
+def limits_outcome(ctx: Context) -> Outcome:
+    """Limits met or missed, with the tightest margin."""
     label = say("verdict.limits")
     limits = ctx.result["limits"]
     if not limits:
@@ -120,6 +121,15 @@ def _inputs(ctx: Context) -> Outcome:
     bare = sum(1 for i in found if not i.source)
     text = say("verdict.inputs.some" if bare else "verdict.inputs.all", n=len(found), unsourced=bare)
     return Outcome(say("verdict.inputs"), text, "plain")
+
+
+def _unconfirmed(ctx: Context) -> tuple[Outcome, ...]:
+    """Assumptions that are yet to be confirmed, where the case states any."""
+    texts = [str(text) for text in pick(pick(ctx.case, "record"), "unconfirmed", [])]
+    if not texts:
+        return ()
+    said = say("verdict.unconfirmed.some", n=len(texts), texts=" ".join(texts))
+    return (Outcome(say("verdict.unconfirmed"), said, "warning"),)
 
 
 def purpose(ctx: Context) -> Section:

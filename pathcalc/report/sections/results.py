@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
 from pathcalc.report import numbers
@@ -83,7 +84,7 @@ def _states(ctx: Context, caption: str, keys: Sequence[str], phase: bool) -> Tab
             Cell(str(i), "number"),
             Cell(str(state["name"]), mark=ctx.mark(state["name"]) if phase else ""),
         ]
-        row += [ctx.cell(STATE_KINDS[k], state.get(k)) for k in shown]
+        row += [ctx.cell(STATE_KINDS[k], state.get(k), f"{state['name']}.{k}") for k in shown]
         if phase:
             row.append(Cell(phase_words(state.get("phase"))))
         rows.append(row)
@@ -94,7 +95,8 @@ def _way(ctx: Context, leg: Mapping[str, Any]) -> Cell:
     return Cell(f"{ctx.state_number(leg['from'])}\u2009→\u2009{ctx.state_number(leg['to'])}")
 
 
-def _per(ctx: Context) -> str:
+def per_unit(ctx: Context) -> str:
+    """What specific results are counted by: mass or amount of substance."""
     return say("col.per.mole") if "mol" in ctx.units["e"].unit.rpartition("/")[2] else say("col.per.mass")
 
 
@@ -104,8 +106,8 @@ def _legs(ctx: Context) -> Table:
     rows = []
     for leg in ctx.legs:
         row = [_way(ctx, leg), Cell(str(leg["name"]), mark=ctx.mark(leg["name"])), Cell(str(leg["path"]))]
-        rows.append(row + [ctx.cell(LEG_KINDS[k], leg[k]) for k in _FLOWS])
-    return ctx.table(say("results.caption.legs", per=_per(ctx)), columns, rows, head=1)
+        rows.append(row + [ctx.cell(LEG_KINDS[k], leg[k], f"{leg['name']}.{k}") for k in _FLOWS])
+    return ctx.table(say("results.caption.legs", per=per_unit(ctx)), columns, rows, head=1)
 
 
 def _deltas(ctx: Context) -> Table:
@@ -115,8 +117,8 @@ def _deltas(ctx: Context) -> Table:
     rows = []
     for leg in ctx.legs:
         row = [_way(ctx, leg), Cell(str(leg["name"]))]
-        rows.append(row + [ctx.cell(DELTA_KINDS[k], leg["delta"].get(k)) for k in keys])
-    return ctx.table(say("results.caption.delta", per=_per(ctx)), columns, rows, head=1)
+        rows.append(row + [ctx.cell(DELTA_KINDS[k], leg["delta"].get(k), f"{leg['name']}.delta.{k}") for k in keys])
+    return ctx.table(say("results.caption.delta", per=per_unit(ctx)), columns, rows, head=1)
 
 
 def _totals(ctx: Context) -> list[Block]:
@@ -132,7 +134,7 @@ def _totals(ctx: Context) -> list[Block]:
         rows.append(row + [ctx.cell(TOTAL_KINDS[k], total.get(k)) for k in _FLOWS])
     whole = ctx.result["totals"] or {}
     last = [Cell(""), Cell(say("results.whole")), Cell("")]
-    rows.append(last + [ctx.cell(TOTAL_KINDS[k], whole.get(k)) for k in _FLOWS])
+    rows.append(last + [ctx.cell(TOTAL_KINDS[k], whole.get(k), f"totals.{k}") for k in _FLOWS])
     caption = say("results.caption.totals" if ctx.flow else "results.caption.totals.closed")
     blocks: list[Block] = [
         Paragraph(say("results.amountof", amount=amount)),
@@ -160,6 +162,7 @@ def limits(ctx: Context) -> Section:
     for limit, own in zip(found, _limits_of(ctx, len(found)), strict=True):
         kind = kind_of(limit["quantity"])
         cells = [_measure(ctx, kind, limit[k]) for k in ("value", "min", "max")]
+        cells[0] = replace(cells[0], link=ctx.derivations.anchor(limit["quantity"]))
         cells.append(_measure(ctx, ctx.margin(kind), limit["margin"]))
         outcome = Cell(say("limits.met"), "good") if limit["passed"] else Cell(say("limits.missed"), "bad")
         source = pick(own, "source")
