@@ -10,6 +10,7 @@ from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING, Any
 
 from pathcalc.cli.tables import Page, plain
+from pathcalc.path.warnings import NOTES
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, phase_words
 from pathcalc.report.units import DELTA_KINDS, LEG_KINDS, STATE_KINDS, TOTAL_KINDS, kind_of
@@ -170,7 +171,9 @@ def _warnings(page: Page, ctx: Context) -> None:
     if not ctx.warnings:
         return
     page.line("")
-    page.heading(f"Warnings ({len(ctx.warnings)})")
+    notes = sum(1 for row in ctx.warnings if row["code"] in NOTES)
+    counts = [f"{name} ({n})" for name, n in (("Warnings", len(ctx.warnings) - notes), ("Notes", notes)) if n]
+    page.heading(", ".join(counts))
     for row in ctx.warnings:
         at = f"{row['at']}: " if row["at"] else ""
         page.line(f"  {at}{row['text']} ({row['code']})", style="yellow")

@@ -24,8 +24,12 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
+import numpy as np
+
+from pathcalc.equations.contract import Model
 from pathcalc.errors import Trouble
 
 CONVERGED = 0
@@ -76,8 +80,8 @@ REASONS: dict[int, Reason] = {
     ),
     BELOW_TRIPLE_POINT: Reason(
         "below-triple-point",
-        "the temperature lies below the triple point, or below the lowest one the equation is used at",
-        "stay above the triple point: solids are not described by this equation",
+        "the state lies below the triple point, or below the lowest temperature the equation is used at",
+        "stay above it: there the fluid, or a part of it, would be solid, which this equation does not describe",
     ),
     ABOVE_RANGE: Reason(
         "above-range",
@@ -144,6 +148,23 @@ REASONS: dict[int, Reason] = {
         "lower the pressure or density, or choose an equation that reaches further",
     ),
 }
+
+
+def limit_text(model: Model, reason: int) -> str:
+    """The limit that a state of ``reason`` lies beyond, to stand after the reason; empty where it is no limit."""
+    low, high = model.T_limits
+    if reason == ABOVE_RANGE:
+        return f" ({high:.6g} K)"
+    if reason == ABOVE_PRESSURE and model.residual.limits is not None:
+        return f" ({model.residual.limits.p_max:.6g} Pa)"
+    if reason in (BELOW_TRIPLE_POINT, BELOW_RANGE) and model.has_dome:
+        from pathcalc.equilibrium.saturation import saturation_at_T
+
+        p = float(saturation_at_T(model, np.array([model.T_triple])).p[0])
+        pressure = f" and {p:.6g} Pa" if math.isfinite(p) else ""
+        lowest = f"; lowest temperature {low:.6g} K" if low > model.T_triple * 1.0001 else ""
+        return f" (triple point {model.T_triple:.6g} K{pressure}{lowest})"
+    return f" ({low:.6g} K)" if reason == BELOW_TRIPLE_POINT else ""
 
 
 def trouble(reason: int, at: str = "") -> Trouble:

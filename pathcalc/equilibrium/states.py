@@ -17,8 +17,9 @@ from pathcalc.equilibrium.points import Points, mix
 class States:
     """Properties of shape (n,), molar SI; sound speed in m/s, Joule–Thomson coefficient in K/Pa.
 
-    In two phases c_v, c_p, sound speed, expansivity, compressibility and Joule–Thomson coefficient are NaN;
-    the fugacity coefficient is that of the coexisting phases. A failed lane is NaN throughout.
+    In two phases c_v, c_p, sound speed, expansivity, compressibility and Joule–Thomson coefficient are NaN, at a
+    quality of exactly 0 or 1 those of the liquid or vapour; the fugacity coefficient is that of the coexisting phases.
+    A failed lane is NaN throughout.
     """
 
     points: Points
@@ -80,5 +81,10 @@ def _two_phases(model: Model, points: Points, at: NDArray[np.intp], out: dict[st
     vapour = full(model, T, points.v_vapour[at], p)
     for name in _MIXED:
         out[name][at] = mix(x, getattr(liquid, name), getattr(vapour, name))
+    for edge, phase in ((0.0, liquid), (1.0, vapour)):
+        on = x == edge
+        if on.any():
+            for name in _SINGLE:
+                out[name][at[on]] = getattr(phase, name)[on]
     out["Z"][at] = p * points.v[at] / (model.R * T)
     out["fugacity_coefficient"][at] = np.exp(vapour.ln_phi)

@@ -13,7 +13,7 @@ from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium.flash import flash
 from pathcalc.equilibrium.points import Points
-from pathcalc.equilibrium.reasons import REASONS
+from pathcalc.equilibrium.reasons import REASONS, limit_text
 from pathcalc.errors import Trouble
 from pathcalc.legs.integration.segments import BoundaryOf, Integrals, Segment
 from pathcalc.quantities.values import Quantity, Relative
@@ -218,7 +218,8 @@ class Setting:
             given = ""
             if self.n == 1:
                 given = " (" + ", ".join(_shown(self.model, k, float(v[0])) for k, v in pair.items()) + ")"
-            self.status.fail(mask, Trouble(reason.code, at, reason.text + given, reason.remedy))
+            text = reason.text + limit_text(self.model, int(code)) + given
+            self.status.fail(mask, Trouble(reason.code, at, text, reason.remedy))
 
 
 _UNITS = {"T": "K", "p": "Pa", "v": "m3/kg", "rho": "kg/m3", "u": "J/kg", "h": "J/kg", "s": "J/(kg K)", "x": ""}

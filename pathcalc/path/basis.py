@@ -26,7 +26,20 @@ _CONSTANTS = (
 )
 
 
+_FORMS = {
+    "nasa9": "polynomial of nine constants",
+    "planck-einstein": "Planck–Einstein terms",
+    "polynomial": "polynomial",
+    "constant": "constant",
+    "hyperbolic": "hyperbolic terms",
+}
+"""Names of the forms of the ideal-gas heat capacity in words."""
+
 _PARAMETERS = {
+    "N": "number of terms",
+    "T_r": "reducing temperature",
+    r"\rho_r": "reducing density",
+    r"\rho_c": "critical density",
     "R": "molar gas constant",
     "T_c": "critical temperature",
     "p_c": "critical pressure",
@@ -57,7 +70,7 @@ def basis_of(solution: Solution) -> Basis:
     )
     ideal = model.ideal
     formula, rows = _ideal_gas(card, ideal)
-    source = getattr(ideal, "source", "")
+    source, form = getattr(ideal, "source", ""), str(getattr(ideal, "form", "given"))
     low, high = ideal.T_min, ideal.T_max
     reach = "constant, no range stated" if not high < 1e9 else f"{low:.6g} K to {high:.6g} K"
     return Basis(
@@ -70,7 +83,7 @@ def basis_of(solution: Solution) -> Basis:
         parameters=parameters,
         equation_source=info.source,
         range_text=info.range_text,
-        ideal_gas_text=str(getattr(ideal, "form", "given")),
+        ideal_gas_text=_FORMS.get(form, form),
         ideal_gas_source=card.sources.get(source, source) or "given in the case",
         ideal_gas_range=reach,
         ideal_gas_formula=formula,

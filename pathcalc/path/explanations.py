@@ -35,10 +35,7 @@ IN_DOME = {
 }
 """At constant temperature and pressure between the two phases."""
 SPLIT = "The first integral runs over the stretches of one phase, the second over the others."
-CLAPEYRON = (
-    " A two-phase piece by Clapeyron: the entropy change is the slope of the vapour pressure times the change of "
-    "volume."
-)
+CLAPEYRON = " A two-phase piece by Clapeyron: the change of s is the slope of the vapour pressure times that of v."
 ALONG = (
     "In the two-phase region the change is taken at constant temperature to the boundary (Clapeyron), along the "
     "boundary by the differential of one phase, and back (Clapeyron): the integrand above holds for the stretches of "
@@ -395,7 +392,7 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
             terms = zip(masses, parts, strict=True)
             numbers = "+".join(rf"{number(mass)}\times {bracketed(part, kind)}" for mass, part in terms)
         found[f"totals.{key}"] = [
-            _amount_step(solution),
+            *(_amount_step(solution) if key == "heat" else []),
             Step(
                 title="Sum over the legs",
                 formula=formula,
@@ -407,18 +404,21 @@ def _totals(solution: Solution) -> dict[str, list[Step]]:
     return found
 
 
-def _amount_step(solution: Solution) -> Step:
-    """How the amount became a mass."""
+def _amount_step(solution: Solution) -> list[Step]:
+    """How an amount that is no mass became one."""
     path, q = solution.path, solution.case.amount
+    if q is not None and q.dimension.startswith("mass"):
+        return []
     assert path.setting.moles is not None
     flow, M = path.setting.flow, path.model.M
     moles = float(path.setting.moles[0])
     unit = r"\mathrm{kg/s}" if flow else r"\mathrm{kg}"
     formula = r"\dot m=\dot n\,M" if flow else r"m=n\,M"
-    return Step(
+    step = Step(
         title="Amount",
         formula=formula,
         numbers=rf"{number(moles)}\times {number(M)}",
         result=rf"{number(moles * M)}\ {unit}",
         note="" if q is None else f"amount: {q.text}",
     )
+    return [step]

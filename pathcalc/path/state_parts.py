@@ -34,8 +34,9 @@ def parts_of_state(model: Model, name: str, place: Place) -> StateParts:
     """The parts of one state (lane 0)."""
     x = float(place.points.x[0])
     with np.errstate(all="ignore"):
-        rows = _of_one_phase(model, place) if x != x else _of_two_phases(model, place)
-    return StateParts(name, x == x, rows)
+        wet = 0.0 < x < 1.0
+        rows = _of_two_phases(model, place) if wet else _of_one_phase(model, place)
+    return StateParts(name, wet, rows)
 
 
 def _of_one_phase(model: Model, place: Place) -> tuple[Part, ...]:

@@ -2,17 +2,23 @@
 
 Codes: outside-range, above-pressure-range, heat-capacity-extrapolated, near-critical, two-phase, dense-cubic,
 virial-dense, quantum-gas, no-dead-state, check-failed, comparison-failed,
-comparison-without-shift, limit-without-value, unchecked, past-equilibrium, near-triple-point.
+comparison-without-shift, limit-without-value, unchecked, past-equilibrium, near-triple-point, near-saturation,
+full-of-liquid. Temperatures and pressures are told in the units of the case.
 """
 
 from __future__ import annotations
 
+import itertools
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from pathcalc.equations.contract import Model
 from pathcalc.equilibrium.points import PHASES
+from pathcalc.equilibrium.saturation import saturation_at_T
+from pathcalc.path.checks import MEANING
+from pathcalc.path.maths import rough
+from pathcalc.path.told import Told
 
 if TYPE_CHECKING:
     from pathcalc.legs.run import Place
@@ -20,9 +26,16 @@ if TYPE_CHECKING:
 
 Warning_ = dict[str, str]
 
+NOTES = frozenset({"two-phase", "unchecked"})
+"""Codes of what a reader should know but need not act on."""
+
 CUBICS = frozenset({"van-der-waals", "redlich-kwong", "soave", "peng-robinson"})
 NEAR_TRIPLE = 0.03
 """Relative distance in T above the triple point within which a wet state is warned of (common practice, no source)."""
+NEAR_SATURATION = 1e-3
+"""Relative distance in p from the vapour pressure within which a state of one phase is warned of (common practice,
+
+no source)."""
 NEAR_CRITICAL = 0.05
 """Relative distance in T within which the fluctuations that no classical equation has begin to matter
 
@@ -48,29 +61,44 @@ def all_warnings(solution: Solution) -> list[Warning_]:
             rows.append(_warning("unchecked", name, text))
     for row in solution.checks:
         if not row["passed"]:
-            text = f"the check {row['name']!r} failed: {row['value']:.3g} against {row['tolerance']:.3g}"
-            rows.append(_warning("check-failed", row["at"], text))
-    return rows
+            text = f"the check {row['name']!r} failed: {row['value']:.3g} against {row['tolerance']:.3g}; "
+            rows.append(_warning("check-failed", row["at"], text + MEANING[row["name"]]))
+    return _merged(rows)
+
+
+def _merged(rows: list[Warning_]) -> list[Warning_]:
+    """Equal warnings of several places as one."""
+    places: dict[tuple[str, str], list[str]] = {}
+    for row in rows:
+        places.setdefault((row["code"], row["text"]), []).append(row["at"])
+    return [_warning(code, ", ".join(dict.fromkeys(at)), text) for (code, text), at in places.items()]
 
 
 def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
     model = solution.path.model
     T, p, v = float(place.T[0]), float(place.p[0]), float(place.v[0])
     rows: list[Warning_] = []
+    told = Told(solution)
     low, high = model.T_range
     if not low <= T <= high:
-        text = f"T = {T:.6g} K lies outside the stated range of {low:.6g} K to {high:.6g} K; treat it as extrapolated"
+        text = (
+            f"{told.temperature(T)} lies outside the stated range of {told.temperature(low)} to "
+            f"{told.temperature(high)}; treat it as extrapolated"
+        )
         text += _stated(model, "extremes")
         rows.append(_warning("outside-range", name, text))
     ideal = model.ideal
     if not ideal.T_min <= T <= ideal.T_max:
         text = (
-            f"T = {T:.6g} K lies outside the range of the ideal-gas heat capacity, "
-            f"{ideal.T_min:.6g} K to {ideal.T_max:.6g} K"
+            f"{told.temperature(T)} lies outside the range of the ideal-gas heat capacity, "
+            f"{told.temperature(ideal.T_min)} to {told.temperature(ideal.T_max)}"
         )
         rows.append(_warning("heat-capacity-extrapolated", name, text))
     if p > model.p_max:
-        text = f"p = {p:.6g} Pa lies above the {model.p_max:.6g} Pa up to which the equation is meant to be used"
+        text = (
+            f"{told.pressure(p)} lies above the {told.pressure(model.p_max)} up to which the equation is meant to be "
+            "used"
+        )
         rows.append(_warning("above-pressure-range", name, text))
     if model.has_dome and abs(T / model.T_c - 1.0) < NEAR_CRITICAL and 0.4 < model.v_c / v < 2.0:
         text = (
@@ -79,6 +107,7 @@ def _of_state(solution: Solution, name: str, place: Place) -> list[Warning_]:
         )
         rows.append(_warning("near-critical", name, text))
     rows.extend(_near_triple_point(solution, name, place))
+    rows.extend(_near_saturation(solution, name, place))
     if model.equation in CUBICS and v < model.v_c / 1.5:
         text = (
             "a dense fluid: densities of a cubic equation are commonly off by 5 % to 20 % here, and heat "
@@ -105,12 +134,54 @@ def _near_triple_point(solution: Solution, name: str, place: Place) -> list[Warn
     T, p = float(place.T[0]), float(place.p[0])
     if not wet or not model.has_dome or model.T_triple * (1.0 + NEAR_TRIPLE) < T:
         return []
-    limit = f" and {card.p_triple.value:.4g} Pa" if card.has("p_triple") else ""
+    told = Told(solution)
+    limit = f" and {told.pressure(card.p_triple.value)}" if card.has("p_triple") else ""
     text = (
-        f"wet fluid at {T:.5g} K and {p:.4g} Pa, close to the triple point at {model.T_triple:.5g} K{limit}: below it "
-        "a solid forms, which this calculation does not describe and which can block pipes and valves"
+        f"wet fluid at {told.temperature(T)} and {told.pressure(p)}, close to the triple point at "
+        f"{told.temperature(model.T_triple)}{limit}: below it a solid "
+        "forms, which this calculation does not describe and which can block pipes and valves"
     )
     return [_warning("near-triple-point", name, text)]
+
+
+def _near_saturation(solution: Solution, name: str, place: Place) -> list[Warning_]:
+    """One phase so near the vapour pressure that the last digits of T and p decide which phase it is."""
+    model, T, p = solution.path.model, float(place.T[0]), float(place.p[0])
+    x = float(place.points.x[0])
+    if not model.has_dome or x == x or not model.T_triple < T < model.T_c:
+        return []
+    p_sat = float(saturation_at_T(model, np.array([T])).p[0])
+    if not abs(p / p_sat - 1.0) < NEAR_SATURATION:
+        return []
+    phase = PHASES[int(place.points.phase[0])]
+    told = Told(solution)
+    text = (
+        f"taken as {phase}, but {told.pressure(p)} is only {rough(abs(p / p_sat - 1.0))} (relative) from the vapour "
+        f"pressure at {told.temperature(T)}: the last digits of the inputs decide the phase; where a saturated state "
+        "is meant, give x"
+    )
+    return [_warning("near-saturation", name, text)]
+
+
+def _full_of_liquid(solution: Solution) -> list[Warning_]:
+    """Closed vessels whose vapour goes: from there the pressure rises by bars a kelvin."""
+    rows: list[Warning_] = []
+    for solved in solution.path.legs:
+        if solution.path.setting.flow or solved.leg.path != "isochoric":
+            continue
+        pieces = [piece for piece in solved.integrals.pieces if np.any(piece.lanes == 0)]
+        for before, after in itertools.pairwise(pieces):
+            if before.in_dome and not after.in_dome and float(after.ends.v_a[0]) < solution.path.model.v_c:
+                T, v = after.ends.T_a[:1], after.ends.v_a[:1]
+                terms = solution.path.model.residual.pressure(T, v)
+                told = Told(solution)
+                where = f"{told.temperature(float(T[0]))} and {told.pressure(float(terms.p[0]))}"
+                text = (
+                    f"full of liquid from {where} on: no vapour is left, and the pressure rises by "
+                    f"{told.pressure_difference(float(terms.p_T[0]))} a kelvin there; give it room or relief"
+                )
+                rows.append(_warning("full-of-liquid", solved.leg.name, text))
+    return rows
 
 
 def _of_equation(solution: Solution) -> list[Warning_]:
@@ -143,6 +214,7 @@ def _of_legs(solution: Solution) -> list[Warning_]:
             text = f"the limit is on a quantity without a value here (phase: {phase}); it counts as missed"
             rows.append(_warning("limit-without-value", row["quantity"], text))
     rows.extend(_past_equilibrium(solution))
+    rows.extend(_full_of_liquid(solution))
     if solution.case.fluid.volume_shift is not None and solution.case.report.compare_with:
         text = "the other equations are solved without the volume shift of the case: their dense states are not alike"
         rows.append(_warning("comparison-without-shift", "comparison", text))
@@ -158,6 +230,7 @@ def _of_legs(solution: Solution) -> list[Warning_]:
 def _past_equilibrium(solution: Solution) -> list[Warning_]:
     """Legs against a pressure that end beyond it: left to itself the fluid would come to rest there."""
     rows: list[Warning_] = []
+    told = Told(solution)
     for solved in solution.path.legs:
         against = getattr(solved.leg, "against", None)
         if against is None:
@@ -166,8 +239,8 @@ def _past_equilibrium(solution: Solution) -> list[Warning_]:
         grows = float(solved.end.v[0]) > float(solved.inlet.v[0])
         if (grows and p < p_ext * (1.0 - 1e-9)) or (not grows and p > p_ext * (1.0 + 1e-9)):
             text = (
-                f"ends at {p:.6g} Pa, beyond the {p_ext:.6g} Pa it moves against: left to itself the fluid would come "
-                "to rest there; the work stands only if something else carries it on"
+                f"ends at {told.pressure(p)}, beyond the {told.pressure(p_ext)} it moves against: left to itself the "
+                "fluid would come to rest there; the work stands only if something else carries it on"
             )
             rows.append(_warning("past-equilibrium", solved.leg.name, text))
     return rows

@@ -80,10 +80,10 @@ class Context:
         text = self.number(kind, si)
         return f"{text}\u00a0{unit}" if unit and text != numbers.ABSENT else text
 
-    def brief(self, kind: str, si: float | None) -> str:
+    def brief(self, kind: str, si: float | None, digits: int = 8) -> str:
         """A stated value in a sentence, without the zeros after its last digit."""
         scale = self.units[kind]
-        return f"{numbers.short(scale.of(si), 8)}\u00a0{scale.unit}"
+        return f"{numbers.short(scale.of(si), digits)}\u00a0{scale.unit}".rstrip("\u00a0")
 
     def margin(self, kind: str) -> str:
         """The kind in which a difference of this kind of quantity is printed."""

@@ -88,6 +88,8 @@ def finish(source: str, prefix: str, title: str, description: str) -> str:
     names: dict[str, str] = {}
     for node in root.iter():
         node.tag = node.tag.rpartition("}")[2]
+        if node.tag == "path":
+            node.attrib.setdefault("d", "")
         own = node.attrib.pop("id", None)
         if own is not None:
             names[own] = node.attrib["id"] = f"{prefix}-{len(names)}"

@@ -91,7 +91,7 @@ class Units:
             self._scales |= {
                 "amount": Scale(f"{mass}/{time}", per_m / per_t),
                 "total": Scale(label, factor, steady=True),
-                "total_entropy": Scale(f"{label}/{t_unit}", factor / t_factor, steady=True),
+                "total_entropy": Scale(_over(label, t_unit), factor / t_factor, steady=True),
                 "total_volume": Scale(pretty(f"{volume}/{time}"), per_v / per_t),
             }
         else:
@@ -104,6 +104,12 @@ class Units:
 
     def __getitem__(self, kind: str) -> Scale:
         return self._scales[kind]
+
+
+def _over(unit: str, below: str) -> str:
+    """A unit divided by another: kW/K, kJ/(h K)."""
+    above, slash, first = unit.partition("/")
+    return f"{above}/({first} {below})" if slash else f"{unit}/{below}"
 
 
 def _value(si: float, unit: str) -> float:

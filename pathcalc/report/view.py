@@ -112,7 +112,7 @@ class Notice:
 
     title: str
     text: str
-    tone: Literal["warning", "caution"]
+    tone: Literal["warning", "note", "caution"]
     code: str = ""
     kind: Literal["notice"] = "notice"
 

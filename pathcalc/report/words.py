@@ -37,6 +37,8 @@ WORDS: Final[dict[str, str]] = {
     "sign.caption": "Signatures (to be filled in by people; the checker is not the author)",
     # verdict
     "verdict.title": "Outcome",
+    "verdict.result": "Result",
+    "verdict.result.end": "end state {name}: {values}",
     "verdict.limits": "Limits",
     "verdict.checks": "Checks",
     "verdict.warnings": "Warnings",
@@ -54,8 +56,10 @@ WORDS: Final[dict[str, str]] = {
     "before the cause is found.",
     "verdict.checks.none": "No checks were recorded.",
     "verdict.warnings.none": "No warnings.",
-    "verdict.warnings.one": "1 warning; it stands at the head of the results.",
-    "verdict.warnings.many": "{n} warnings; they stand at the head of the results.",
+    "verdict.warnings.one": "1 warning, at the head of the results.",
+    "verdict.warnings.many": "{n} warnings, at the head of the results.",
+    "verdict.notes.one": "1 note at the head of the results.",
+    "verdict.notes.many": "{n} notes at the head of the results.",
     "verdict.inputs.all": "Every one of the {n} inputs names a source.",
     "verdict.inputs.some": "{unsourced} of {n} inputs name no source.",
     "verdict.evidence": "This calculation is evidence for a reviewer; it does not establish compliance with "
@@ -174,9 +178,14 @@ WORDS: Final[dict[str, str]] = {
     "results.caption.delta": "Legs: changes from inlet to outlet, per unit {per}",
     "results.caption.totals": "Legs: totals for the amount that flows",
     "results.caption.totals.closed": "Legs: totals for the amount enclosed",
-    "results.caption.sum": "Whole path: changes from the first state to the last",
+    "results.caption.sum": "Whole path: what leaves less what enters, all streams counted",
     "results.caption.cycle": "Cycle figures",
     "results.whole": "whole path",
+    "results.streams": "Streams that part or join",
+    "results.caption.streams": "The other streams, their amounts and states",
+    "results.stream.joins": "joins",
+    "results.stream.leaves": "leaves",
+    "col.stream": "Stream",
     "results.noamount": "The case gives no amount, so there are no totals.",
     "results.decimals": "Energies, entropies and temperatures are printed with one number of decimals each "
     "throughout, so that sums and differences can be checked by hand; the results file has every digit.",
@@ -204,7 +213,8 @@ WORDS: Final[dict[str, str]] = {
     "checks.failed": "failed",
     "checks.maxwell": "Maxwell integrals",
     "checks.caption.maxwell": "Changes integrated along each leg (route 1), error estimate, closure against route 2",
-    "checks.caption.pieces": "The same by pieces: cut at phase boundaries and where the way of integration turns",
+    "checks.caption.pieces": "The same by pieces, cut at phase boundaries and where the way of integration turns; "
+    "T, p, h and s at the end of each",
     "checks.error": "Error estimates are those of the quadrature, kept apart from the uncertainty of inputs "
     "and of the equation of state. Error and closure are relative: the largest of the three integrals’, "
     "each against the size of its integrand along the leg.",
@@ -228,8 +238,8 @@ WORDS: Final[dict[str, str]] = {
     "worked.title": "Formulas with numbers",
     "worked.none": "No worked steps were recorded.",
     "worked.lead": "Each result as symbols, then numbers, then result. All formulas use K, kPa, m³/kg, kJ/kg and "
-    "kJ/(kg K), which need no conversion factors. Properties that come from the equation of state without a further "
-    "step are in the state tables.",
+    "kJ/(kg K), with kg/s and kW in steady flow, which need no conversion factors; values in the units of the tables "
+    "differ by the conversion alone.",
     "worked.for": "For {quantities}",
     "worked.start": "Start",
     "worked.totals": "Totals",

@@ -8,9 +8,9 @@ from typing import Any
 
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, phase_words
-from pathcalc.report.units import kind_of
+from pathcalc.report.units import STATE_KINDS, kind_of
 from pathcalc.report.view import Block, Cell, Column, Heading, Paragraph, Section, Table
-from pathcalc.report.words import say
+from pathcalc.report.words import SYMBOLS, say
 
 _ABREAST = 2
 """Other equations in one table, so that it fits a printed page."""
@@ -80,18 +80,19 @@ def _integrals(ctx: Context) -> Table:
 
 def _pieces(ctx: Context) -> Table:
     columns = [Column(say("col.leg")), Column(say("col.piece"), numeric=True), Column(say("col.phase"))]
+    ends = ("T", "p", "h", "s")
     columns += [ctx.column("d.s", "∫ds", "s"), ctx.column("d.h", "∫dh", "e")]
-    rows = [
-        (
-            Cell(str(leg["name"])),
-            Cell(str(i), "number"),
-            Cell(phase_words(piece["phase"])),
-            ctx.cell("s", piece["ds"]),
-            ctx.cell("e", piece["dh"]),
-        )
-        for leg in ctx.legs
-        for i, piece in enumerate(leg["pieces"], 1)
-    ]
+    columns += [ctx.column(f"q.{key}", SYMBOLS[key], STATE_KINDS[key]) for key in ends]
+    lines = {curve.leg: curve.pieces for curve in ctx.solution.curves}
+    rows = []
+    for leg in ctx.legs:
+        ways = lines.get(str(leg["name"]), ())
+        for i, piece in enumerate(leg["pieces"]):
+            way = ways[i] if len(ways) == len(leg["pieces"]) else None
+            row = [Cell(str(leg["name"])), Cell(str(i + 1), "number"), Cell(phase_words(piece["phase"]))]
+            row += [ctx.cell("s", piece["ds"]), ctx.cell("e", piece["dh"])]
+            row += [ctx.cell(STATE_KINDS[k], None if way is None else float(getattr(way, k)[-1])) for k in ends]
+            rows.append(row)
     return ctx.table(say("checks.caption.pieces"), columns, rows)
 
 

@@ -36,21 +36,22 @@ def _cautions(ctx: Context) -> Iterator[tuple[str, str]]:
         hazards.add("oxidiser")
     top, low = max(pressures, default=0.0), min(pressures, default=ctx.ambient)
     if top - ctx.ambient > _P_EQUIPMENT:
-        yield "pressure", say("caution.pressure.text", p=ctx.measure("dp", top - ctx.ambient))
+        yield "pressure", say("caution.pressure.text", p=ctx.brief("dp", top - ctx.ambient, 4))
         if top - ctx.ambient > _P_HIGH:
             yield "high-pressure", say("caution.high-pressure.text")
         yield "test", say("caution.test.text")
     if low < 0.99 * ctx.ambient:
-        yield "vacuum", say("caution.vacuum.text", p=ctx.measure("dp", low))
+        yield "vacuum", say("caution.vacuum.text", p=ctx.brief("dp", low, 4))
     coldest, hottest = min(temperatures, default=300.0), max(temperatures, default=300.0)
     if coldest < _T_COLD:
-        yield "cold", say("caution.cold.text", T=ctx.measure("T", coldest))
+        yield "cold", say("caution.cold.text", T=ctx.brief("T", coldest, 4))
         if coldest < _T_AIR:
             yield "air", say("caution.air.text")
-        if any("liquid" in str(s.get("phase")) or "two" in str(s.get("phase")) for s in ctx.states):
-            yield "trapped", say("caution.trapped.text")
+    wet = any("liquid" in str(s.get("phase")) or "two" in str(s.get("phase")) for s in ctx.states)
+    if wet and (coldest < _T_COLD or not ctx.flow):
+        yield "trapped", say("caution.trapped.text")
     if hottest > _T_HOT:
-        yield "hot", say("caution.hot.text", T=ctx.measure("T", hottest))
+        yield "hot", say("caution.hot.text", T=ctx.brief("T", hottest, 4))
     for hazard in (
         "oxidiser",
         "flammable",

@@ -99,7 +99,7 @@ class _Cited:
         if not source:
             return say("basis.nosource")
         for i, text in enumerate(self.texts, 1):
-            if source == text or source.startswith(text + " ("):
+            if source == text or source.startswith((text + " (", text + "; ")):
                 return f"[{i}]{source[len(text) :]}"
         self.texts.append(source)
         return f"[{len(self.texts)}]"

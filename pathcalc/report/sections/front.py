@@ -4,11 +4,13 @@ from __future__ import annotations
 
 from typing import Any
 
+from pathcalc.path.warnings import NOTES
+from pathcalc.report import numbers
 from pathcalc.report.context import Context, pick
 from pathcalc.report.sections.basis import inputs
 from pathcalc.report.units import kind_of
 from pathcalc.report.view import Block, Bullets, Document, Figure, Heading, Outcome, Paragraph, Section
-from pathcalc.report.words import say
+from pathcalc.report.words import SYMBOLS, say
 
 
 def header(ctx: Context, sections: tuple[Section, ...], figures: tuple[Figure, ...]) -> Document:
@@ -34,7 +36,7 @@ def header(ctx: Context, sections: tuple[Section, ...], figures: tuple[Figure, .
         running=running,
         facts=tuple(facts),
         signatories=(pick(record, "author", ""), pick(record, "checker", ""), pick(record, "approver", "")),
-        outcomes=(limits_outcome(ctx), _checks(ctx), _warnings(ctx), _inputs(ctx), *_unconfirmed(ctx)),
+        outcomes=(*_result(ctx), limits_outcome(ctx), _checks(ctx), _warnings(ctx), _inputs(ctx), *_unconfirmed(ctx)),
         evidence=say("verdict.evidence"),
         sections=sections,
         figures=figures,
@@ -110,10 +112,35 @@ def _checks(ctx: Context) -> Outcome:
     return Outcome(label, say("verdict.checks.passed", n=len(checks)), "good")
 
 
+def _result(ctx: Context) -> tuple[Outcome, ...]:
+    """The figures of the whole path that a reader looks for first."""
+    found = [
+        f"{say(f'cycle.{key}')} {numbers.short(value, 5)}"
+        for key, value in (ctx.result["cycle"] or {}).items()
+        if value is not None
+    ]
+    totals = ctx.result["totals"] or {}
+    for key in ("heat", "work", "exergy_destroyed"):
+        if totals.get(key) is not None:
+            found.append(f"{say(f'col.{key}').lower()} {ctx.measure('total', totals[key])}")
+    if not found:
+        last = ctx.states[-1]
+        ends = ", ".join(f"{SYMBOLS[key]} = {ctx.measure(key, last[key])}" for key in ("T", "p"))
+        found = [say("verdict.result.end", name=last["name"], values=ends)]
+    return (Outcome(say("verdict.result"), "; ".join(found) + ".", "plain"),)
+
+
 def _warnings(ctx: Context) -> Outcome:
-    n = len(ctx.warnings)
-    key = "none" if n == 0 else "one" if n == 1 else "many"
-    return Outcome(say("verdict.warnings"), say(f"verdict.warnings.{key}", n=n), "warning" if n else "plain")
+    notes = sum(1 for w in ctx.warnings if w["code"] in NOTES)
+    n = len(ctx.warnings) - notes
+    text = say(f"verdict.warnings.{_count(n)}", n=n)
+    if notes:
+        text += " " + say(f"verdict.notes.{_count(notes)}", n=notes)
+    return Outcome(say("verdict.warnings"), text, "warning" if n else "plain")
+
+
+def _count(n: int) -> str:
+    return "none" if n == 0 else "one" if n == 1 else "many"
 
 
 def _inputs(ctx: Context) -> Outcome:

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
-from typing import Any
+from typing import Any, Literal
 
+from pathcalc.path.warnings import NOTES
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, phase_words, pick
 from pathcalc.report.units import DELTA_KINDS, LEG_KINDS, STATE_KINDS, TOTAL_KINDS, kind_of
@@ -30,6 +31,7 @@ _STATE_TABLES = (
         False,
     ),
 )
+_ROUNDING = 1e-13
 _FLOWS = ("heat", "work", "entropy_generated", "exergy_destroyed")
 
 
@@ -47,6 +49,7 @@ def section(ctx: Context) -> Section:
         _deltas(ctx),
         Heading(say("results.totals")),
         *_totals(ctx),
+        *_streams(ctx),
     ]
     cycle = ctx.result["cycle"]
     if cycle:
@@ -68,7 +71,8 @@ def _warnings(ctx: Context) -> list[Block]:
     for i, warning in enumerate(ctx.warnings, 1):
         at = warning.get("at")
         title = say("results.warning.at", n=i, at=at) if at else say("results.warning.general", n=i)
-        blocks.append(Notice(title, str(warning["text"]), "warning", str(warning["code"])))
+        tone: Literal["warning", "note"] = "note" if warning["code"] in NOTES else "warning"
+        blocks.append(Notice(title, str(warning["text"]), tone, str(warning["code"])))
     return blocks
 
 
@@ -117,8 +121,18 @@ def _deltas(ctx: Context) -> Table:
     rows = []
     for leg in ctx.legs:
         row = [_way(ctx, leg), Cell(str(leg["name"]))]
-        rows.append(row + [ctx.cell(DELTA_KINDS[k], leg["delta"].get(k), f"{leg['name']}.delta.{k}") for k in keys])
+        changes = {k: _settled(ctx, leg, k) for k in keys}
+        rows.append(row + [ctx.cell(DELTA_KINDS[k], changes[k], f"{leg['name']}.delta.{k}") for k in keys])
     return ctx.table(say("results.caption.delta", per=per_unit(ctx)), columns, rows, head=1)
+
+
+def _settled(ctx: Context, leg: Mapping[str, Any], key: str) -> float | None:
+    """A change of state; zero where it is the rounding of the two values it is the difference of."""
+    change: float | None = leg["delta"].get(key)
+    first, last = (ctx.states[ctx.state_number(leg[end]) - 1].get(key) for end in ("from", "to"))
+    if change is None or first is None or last is None:
+        return change
+    return 0.0 if abs(change) <= _ROUNDING * (abs(first) + abs(last)) else change
 
 
 def _totals(ctx: Context) -> list[Block]:
@@ -150,6 +164,24 @@ def _totals(ctx: Context) -> list[Block]:
     return blocks
 
 
+def _streams(ctx: Context) -> list[Block]:
+    """Streams that leave by separation or join by mixing, with their states."""
+    found = [leg for leg in ctx.legs if leg.get("other")]
+    if not found:
+        return []
+    keys = ("T", "p", "v", "h", "s", "x")
+    columns = [Column(say("col.leg")), Column(say("col.stream")), ctx.column("col.amount", "", "amount")]
+    columns += [ctx.column(f"q.{k}", SYMBOLS[k], STATE_KINDS[k]) for k in keys]
+    rows = []
+    for leg in found:
+        other = leg["other"]
+        amount = other["amount"]
+        way = say("results.stream.joins" if leg["path"] == "mixing" else "results.stream.leaves")
+        row = [Cell(str(leg["name"])), Cell(way), ctx.cell("amount", None if amount is None else abs(amount))]
+        rows.append(row + [ctx.cell(STATE_KINDS[k], other.get(k)) for k in keys])
+    return [Heading(say("results.streams")), ctx.table(say("results.caption.streams"), columns, rows)]
+
+
 def limits(ctx: Context) -> Section:
     """Acceptance limits with margins; each value carries its own unit, as kinds differ by row."""
     found = ctx.result["limits"]
@@ -161,7 +193,8 @@ def limits(ctx: Context) -> Section:
     rows = []
     for limit, own in zip(found, _limits_of(ctx, len(found)), strict=True):
         kind = kind_of(limit["quantity"])
-        cells = [_measure(ctx, kind, limit[k]) for k in ("value", "min", "max")]
+        cells = [_measure(ctx, kind, limit["value"])]
+        cells += [_bound(ctx, kind, limit[k]) for k in ("min", "max")]
         cells[0] = replace(cells[0], link=ctx.derivations.anchor(limit["quantity"]))
         cells.append(_measure(ctx, ctx.margin(kind), limit["margin"]))
         outcome = Cell(say("limits.met"), "good") if limit["passed"] else Cell(say("limits.missed"), "bad")
@@ -176,6 +209,11 @@ def limits(ctx: Context) -> Section:
 def _limits_of(ctx: Context, n: int) -> list[Any]:
     own = list(pick(ctx.case, "limits", []))
     return own if len(own) == n else [None] * n
+
+
+def _bound(ctx: Context, kind: str, si: float | None) -> Cell:
+    """A bound as the case gives it, without zeros after its last digit."""
+    return Cell(numbers.ABSENT, "absent") if si is None else Cell(ctx.brief(kind, si), "number")
 
 
 def _measure(ctx: Context, kind: str, si: float | None) -> Cell:
