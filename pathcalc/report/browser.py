@@ -123,6 +123,7 @@ def _run(browser: str, page: Path, sandbox: bool) -> str:
                 stdout=subprocess.DEVNULL,
                 stderr=stream,
                 cwd=page.parent,
+                env=_surroundings(page.parent),
                 start_new_session=True,
             )
         except OSError as error:
@@ -139,6 +140,15 @@ def _run(browser: str, page: Path, sandbox: bool) -> str:
     if "sandbox" in text:
         return "it could not set up its sandbox"
     return f"exit code {code}" if code else ""
+
+
+def _surroundings(folder: Path) -> dict[str, str]:
+    """The environment, with the browser's own temporary files where they go with ours.
+
+    The browser makes a socket there, whose path the system limits to about a hundred characters.
+    """
+    short = folder if len(str(folder)) <= 50 else Path("/tmp")
+    return {**os.environ, "TMPDIR": str(short)} if short.is_dir() else dict(os.environ)
 
 
 def _end(process: subprocess.Popen[bytes]) -> None:
