@@ -201,8 +201,9 @@ def _style(path: Path) -> str:
     out = _REACHES_OUT.search(bare)
     if out:
         line = bare[: out.start()].count("\n") + 1
+        word = out[0].split("(")[0].strip()
         raise UsageError(
-            f"{path.as_posix()}:{line}: {out[0].strip()!r} cannot be in a style sheet of a page that stands alone; "
-            "url() takes data: only"
+            f"{path.as_posix()}:{line}: {word!r} cannot be in a style sheet of a page that stands alone; url() takes "
+            "data: only"
         )
     return text if text.endswith("\n") else f"{text}\n"

@@ -19,6 +19,7 @@ EXAMPLES = ("cold-store-chiller", "receiver-into-vacuum", "us-units-booster")
 """A cycle with two phases, a fixed mass, customary units."""
 
 
+@lru_cache(maxsize=1)
 def hostile_index() -> index.Index:
     """An index of every kind of case, with hostile text wherever text comes from outside."""
     made = hostile()
