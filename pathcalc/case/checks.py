@@ -47,7 +47,7 @@ def check_start(start: Start, equation: str | None, out: Findings) -> None:
 
 def _check_saturation(key: str, at: Path, equation: str | None, out: Findings) -> None:
     if key in SATURATION_KEYS and equation in names.WITHOUT_SATURATION:
-        text = f"the equation {equation} has no saturation, so {key} has no meaning; use {words(names.CUBICS)}"
+        text = f"the equation {equation} has no saturation, so {key} has no meaning; use {words(names.WITH_SATURATION)}"
         out.add(at, text, "no-saturation", key=True)
 
 
@@ -82,7 +82,9 @@ def check_fluid(fluid: Fluid, out: Findings) -> None:
             key=True,
         )
     if fluid.datum in names.SATURATION_DATUMS and fluid.equation in names.WITHOUT_SATURATION:
-        text = f"the equation {fluid.equation} has no liquid; use datum ideal-gas-298, or {words(names.CUBICS)}"
+        text = (
+            f"the equation {fluid.equation} has no liquid; use datum ideal-gas-298, or {words(names.WITH_SATURATION)}"
+        )
         out.add((*at, "datum"), text, "no-saturation")
 
 
@@ -114,7 +116,7 @@ def check_leg(leg: LegModel, at: Path, boundary: str, amount: bool | None, equat
             text = f"{key} is for boundary: {other} only; this case is boundary: {boundary}"
             out.add((*at, key), text, "wrong-boundary", key=True)
     if leg.needs_saturation and equation in names.WITHOUT_SATURATION:
-        text = f"the equation {equation} has no saturation; a {leg.path} leg needs {words(names.CUBICS)}"
+        text = f"the equation {equation} has no saturation; a {leg.path} leg needs {words(names.WITH_SATURATION)}"
         out.add((*at, "path"), text, "no-saturation")
     if leg.needs_amount and amount is False:
         text = f"a {leg.path} leg needs the top-level key 'amount', such as {EXAMPLE['mass-flow']}"
@@ -214,11 +216,11 @@ def read_units(data: Any, out: Findings) -> dict[str, str]:
             text = f"unknown kind of unit {kind!r}; {nearest(kind, list(names.UNIT_KINDS))}"
             out.add(at, text, "unknown-key", key=True)
         elif not isinstance(spelling, str):
-            out.add(at, f"{kind} holds one unit, such as {names.UNITS_DEFAULT[kind]}", "wrong-type")
+            out.add(at, f"{kind} holds one unit, such as {names.UNITS_DEFAULT.get(kind, 'kW')}", "wrong-type")
         elif str(spelling) not in UNITS:
             out.add(at, f"unit {str(spelling)!r} is not known; {advice(spelling)}", "bad-unit")
         elif UNITS[spelling].dimension not in names.UNIT_KINDS[kind] or spelling in names.UNIT_KINDS_REFUSED:
-            text = f"{spelling!s} is no unit for {kind} here; write one such as {names.UNITS_DEFAULT[kind]}"
+            text = f"{spelling!s} is no unit for {kind} here; write one such as {names.UNITS_DEFAULT.get(kind, 'kW')}"
             out.add(at, text, "wrong-dimension")
         else:
             units[kind] = str(spelling)

@@ -8,6 +8,12 @@ EQUATIONS = ("ideal-gas", "van-der-waals", "redlich-kwong", "soave", "peng-robin
 EQUATIONS_LATER = ("compressed", "measured")
 CUBICS = ("van-der-waals", "redlich-kwong", "soave", "peng-robinson")
 WITHOUT_SATURATION = ("ideal-gas", "virial")
+WITH_SATURATION = (*CUBICS, "reference")
+# words for quantities that people write where a symbol is wanted
+QUANTITY_WORDS = {
+    "temperature": "T", "pressure": "p", "volume": "v", "density": "rho", "energy": "u", "enthalpy": "h",
+    "entropy": "s", "quality": "x",
+}  # fmt: skip
 DATUMS = ("ideal-gas-298", "triple-liquid", "boiling-liquid", "liquid-0C")
 SATURATION_DATUMS = ("triple-liquid", "boiling-liquid", "liquid-0C")
 PATHS_LATER: tuple[str, ...] = ()
@@ -51,11 +57,21 @@ TOTAL_KEYS = {
 }
 PER_TIME = {"energy": "power", "entropy": "entropy-rate"}
 
+# kinds of results, as tolerances name them, with their dimensions
+RESULT_KINDS = {
+    "temperature": "temperature", "pressure": "pressure", "specific-volume": "specific-volume", "density": "density",
+    "specific-energy": "specific-energy", "specific-entropy": "specific-entropy", "heat-capacity": "specific-entropy",
+    "speed": "speed", "fraction": "fraction", "expansivity": "expansivity", "compressibility": "compressibility",
+    "joule-thomson": "joule-thomson", "energy": "energy", "power": "power", "entropy": "entropy",
+    "entropy-rate": "entropy-rate", "mass": "mass", "mass-flow": "mass-flow", "volume": "volume",
+    "volume-flow": "volume-flow", "molar-mass": "molar-mass",
+}  # fmt: skip
+
 AMOUNTS = {"flow": ("mass-flow", "mole-flow"), "closed": ("mass", "mole", "volume")}
 
 UNIT_KINDS = {
     "T": ("temperature",), "p": ("pressure",), "energy": ("energy",), "mass": ("mass",), "time": ("time",),
-    "volume": ("volume",), "amount": ("mole",),
+    "volume": ("volume",), "amount": ("mole",), "power": ("power",),
 }  # fmt: skip
 UNIT_PRESETS = {
     "si": {"T": "K", "p": "Pa", "energy": "J", "mass": "kg", "time": "s", "volume": "m3", "amount": "mol"},

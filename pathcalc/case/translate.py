@@ -8,9 +8,11 @@ from typing import Any, TypeVar, get_args
 from pydantic import BaseModel, ValidationError
 from pydantic.fields import FieldInfo
 
+from pathcalc.case.names import QUANTITY_WORDS
 from pathcalc.case.nodes import Mark, place
 from pathcalc.errors import Finding
 from pathcalc.quantities.parse import Problem, nearest
+from pathcalc.quantities.relative import RELATIVE_KEYS
 
 Path = tuple[str | int, ...]
 MOST = 100
@@ -62,7 +64,7 @@ class Findings:
         here = what if what and len(loc) == 1 else _name((*at, *loc[:-1]))
         if kind == "extra_forbidden":
             known = _keys(model, loc[:-1])
-            text = f"unknown key {str(loc[-1])!r} in {here}; {nearest(str(loc[-1]), known)}"
+            text = f"unknown key {str(loc[-1])!r} in {here}; {_instead(str(loc[-1]), known)}"
             self.add((*at, *loc), text, "unknown-key", key=True)
         elif kind == "missing":
             self.missing((*at, *loc[:-1]), str(loc[-1]), f"{here} needs the key {str(loc[-1])!r}")
@@ -74,6 +76,16 @@ class Findings:
 
     def _problem(self, problem: Problem, at: Path) -> None:
         self.add((*at, *problem.at), problem.message, problem.code, problem.key)
+
+
+def _instead(key: str, known: list[str]) -> str:
+    """What to write in place of a key that is not known."""
+    symbol = QUANTITY_WORDS.get(key.lower(), "")
+    if symbol in known:
+        return f"did you mean {symbol}?"
+    if key in RELATIVE_KEYS and "p" in known:
+        return f"name the quantity first, such as p: {{{key}: …}}"
+    return nearest(key, known)
 
 
 def _name(path: Path) -> str:

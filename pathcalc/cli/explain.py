@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from pathcalc.cli.group import COMMANDS
-from pathcalc.cli.inputs import PATH, place_of, root_option, single
+from pathcalc.cli.inputs import PATH, root_option, single
 from pathcalc.cli.talk import Talk, loudness, write
 from pathcalc.errors import Finding, NoSolutionError
 
@@ -43,14 +43,15 @@ def _addresses(context: click.Context, parameter: click.Parameter, incomplete: s
 
 @click.command("explain", short_help=COMMANDS["explain"])
 @click.argument("case", type=PATH)
-@click.argument("quantity", shell_complete=_addresses)
+@click.argument("quantity", required=False, default="", shell_complete=_addresses)
 @root_option
 @loudness
 @click.pass_obj
 def command(talk: Talk, case: str, quantity: str, root: str | None) -> int:
     """Show how one number of a case came about: formula, numbers put in, result, source.
 
-    QUANTITY is an address such as start.h, "first stage.work", "cooler.delta.s" or totals.work.
+    QUANTITY is an address such as start.h, "first stage.work", "cooler.delta.s", totals.work or cycle.cop_cooling;
+    without it the addresses that have worked steps are listed.
     """
     from pathcalc.path.solution import solve
 
@@ -59,10 +60,12 @@ def command(talk: Talk, case: str, quantity: str, root: str | None) -> int:
     try:
         solution = solve(loaded)
     except NoSolutionError as error:
+        from pathcalc.case.places import place_of
+
         file, line, column = place_of(loaded, error.trouble.at) or (item.shown, 1, 1)
         talk.line(str(Finding(file, line, column, str(error.trouble).rpartition(" (")[0], error.trouble.code)))
         return error.exit_code
-    write(explained(solution, quantity.strip()))
+    write(explained(solution, quantity.strip()) if quantity.strip() else "\n".join(solution.explanations))
     return 0
 
 

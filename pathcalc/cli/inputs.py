@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, TypeVar
@@ -97,30 +97,3 @@ def gather(paths: Sequence[str], talk: Talk) -> Inputs:
 def single(path: str) -> Input:
     """The one case behind a PATH that may not be a folder."""
     return Input(None, STDIN) if path == STDIN else Input(Path(path), Path(path).as_posix())
-
-
-def places(case: Case) -> Iterator[tuple[str, tuple[str, int, int]]]:
-    """Name of every leg with the file, line and column it begins at."""
-    for leg in case.legs:
-        line, column = leg.origin
-        yield leg.name, (leg.origin_file, line, column)
-
-
-def place_of(case: Case, at: str) -> tuple[str, int, int] | None:
-    """File, line and column of what an address or a name of a leg stands for; None where it has none."""
-    for limit in case.limits:
-        if limit.quantity == at and limit.line:
-            file = case.positions.get(("limits",))
-            return str(file[0]) if file else "", limit.line, limit.column
-    name = at
-    known = dict(places(case))
-    while name and name not in known:
-        name = name.rpartition(".")[0]
-    if name and known[name][1]:
-        return known[name]
-    for key in ("start", "surroundings", "fluid", "limits"):
-        if at == key or at.startswith(f"{key}."):
-            mark = case.positions.get((key,))
-            if mark is not None:
-                return str(mark[0]), int(mark[1]), int(mark[2])
-    return None

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from pathcalc.cli.group import COMMANDS
-from pathcalc.cli.inputs import PATH, Input, Inputs, gather, place_of, root_option
+from pathcalc.cli.inputs import PATH, Input, Inputs, gather, root_option
 from pathcalc.cli.reports import PAPERS, Reports
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, json_text, loudness, write_utf8
@@ -182,6 +182,8 @@ def _missed(solution: Solution, result: dict[str, Any]) -> list[str]:
 
 
 def _finding(case: Case, item: Input, error: NoSolutionError) -> Finding:
+    from pathcalc.case.places import place_of
+
     trouble = error.trouble
     file, line, column = place_of(case, trouble.at) or (item.shown, 1, 1)
     at = f"{trouble.at}: " if trouble.at else ""

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from pathcalc.errors import NoSolutionError
+from pathcalc.errors import NoSolutionError, Trouble
 from pathcalc.path.results import plain
 
 if TYPE_CHECKING:
@@ -24,10 +24,11 @@ def compared(solution: Solution) -> list[dict[str, Any]]:
 
 def compared_addresses(solution: Solution) -> list[str]:
     """What is compared: end state, heat and work of every leg, the totals, and every limited quantity."""
-    addresses = [
+    addresses = [f"start.{key}" for key in ("T", "p", "v")]
+    addresses += [
         f"{name}.{key}"
         for name in solution.legs
-        for key in ("T", "p", "v", "heat", "work", "delta.s", "delta.g", "entropy_generated")
+        for key in ("T", "p", "v", "x", "heat", "work", "delta.s", "delta.g", "entropy_generated")
     ]
     if solution.totals.work is not None:
         addresses += ["totals.heat", "totals.work", "totals.exergy_destroyed"]
@@ -50,6 +51,10 @@ def _solve(solution: Solution, equation: str) -> Solution | str:
     try:
         path = solve_path(solution.case, equation=equation)
     except NoSolutionError as error:
-        return str(error)
+        return _told(error.trouble)
     trouble = path.setting.status.trouble_of(0)
-    return Solved(path, lanes=False) if trouble is None else str(trouble)
+    return Solved(path, lanes=False) if trouble is None else _told(trouble)
+
+
+def _told(trouble: Trouble) -> str:
+    return f"{trouble.at}: {trouble.text}; {trouble.remedy}"

@@ -54,7 +54,16 @@ def model_of(case: Case, card: Card, equation: str | None = None) -> Model:
             options["heat_capacity"] = _molar(heat.value, card)
         else:
             options["heat_capacity"] = _constant_at_start(case, card, name)
-    return with_datum(build_model(card, name, **options), fluid.datum)
+    try:
+        built = build_model(card, name, **options)
+    except InvalidCaseError as error:
+        if fluid.card_path is None:
+            raise
+        where = _place(case, "fluid", "equation")
+        text = "; ".join(finding.message for finding in error.findings)
+        message = f"the equation {name} cannot be used with this card: {text}"
+        raise InvalidCaseError([Finding(*where, message, error.findings[0].code)]) from error
+    return with_datum(built, fluid.datum)
 
 
 def _molar(q: Quantity, card: Card) -> float:

@@ -39,7 +39,7 @@ def hand_sums(path: SolvedPath, solved: SolvedLeg) -> tuple[HandSum, ...]:
         k = int(np.flatnonzero(piece.lanes == 0)[0])
         ds = float(piece.integrals.value[0, k])
         size = float(piece.integrals.magnitude[0, k])
-        if size < 1e-9 * path.model.R:
+        if size < 1e-9 * path.model.R or abs(ds) <= 1e-10 * size:  # along an isentrope there is nothing to add
             continue
         if not piece.in_dome:
             found.append(_in_one_phase(path, solved, piece, k, ds, len(found) + 1))

@@ -125,9 +125,11 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
         "joule_thomson": [
             Step(
                 "Joule–Thomson coefficient",
-                r"\mu=\frac{v\,(T\,\alpha-1)}{c_p}",
-                rf"\frac{{{number(v)}\times({number(T)}\times {signed(state['expansivity'])}-1)}}"
-                rf"{{{shown(cp, 'entropy')}}}",
+                r"\mu=-\frac{v}{c_p}\,\frac{\delta\alpha^\mathrm{r}_\delta+\delta\tau\alpha^\mathrm{r}_{\delta\tau}"
+                r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}{1+2\,\delta\alpha^\mathrm{r}_\delta"
+                r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}",
+                rf"-\frac{{{number(v)}}}{{{shown(cp, 'entropy')}}}\times\frac{{{number(q['a_d'])}+{signed(q['a_dt'])}"
+                rf"+{signed(q['a_dd'])}}}{{1+2\times {signed(q['a_d'])}+{signed(q['a_dd'])}}}",
                 rf"{number(state['joule_thomson'] * 1e3)}\ \mathrm{{K/kPa}}",
             )
         ],
@@ -143,7 +145,7 @@ def _of_one_phase(state: Mapping[str, Any], q: StateParts, R: float) -> dict[str
             Step(
                 "Fugacity coefficient",
                 r"\ln\varphi=\alpha^\mathrm{r}+Z-1-\ln Z",
-                rf"{number(q['a'])}+{number(Z)}-1-\ln {number(Z)}",
+                rf"{number(q['a'])}+{number(Z)}-1-\ln\left({number(Z)}\right)",
                 rf"{number(math.log(phi))},\quad \varphi={number(phi)}",
                 source=SPAN,
             )

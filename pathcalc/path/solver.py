@@ -166,21 +166,21 @@ def _least(setting: Setting, inlet: Place) -> Array:
 
 def _check_cycle(setting: Setting, start: Place, last: Place) -> None:
     gap = np.zeros(setting.n)
-    for a, b in ((start.T, last.T), (start.p, last.p), (start.v, last.v)):
+    apart = []
+    for key, unit in (("T", "K"), ("p", "Pa"), ("v", "m3/kg")):
+        a, b = getattr(start, key), getattr(last, key)
         gap = np.maximum(gap, np.abs(b / a - 1.0))
-    detail = ""
-    if setting.n == 1:
-        detail = (
-            f" (T {float(last.T[0]):.6g} K against {float(start.T[0]):.6g} K, "
-            f"p {float(last.p[0]):.6g} Pa against {float(start.p[0]):.6g} Pa)"
-        )
+        if setting.n == 1 and abs(float(b[0] / a[0]) - 1.0) > CYCLE_TOLERANCE:
+            scale = 1.0 / setting.model.M if key == "v" else 1.0
+            apart.append(f"{key} {float(b[0]) * scale:.6g} {unit} against {float(a[0]) * scale:.6g} {unit}")
+    detail = f" ({', '.join(apart)})" if apart else ""
     setting.status.fail(
         gap > CYCLE_TOLERANCE,
         Trouble(
             "cycle-not-closed",
             "cycle",
             "the last state is not the first one" + detail,
-            "end the last leg at the start, such as `to: {T: {same_as: start}}` on the pressure of the start, "
-            "or leave `cycle` out",
+            "end the last leg at the start (such as `to: {T: {same_as: start}}` where the pressure is that of the "
+            "start), or leave `cycle` out",
         ),
     )

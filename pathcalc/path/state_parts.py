@@ -51,6 +51,8 @@ def _of_one_phase(model: Model, place: Place) -> tuple[Part, ...]:
         ("v", "v", "m3/kg", float(v[0]) / M),
         ("a", r"\alpha^\mathrm{r}", "", float(d.d00[0])),
         ("a_d", r"\delta\alpha^\mathrm{r}_\delta", "", float(d.d01[0])),
+        ("a_dd", r"\delta^2\alpha^\mathrm{r}_{\delta\delta}", "", float(d.d02[0])),
+        ("a_dt", r"\delta\tau\alpha^\mathrm{r}_{\delta\tau}", "", float(d.d11[0])),
         ("a_t", r"\tau\alpha^\mathrm{r}_\tau", "", float(d.d10[0])),
         ("a_tt", r"\tau^2\alpha^\mathrm{r}_{\tau\tau}", "", float(d.d20[0])),
         ("h0", r"h^\circ", "kJ/kg", (R * h0 + model.h_offset / M) * 1e-3),

@@ -55,7 +55,28 @@ class Context:
             scale = self.units[kind]
             if scale.steady:
                 found.setdefault(_family(kind), []).append(scale.of(value))
-        return {family: numbers.common_decimals(values) for family, values in found.items()}
+        decimals = {family: numbers.common_decimals(values) for family, values in found.items()}
+        for kind, error in self._integration_errors().items():
+            if kind in decimals and error > 0.0:
+                decimals[kind] = min(decimals[kind], numbers.decimals_within(error))
+        return decimals
+
+    def _integration_errors(self) -> dict[str, float]:
+        """The largest integration error of the legs by kind, in the printed unit: digits beyond it mean nothing."""
+        found: dict[str, float] = {}
+        for leg in self.legs:
+            m = leg["maxwell"] or {}
+            error, amount = m.get("error") or 0.0, leg.get("amount") or 0.0
+            energy = max(abs(m.get("du") or 0.0), abs(m.get("dh") or 0.0)) * error
+            entropy = abs(m.get("ds") or 0.0) * error
+            for kind, si in (
+                ("e", energy),
+                ("s", entropy),
+                ("total", energy * amount),
+                ("total_entropy", entropy * amount),
+            ):
+                found[kind] = max(found.get(kind, 0.0), abs(si * self.units[kind].factor))
+        return found
 
     def _all_values(self) -> Iterator[tuple[str, float | None]]:
         for state in self.states:

@@ -99,6 +99,11 @@ def scientific(x: float | None, digits: int = 2) -> str:
     return mantissa.replace("-", MINUS) + "×10" + str(int(exponent)).translate(SUPERSCRIPTS)
 
 
+def ten_to(exponent: int) -> str:
+    """A power of ten, such as 10⁻³."""
+    return "10" + str(exponent).translate(SUPERSCRIPTS)
+
+
 def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DIGITS) -> int:
     """Decimals that show the largest of ``values`` to ``digits`` significant digits, at most six.
 
@@ -110,6 +115,11 @@ def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DI
     if largest == 0:
         return 3
     return min(6, max(0, digits - 1 - magnitude(largest, digits)))
+
+
+def decimals_within(error: float) -> int:
+    """Decimals of which the last is not smaller than ``error``; none at all for an error of one and more."""
+    return max(0, math.floor(-math.log10(error))) if error > 0.0 else 6
 
 
 def align(texts: Iterable[str]) -> list[Number]:

@@ -11,7 +11,7 @@ the worked steps alone.
     the results object of one lane, SI, exactly as ``pathcalc solve --json`` writes it;
 ``solution.case``
     the case: record, fluid, start, legs, limits, units, report block, text, digest;
-``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``
+``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``, ``.streams``
     the records of :mod:`pathcalc.path.steps`.
 """
 
@@ -37,6 +37,8 @@ class SolutionLike(Protocol):
     def dome(self) -> Dome | None: ...
     @property
     def basis(self) -> Basis: ...
+    @property
+    def streams(self) -> Mapping[str, Mapping[str, Any]]: ...
     @property
     def state_parts(self) -> Sequence[StateParts]: ...
     def to_dict(self) -> dict[str, Any]: ...

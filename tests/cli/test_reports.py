@@ -58,7 +58,7 @@ def test_a_report_that_fails_leaves_nothing_half_written(run: Run, cases: Path) 
     (cases / "out" / "good.md").mkdir(parents=True)
     done = run("solve", "good.yaml", "quick.yaml", "--report", "html,md", "-o", "out")
     assert done.returncode == 2
-    assert "error: good.yaml: cannot write reports into out: a folder stands where the report would go" in done.stderr
+    assert "error: good.yaml: cannot write reports into out: a folder stands where the file would go" in done.stderr
     assert sorted(p.name for p in (cases / "out").iterdir() if p.name.startswith(("good.html", "."))) == []
     assert (cases / "out" / "quick.html").is_file()
 

@@ -34,6 +34,7 @@ class MadeSolution:
     dome: Dome | None = None
     basis: Basis = field(default_factory=lambda: nitrogen_basis())
     state_parts: tuple[StateParts, ...] = ()
+    streams: dict[str, Any] = field(default_factory=dict)
 
     def to_dict(self) -> dict[str, Any]:
         return self.result

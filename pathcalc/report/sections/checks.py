@@ -9,9 +9,10 @@ from typing import Any
 from pathcalc.report import numbers
 from pathcalc.report.context import Context, phase_words
 from pathcalc.report.units import STATE_KINDS, kind_of
-from pathcalc.report.view import Block, Cell, Column, Heading, Paragraph, Section, Table
+from pathcalc.report.view import Block, Bullets, Cell, Column, Heading, Paragraph, Section, Table
 from pathcalc.report.words import SYMBOLS, say
 
+_SAME = 1e-9
 _ABREAST = 2
 """Other equations in one table, so that it fits a printed page."""
 
@@ -98,19 +99,25 @@ def _pieces(ctx: Context) -> Table:
 
 def comparison(ctx: Context) -> Section | None:
     """The same path by other equations; left out where the case asks for none."""
-    others: Sequence[Mapping[str, Any]] = ctx.result["comparison"]
-    if not others:
+    rows: Sequence[Mapping[str, Any]] = ctx.result["comparison"]
+    if not rows:
         return None
     blocks: list[Block] = [Paragraph(say("comparison.lead"))]
+    others = [row for row in rows if any(v is not None for v in (row["quantities"] or {}).values())]
     for i in range(0, len(others), _ABREAST):
         blocks.append(_compared(ctx, others[i : i + _ABREAST]))
+    failed = [str(w["text"]) for w in ctx.warnings if w["code"] == "comparison-failed"]
+    if failed:
+        blocks += [Paragraph(say("comparison.failed")), Bullets(tuple(failed))]
     return Section("comparison", say("comparison.title"), tuple(blocks))
 
 
 def _compared(ctx: Context, others: Sequence[Mapping[str, Any]]) -> Table:
-    addresses = list(dict.fromkeys(a for o in others for a in (o["quantities"] or {})))
+    addresses = [
+        a for a in dict.fromkeys(a for o in others for a in (o["quantities"] or {})) if _differs(ctx, a, others)
+    ]
     columns = [Column(say("col.quantity")), Column(say("col.unit"))]
-    columns.append(Column(str(ctx.result["fluid"]["equation"]), numeric=True))
+    columns.append(Column(ctx.solution.basis.equation_title, numeric=True))
     for other in others:
         columns.append(Column(str(other["equation"]), numeric=True))
         columns.append(Column(say("comparison.difference"), numeric=True))
@@ -126,6 +133,15 @@ def _compared(ctx: Context, others: Sequence[Mapping[str, Any]]) -> Table:
             row.append(_gap(ctx, kind, own, gap))
         rows.append(row)
     return ctx.table(say("comparison.caption"), columns, rows)
+
+
+def _differs(ctx: Context, address: str, others: Sequence[Mapping[str, Any]]) -> bool:
+    """Whether a row tells anything: not where the value is given and all equations have the same."""
+    own = ctx.value(address)
+    values = [(other["quantities"] or {}).get(address) for other in others]
+    if own is None:
+        return any(value is not None for value in values)
+    return any(value is None or abs(value - own) > _SAME * max(abs(own), abs(value)) for value in values)
 
 
 def _gap(ctx: Context, kind: str, own: float | None, gap: float | None) -> Cell:

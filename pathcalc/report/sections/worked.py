@@ -22,7 +22,19 @@ _ONE_PHASE = (
     ),
     (r"u=h-p\,v,\quad a=u-T\,s,\quad g=h-T\,s,\quad Z=\frac{p\,v}{R\,T}", "rest"),
     (r"c_v=c_p^\circ-R-R\,\tau^2\alpha^\mathrm{r}_{\tau\tau},\quad c_p=c_v-T\,\frac{p_T^2}{p_v}", "heat"),
-    (r"c=v\sqrt{-\frac{c_p}{c_v}\,p_v},\quad \mu=\frac{v\,(T\,\alpha-1)}{c_p}", "sound"),
+    (
+        r"p_T=\frac{R}{v}\left(1+\delta\alpha^\mathrm{r}_\delta-\delta\tau\alpha^\mathrm{r}_{\delta\tau}\right),\quad "
+        r"p_v=-\frac{R\,T}{v^2}\left(1+2\,\delta\alpha^\mathrm{r}_\delta"
+        r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}\right)",
+        "slopes",
+    ),
+    (r"c=v\sqrt{-\frac{c_p}{c_v}\,p_v}", "sound"),
+    (
+        r"\mu=-\frac{v}{c_p}\,\frac{\delta\alpha^\mathrm{r}_\delta+\delta\tau\alpha^\mathrm{r}_{\delta\tau}"
+        r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}{1+2\,\delta\alpha^\mathrm{r}_\delta"
+        r"+\delta^2\alpha^\mathrm{r}_{\delta\delta}}",
+        "throttling",
+    ),
     (r"\alpha=-\frac{p_T}{v\,p_v},\quad \kappa_T=-\frac{1}{v\,p_v}", "stretch"),
     (r"\ln\varphi=\alpha^\mathrm{r}+Z-1-\ln Z", "fugacity"),
 )
