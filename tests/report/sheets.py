@@ -20,6 +20,7 @@ ROWS = """
   }));
 }
 """
+LEADS = "() => [...document.querySelectorAll('h2 + p, h3 + p')].map(e => e.textContent)"
 HEADS = "() => [...document.querySelectorAll('h2, h3, caption')].map(e => e.textContent)"
 
 

@@ -6,7 +6,7 @@ from typing import Any
 
 import pytest
 from pages import page
-from sheets import HEADS, ROWS, cut_rows, drawn, headless, orphans, sheets, sizes, squeezed
+from sheets import HEADS, LEADS, ROWS, cut_rows, drawn, headless, orphans, sheets, sizes, squeezed
 
 SIZES = {"A4": (595, 842), "Letter": (612, 792)}
 """Points: 210 mm x 297 mm (ISO 216), 8.5 in x 11 in (ANSI/ASME Y14.1), at 72 to the inch."""
@@ -14,13 +14,14 @@ SIZES = {"A4": (595, 842), "Letter": (612, 792)}
 COUNTS = {"cold-store-chiller": (15, 38), "us-units-booster": (15, 38), "hostile": (9, 26), "index": (2, 8)}
 
 
-def printed(browser: Any, html: str, paper: str) -> tuple[bytes, list[dict[str, Any]], list[str]]:
+def printed(browser: Any, html: str, paper: str) -> tuple[bytes, list[dict[str, Any]], list[str], list[str]]:
     tab = browser.new_page()
     tab.set_content(html)
     data = tab.pdf(format=paper, prefer_css_page_size=True)
     tables, heads = tab.evaluate(ROWS), tab.evaluate(HEADS)
+    leads = tab.evaluate(LEADS)
     tab.close()
-    return data, tables, heads
+    return data, tables, heads, leads
 
 
 @pytest.mark.parametrize(
@@ -33,7 +34,7 @@ def printed(browser: Any, html: str, paper: str) -> tuple[bytes, list[dict[str, 
     ],
 )
 def test_sheets_are_whole(browser: Any, name: str, paper: str) -> None:
-    data, tables, heads = printed(browser, page(name), paper)
+    data, tables, heads, leads = printed(browser, page(name), paper)
     found = sheets(data)
     assert all(abs(w - SIZES[paper][0]) <= 1 and abs(h - SIZES[paper][1]) <= 1 for w, h in sizes(data))
     low, high = COUNTS[name]
@@ -45,10 +46,11 @@ def test_sheets_are_whole(browser: Any, name: str, paper: str) -> None:
     assert cut_rows(tables, found) == []
     assert headless(tables, found) == []
     assert orphans(heads, found) == []
+    assert [lead for lead in leads if not any(squeezed(lead) in sheet for sheet in found)] == []
 
 
 def test_number_and_revision_run_on_every_sheet(browser: Any) -> None:
-    data, _, _ = printed(browser, page("cold-store-chiller"), "A4")
+    data, *_ = printed(browser, page("cold-store-chiller"), "A4")
     assert all(sheet.startswith("vgw900c13revisionb") for sheet in sheets(data))
 
 
@@ -63,21 +65,21 @@ def test_cut_rows_are_found(browser: Any, undone: str, whole: bool) -> None:
     table = f"<table><thead><tr><th scope='col'>No head</th></tr></thead><tbody>{LONG}</tbody></table>"
     style = page("index").split("<style>")[1].split("</style>")[0]
     html = f"<!doctype html><html lang='en'><title>x</title><style>{style}{undone}</style><main>{table}</main></html>"
-    data, tables, _ = printed(browser, html, "A4")
+    data, tables, *_ = printed(browser, html, "A4")
     assert (cut_rows(tables, sheets(data)) == []) is whole
 
 
 def test_lost_heads_are_found(browser: Any) -> None:
     table = f"<table><thead><tr><th scope='col'>No head</th></tr></thead><tbody>{LONG}</tbody></table>"
     html = f"<!doctype html><html lang='en'><title>x</title><style>thead {{ display: table-row-group; }}</style>{table}"
-    data, tables, _ = printed(browser, html, "A4")
+    data, tables, *_ = printed(browser, html, "A4")
     assert headless(tables, sheets(data))
 
 
 @pytest.mark.parametrize("name", ["cold-store-chiller", "us-units-booster"])
 def test_tables_and_figures_that_fit_are_whole(browser: Any, name: str) -> None:
-    """Every table of up to 30 rows stands with its caption on one sheet; so does every figure's caption."""
-    data, _, _ = printed(browser, page(name), "A4")
+    """Every table of up to 24 rows stands with its caption on one sheet; so does every figure's caption."""
+    data, *_ = printed(browser, page(name), "A4")
     found = sheets(data)
     tab = browser.new_page()
     tab.set_content(page(name))
