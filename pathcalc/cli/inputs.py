@@ -47,6 +47,18 @@ class Input:
         data = sys.stdin.buffer.read(MAX_BYTES + 1)
         return loads(data.decode("utf-8", errors="surrogateescape"), name=STDIN, root=root)
 
+    def id(self, root: str | None) -> str:
+        """The id that the case has, told without reading it: its path under the root without the ending."""
+        if self.path is None:
+            return "stdin"
+        from pathcalc.case.files import find_root
+
+        folder = self.path.parent.resolve()
+        top = find_root(folder) if root is None else Path(root).resolve()
+        here = folder / self.path.name
+        shown = here.relative_to(top) if here.is_relative_to(top) else Path(self.path.name)
+        return shown.with_suffix("").as_posix()
+
 
 @dataclass(frozen=True)
 class Inputs:

@@ -8,7 +8,7 @@ import click
 
 from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import PATH, Input, Inputs, gather, root_option
-from pathcalc.cli.reports import Reports
+from pathcalc.cli.reports import PAPERS, Reports
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, json_text, loudness, write_utf8
 from pathcalc.errors import Finding, NoSolutionError
@@ -31,27 +31,45 @@ OUTCOMES = {
 @click.command("solve", short_help=COMMANDS["solve"])
 @click.argument("paths", nargs=-1, required=True, type=PATH, metavar="PATH...")
 @click.option("--json", "as_json", is_flag=True, help="Print the results as JSON, in SI units.")
-@click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, or html,md.")
+@click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, pdf, or several.")
 @click.option("-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/.")
+@click.option("--template", type=click.Path(), metavar="DIR", help="Folder with your own templates, style and logo.")
+@click.option("--paper", type=click.Choice(PAPERS), default=PAPERS[0], show_default=True, help="Sheet of the PDF.")
 @root_option
 @loudness
 @click.pass_obj
 def command(
-    talk: Talk, paths: tuple[str, ...], as_json: bool, formats: str | None, output: str | None, root: str | None
+    talk: Talk,
+    paths: tuple[str, ...],
+    as_json: bool,
+    formats: str | None,
+    output: str | None,
+    template: str | None,
+    paper: str,
+    root: str | None,
 ) -> int:
     """Solve cases: a summary or JSON on standard output, and reports.
 
     A PATH is a file, a folder (every *.yaml below it that begins with the key pathcalc) or - for standard input.
     One file gives one JSON object; a folder or several PATHs give a list of those that have a solution. A report is
-    called as the case's id, the folders of the id kept. -o alone writes html,md.
+    called as the case's id, the folders of the id kept; over several cases there is an index, too. -o alone writes
+    html,md. pdf needs an installed browser of the Chromium family; PATHCALC_BROWSER names one.
     """
-    reports = Reports.asked(formats, output)
+    reports = Reports.asked(formats, output, template, paper)
     inputs = gather(paths, talk)
     codes = Solving(talk, root, as_json, reports).all(inputs)
+    unwritten = 0
+    if inputs.many and codes:
+        places, failed = reports.write_index()
+        for place in places:
+            talk.note(f"index: {place}")
+        if failed:
+            talk.error(failed)
+            unwritten = 2
     if inputs.many:
         counts = [f"{codes.count(code)} {text}" for code, text in OUTCOMES.items() if code in codes]
         talk.note(f"{len(codes)} case{'' if len(codes) == 1 else 's'}: {', '.join(counts) or 'none'}")
-    return max([inputs.code, *codes])
+    return max([inputs.code, unwritten, *codes])
 
 
 class Solving:
@@ -73,6 +91,7 @@ class Solving:
             except BrokenPipeError:
                 raise
             except Exception as error:
+                self.reports.failed(item, self.root, error, None)
                 codes.append(report_error(error, self.talk, item.shown))
         if as_list:
             write_utf8("\n]" if self.printed else "]")
@@ -89,6 +108,7 @@ class Solving:
             result = solution.to_dict()
         except NoSolutionError as error:
             self.talk.line(str(_finding(case, item, error)))
+            self.reports.failed(item, self.root, error, case)
             return error.exit_code
         text = self._text(solution, result, many)
         written, failed = self.reports.write(solution, case)

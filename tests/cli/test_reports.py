@@ -25,7 +25,9 @@ def test_the_folders_of_the_id_are_kept(run: Run, tmp_path: Path) -> None:
     assert sorted(p.relative_to(tmp_path).as_posix() for p in (tmp_path / "out").rglob("*") if p.is_file()) == [
         "out/a/same.html",
         "out/b/same.html",
+        "out/index.html",
     ]
+    assert "index: out/index.html" in done.stderr
     assert "report: out/a/same.html" in done.stderr
     assert "report:" not in done.stdout
 

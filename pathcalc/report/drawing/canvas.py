@@ -104,7 +104,7 @@ class Canvas:
         if anchor != "start":
             given["text-anchor"] = anchor
         if halo:
-            given |= {"stroke": PAPER, "stroke-width": 3, "paint-order": "stroke"}
+            given |= {"stroke": PAPER, "stroke-width": 3, "style": "paint-order: stroke"}
         if turned:
             given["transform"] = f"rotate(-90 {short(x)} {short(y)})"
         body = escape(clean(text))
