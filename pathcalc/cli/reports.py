@@ -6,7 +6,7 @@ import difflib
 import os
 from dataclasses import dataclass, field
 from pathlib import Path, PurePosixPath
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from pathcalc.errors import UsageError
 
@@ -86,7 +86,7 @@ class Reports:
                 "give --root a folder above both"
             )
 
-    def write(self, solution: Solution, case: Case) -> tuple[list[str], str]:
+    def write(self, solution: Solution, case: Case, changes: dict[str, Any] | None = None) -> tuple[list[str], str]:
         """Write the reports; the places, or why that could not be."""
         if not self.formats:
             return [], ""
@@ -96,7 +96,7 @@ class Reports:
 
         name = PurePosixPath(case.id)
         folder = self.folder.joinpath(*name.parts[:-1])
-        document = build(solution)
+        document = build(solution, changes)
         failed = ""
         try:
             check(set(self.formats), name.name)

@@ -11,7 +11,7 @@ from pathcalc.cli.inputs import PATH, Input, Inputs, gather, root_option
 from pathcalc.cli.reports import PAPERS, Reports
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, json_text, loudness, write_utf8
-from pathcalc.errors import Finding, NoSolutionError
+from pathcalc.errors import Finding, NoSolutionError, UsageError
 
 if TYPE_CHECKING:
     from pathcalc.case import Case
@@ -34,6 +34,7 @@ OUTCOMES = {
 @click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, pdf, or several.")
 @click.option("-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/.")
 @click.option("--template", type=click.Path(), metavar="DIR", help="Folder with your own templates, style and logo.")
+@click.option("--since", metavar="EARLIER", help="Tell in the report what changed since a case or results file.")
 @click.option("--paper", type=click.Choice(PAPERS), default=PAPERS[0], show_default=True, help="Sheet of the PDF.")
 @root_option
 @loudness
@@ -45,6 +46,7 @@ def command(
     formats: str | None,
     output: str | None,
     template: str | None,
+    since: str | None,
     paper: str,
     root: str | None,
 ) -> int:
@@ -53,11 +55,14 @@ def command(
     A PATH is a file, a folder (every *.yaml below it that begins with the key pathcalc) or - for standard input.
     One file gives one JSON object; a folder or several PATHs give a list of those that have a solution. A report is
     called as the case's id, the folders of the id kept; over several cases there is an index, too. -o alone writes
-    html,md. pdf needs an installed browser of the Chromium family; PATHCALC_BROWSER names one.
+    html,md. pdf needs an installed browser of the Chromium family; PATHCALC_BROWSER names one. EARLIER is a case, a
+    results file or REVISION:PATH of a checkout.
     """
     reports = Reports.asked(formats, output, template, paper)
     inputs = gather(paths, talk)
-    codes = Solving(talk, root, as_json, reports).all(inputs)
+    if since is not None and (inputs.many or not reports.formats):
+        raise UsageError("--since is of the report of one case; name one, and add --report or -o")
+    codes = Solving(talk, root, as_json, reports, since).all(inputs)
     unwritten = 0
     if inputs.many and codes:
         places, failed = reports.write_index()
@@ -75,8 +80,8 @@ def command(
 class Solving:
     """One run over the cases of a command line."""
 
-    def __init__(self, talk: Talk, root: str | None, as_json: bool, reports: Reports) -> None:
-        self.talk, self.root, self.as_json, self.reports = talk, root, as_json, reports
+    def __init__(self, talk: Talk, root: str | None, as_json: bool, reports: Reports, since: str | None = None) -> None:
+        self.talk, self.root, self.as_json, self.reports, self.since = talk, root, as_json, reports, since
         self.printed = 0
 
     def all(self, inputs: Inputs) -> list[int]:
@@ -111,7 +116,12 @@ class Solving:
             self.reports.failed(item, self.root, error, case)
             return error.exit_code
         text = self._text(solution, result, many)
-        written, failed = self.reports.write(solution, case)
+        changes = None
+        if self.since is not None:
+            from pathcalc.library.compare_sides import changes_since
+
+            changes = changes_since(self.since, solution, self.root)
+        written, failed = self.reports.write(solution, case, changes)
         self._print(text, written, many)
         missed = _missed(solution, result)
         for line in missed:

@@ -11,12 +11,20 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from pathcalc.errors import Finding, InvalidCaseError, UsageError
-from pathcalc.library.compare import Comparison, Snapshot, compare_snapshots, snapshot_of_case, snapshot_of_results
+from pathcalc.library.compare import (
+    Comparison,
+    Snapshot,
+    compare_snapshots,
+    snapshot_of_case,
+    snapshot_of_results,
+    snapshot_of_solution,
+)
 from pathcalc.library.results_file import ENDING, ResultsError, read_results
 from pathcalc.library.revisions import lay_out, parse_revision
 
 if TYPE_CHECKING:
     from pathcalc.case.model import Case
+    from pathcalc.path.solution import Solution
 
 JSON = ".json"
 
@@ -69,6 +77,22 @@ def sides(given: tuple[str, str]) -> Iterator[tuple[Side, Side]]:
                 raise UsageError(f"{text}: no case in this folder of the revision")
             found.append(Side(text, place, folder))
         yield found[0], found[1]
+
+
+def changes_since(earlier: str, solution: Solution, root: str | None) -> dict[str, Any]:
+    """What differs between ``earlier`` (a case, a results file, or a revision of one) and a solved case.
+
+    Plain values, as :meth:`Comparison.to_dict` gives them. Raises UsageError where ``earlier`` is not there or cannot
+    be read, InvalidCaseError where it is no valid case.
+    """
+    with sides((earlier, earlier)) as (old, _):
+        if old.place.is_dir():
+            raise UsageError(f"{earlier} is a folder; name one case or results file")
+        try:
+            before = _snapshot(old.shown(old.place), _load(old, old.place, root))
+        except ResultsError as error:
+            raise UsageError(f"{earlier}: {error}") from error
+        return compare_snapshots(before, snapshot_of_solution(solution)).to_dict()
 
 
 def compared(old: Side, new: Side, root: str | None, exact: bool, done: Callable[[int, int], None]) -> list[Pair]:

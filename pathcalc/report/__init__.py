@@ -5,8 +5,9 @@ Heavy libraries (templates, drawing, formulas) are imported when a report is mad
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from pathcalc.report.view import SolutionLike
 
@@ -20,30 +21,37 @@ FORMATS = ("html", "md", "pdf")
 """The formats :func:`write_reports` knows."""
 
 
-def render_html(solution: SolutionLike, template: str | Path | None = None) -> str:
+def render_html(
+    solution: SolutionLike, template: str | Path | None = None, changes: Mapping[str, Any] | None = None
+) -> str:
     """The report as one self-contained HTML page: no scripts, no requests, formulas and diagrams inside.
 
     ``template``: a company's folder, see :mod:`pathcalc.report.company`; what is wrong there raises UsageError.
+    ``changes``: what differs from an earlier revision, see :func:`pathcalc.report.view.build`.
     """
     from pathcalc.report.html import render
     from pathcalc.report.view import build
 
-    return render(build(solution), _company(template))
+    return render(build(solution, changes), _company(template))
 
 
 def render_markdown(
-    solution: SolutionLike, stem: str | None = None, template: str | Path | None = None
+    solution: SolutionLike,
+    stem: str | None = None,
+    template: str | Path | None = None,
+    changes: Mapping[str, Any] | None = None,
 ) -> tuple[str, dict[str, bytes]]:
     """The report as Markdown, and its diagrams as SVG files by the relative name the text refers to.
 
-    ``stem`` begins the diagrams' file names; the last part of the case id where it is left out. ``template`` as in
-    :func:`render_html`.
+    ``stem`` begins the diagrams' file names; the last part of the case id where it is left out. ``template`` and
+    ``changes`` as in :func:`render_html`.
     """
     from pathcalc.report.markdown import render
     from pathcalc.report.textsafe import file_stem
     from pathcalc.report.view import build
 
-    return render(build(solution), file_stem(stem or str(solution.to_dict()["case"]["id"])), _company(template))
+    document = build(solution, changes)
+    return render(document, file_stem(stem or str(solution.to_dict()["case"]["id"])), _company(template))
 
 
 def render_pdf(solution: SolutionLike, template: str | Path | None = None, paper: str = "a4") -> bytes:
@@ -63,6 +71,7 @@ def write_reports(
     stem: str,
     template: str | Path | None = None,
     paper: str = "a4",
+    changes: Mapping[str, Any] | None = None,
 ) -> list[Path]:
     """Write the reports into ``folder`` and return their paths: all of them whole, or none.
 
@@ -73,7 +82,7 @@ def write_reports(
     from pathcalc.report.view import build
 
     check(formats, stem)
-    return write_all(folder, contents(build(solution), formats, stem, _company(template), paper))
+    return write_all(folder, contents(build(solution, changes), formats, stem, _company(template), paper))
 
 
 def contents(

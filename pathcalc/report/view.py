@@ -214,8 +214,12 @@ class Document:
         return next((s for s in self.sections if s.key == key), None)
 
 
-def build(solution: SolutionLike) -> Document:
-    """The document for one solved case."""
+def build(solution: SolutionLike, changes: Mapping[str, Any] | None = None) -> Document:
+    """The document for one solved case.
+
+    ``changes`` is what differs from an earlier revision, as ``Comparison.to_dict()`` of
+    :mod:`pathcalc.library.compare` gives it.
+    """
     from pathcalc.report.sections import document
 
-    return document(solution)
+    return document(solution, changes)

@@ -236,8 +236,8 @@ WORDS: Final[dict[str, str]] = {
     "col.change": "What changed, and why",
     # changes
     "changes.title": "Changes since revision {revision}",
-    "changes.lead": "Compared with {label} (SHA-256 of its case {sha256}). Results are listed where they differ by more "
-    "than the tolerances of a regression.",
+    "changes.lead": "Compared with {label} (SHA-256 of its case {sha256}). Results are listed where they differ by "
+    "more than the tolerances of a regression.",
     "changes.same": "Nothing differs: neither inputs nor results, limits, checks or warnings.",
     "changes.unsolved": "The earlier revision has no solution: {trouble}",
     "changes.inputs": "Inputs that changed",
