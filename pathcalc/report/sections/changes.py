@@ -11,8 +11,10 @@ from pathcalc.report.units import kind_of
 from pathcalc.report.view import Block, Bullets, Cell, Column, Heading, Paragraph, Section
 from pathcalc.report.words import say
 
-MOST = 40
+MOST = 60
 """Changed results listed; the others are counted."""
+_FIRST = frozenset({"T", "p", "x", "heat", "work", "entropy_generated", "exergy_destroyed"})
+"""What a reader looks for; the other properties of changed states follow from it and are counted."""
 
 
 def section(ctx: Context) -> Section | None:
@@ -60,7 +62,8 @@ def _results(ctx: Context, changes: Sequence[Mapping[str, Any]]) -> list[Block]:
     columns = [Column(say("col.quantity")), Column(say("col.unit"))]
     columns += [Column(say(f"col.{key}"), numeric=True) for key in ("before", "now", "relative")]
     rows = []
-    for row in changes[:MOST]:
+    shown = [row for row in changes if _is_first(ctx, str(row["address"]))][:MOST]
+    for row in shown:
         kind = kind_of(str(row["address"]))
         rows.append(
             (
@@ -72,9 +75,16 @@ def _results(ctx: Context, changes: Sequence[Mapping[str, Any]]) -> list[Block]:
             )
         )
     blocks: list[Block] = [Heading(say("changes.results")), ctx.table(say("changes.caption.results"), columns, rows)]
-    if len(changes) > MOST:
-        blocks.append(Paragraph(say("changes.more", n=len(changes) - MOST)))
+    if len(changes) > len(shown):
+        blocks.append(Paragraph(say("changes.more", n=len(changes) - len(shown))))
     return blocks
+
+
+def _is_first(ctx: Context, address: str) -> bool:
+    head, _, key = address.partition(".")
+    return (
+        head in ("totals", "cycle") or key in _FIRST or any(row["quantity"] == address for row in ctx.result["limits"])
+    )
 
 
 def _value(ctx: Context, kind: str, value: Any) -> Cell:
