@@ -26,7 +26,7 @@ from pathcalc.path.values import (
 )
 
 if TYPE_CHECKING:
-    from pathcalc.path.steps import Basis, Curve, Dome, HandSum, Isoline, StateParts, Step
+    from pathcalc.path.steps import Basis, Curve, Dome, HandSum, Isoline, StateParts, Step, Verified
 
 
 _NO_QUANTITY = frozenset({"name", "path", "from", "to", "delta", "maxwell", "total", "carried", "other"})
@@ -226,6 +226,13 @@ class Solution:
     def passed(self) -> bool:
         """True if every check and every limit is met."""
         return all(row["passed"] for row in (*self.checks, *self.limits))
+
+    @cached_property
+    def verified(self) -> tuple[Verified, ...]:
+        """States that a publication prints for the equation of the case, computed again."""
+        from pathcalc.path.verification import verified_values
+
+        return verified_values(self)
 
     @cached_property
     def streams(self) -> dict[str, dict[str, Any]]:

@@ -139,6 +139,17 @@ class Dome:
     h_c: float
 
 
+class Verified(NamedTuple):
+    """A printed value of a publication, and what the equation gives now, in the printed unit."""
+
+    quantity: str
+    at: str
+    printed: str
+    computed: float
+    agrees: bool
+    source: str
+
+
 class Constant(NamedTuple):
     """One constant of the fluid. ``symbol`` is LaTeX, ``text`` says what it is, ``value`` is in ``unit``."""
 

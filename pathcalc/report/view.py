@@ -11,7 +11,7 @@ the worked steps alone.
     the results object of one lane, SI, exactly as ``pathcalc solve --json`` writes it;
 ``solution.case``
     the case: record, fluid, start, legs, limits, units, report block, text, digest;
-``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``, ``.streams``
+``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``, ``.streams``, ``.verified``
     the records of :mod:`pathcalc.path.steps`.
 """
 
@@ -21,7 +21,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any, Literal, Protocol
 
-from pathcalc.path.steps import Basis, Curve, Dome, StateParts, Step
+from pathcalc.path.steps import Basis, Curve, Dome, StateParts, Step, Verified
 
 
 class SolutionLike(Protocol):
@@ -37,6 +37,8 @@ class SolutionLike(Protocol):
     def dome(self) -> Dome | None: ...
     @property
     def basis(self) -> Basis: ...
+    @property
+    def verified(self) -> Sequence[Verified]: ...
     @property
     def streams(self) -> Mapping[str, Mapping[str, Any]]: ...
     @property

@@ -433,6 +433,17 @@ WORDS: Final[dict[str, str]] = {
     "made.id": "case",
     "made.equation": "equation of state",
     "made.sources": "sources of the fluid’s data",
+    "made.verified": "The equation against published values",
+    "made.verified.lead": "States that a publication prints for this equation, computed while this document was made. "
+    "They check that the equation was put into the program as published, here and in this version; how well it "
+    "describes the fluid is another matter (see the section on the fluid).",
+    "made.verified.none": "No publication at hand prints check values for this equation and substance. The tests of "
+    "the program hold it against published worked values or an independent implementation.",
+    "made.caption.verified": "Published check values of the equation, computed again",
+    "made.agrees": "agrees",
+    "made.differs": "differs",
+    "col.printed": "Printed",
+    "col.computed": "Computed",
     "made.repeat": "The same case and the same versions give the same document, byte for byte; it carries "
     "no clock time, computer name or folder.",
     "appendix.title": "Appendix: the case as written",
