@@ -93,7 +93,7 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
         inherited = sizes * _looseness(model, T, liquid, gas, v, terms.p_v)
         return values, sizes, inherited
 
-    along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10)
+    along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10, breaks=_kinks(model, root_a, span))
     value = along.value.copy()
     size = along.magnitude.copy()
     for row, name in enumerate(("ds", "du", "dh")):
@@ -110,6 +110,16 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
     error[5], error[6] = error[1] + error[3], error[0] + along.error[6]
     good = along.converged & (first.reason == 0) & (last.reason == 0)
     return Quadrature(value, error, size, good, along.panels)
+
+
+def _kinks(model: Model, root_a: Array, span: Array) -> Array | None:
+    """Abscissas at which the temperature is one where the ideal-gas heat capacity has a kink, (K, k)."""
+    cold = [T for T in model.ideal.kinks if model.T_c > T]
+    if not cold:
+        return None
+    roots = np.sqrt(model.T_c - np.array(cold))[:, None]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return np.asarray((roots - root_a) / span)
 
 
 def _boundary_entropy_error(model: Model, sat: Saturation) -> Array:
