@@ -64,7 +64,9 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     factor = np.where(p >= a.p, 1.0 / efficiency, efficiency)
     goal = np.log(p)
     x = a.points.x
-    front = _Front(np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p))
+    front = _Front(
+        np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p, factor)
+    )
     segments: list[Segment] = []
     start = a.points
     for _ in range(MAX_STRETCHES):
@@ -91,7 +93,7 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     return Course(end, _with_end(segments, front, end))
 
 
-def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
+def _inside(run: LegRun, p: Array, factor: Array) -> NDArray[np.bool_]:
     """Whether the first stretch of each lane lies in the dome."""
     a = run.inlet
     x = a.points.x
@@ -101,7 +103,7 @@ def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
         lanes = np.flatnonzero(edge)
         nudge = np.where(p[lanes] > a.p[lanes], 1.0, -1.0) * 1e-6
         near_p = a.p[lanes] * (1.0 + nudge)
-        near = flash(run.model, {"p": near_p, "h": a.h[lanes] + a.v[lanes] * (near_p - a.p[lanes])})
+        near = flash(run.model, {"p": near_p, "h": a.h[lanes] + (factor * a.v)[lanes] * (near_p - a.p[lanes])})
         inside[lanes] = ~np.isnan(near.x)
     return inside
 

@@ -1,7 +1,9 @@
-"""Where a piece of a leg passes a temperature at which the ideal-gas heat capacity has a kink.
+"""Where a piece of a leg passes a kink, so that a panel of the quadrature must end there.
 
-Correlations in ranges change their formula at a joint, and polynomials are held constant beyond their range. A panel
-of the quadrature across such a temperature may miss it where it hides between the panel's end and the first node.
+Correlations of the ideal-gas heat capacity in ranges change their formula at a joint, and polynomials are held constant
+beyond their range. A panel across such a temperature may miss it where it hides between the panel's end and the first
+node. The non-analytic terms of reference equations hold |ρ/ρ_c − 1| to broken powers (Span and Wagner 1996, eq. 6.1),
+which are not smooth at the critical density, and all equations have their sharpest bend near it.
 """
 
 from __future__ import annotations
@@ -19,8 +21,25 @@ _DIP = 0.75
 
 def kinks_on(model: Model, family: Family, ends: Ends, local: Lanes) -> Array | None:
     """Abscissas in (0, 1) of the kinks on a one-phase piece, (K, k), NaN where there is none; None: none at all."""
-    if not model.ideal.kinks or isinstance(family, Isotherm):
+    found = _heat_capacity_kinks(model, family, ends, local)
+    if family.coordinate == "v" and model.residual.coexistence is not None:
+        with np.errstate(divide="ignore", invalid="ignore"):
+            x = np.log(model.v_c / ends.v_a) / np.log(ends.v_b / ends.v_a)
+        critical = np.flatnonzero((x > 0.0) & (x < 1.0))
+        if critical.size:
+            found.append((critical, x[critical]))
+    if not found:
         return None
+    table = np.full((len(found), ends.T_a.size), np.nan)
+    for row, (lane, x) in zip(table, found, strict=True):
+        row[lane] = x
+    return table
+
+
+def _heat_capacity_kinks(model: Model, family: Family, ends: Ends, local: Lanes) -> list[tuple[Lanes, Array]]:
+    """Pairs of lanes and abscissas at which the ideal-gas heat capacity has a kink."""
+    if not model.ideal.kinks or isinstance(family, Isotherm):
+        return []
     low, high = np.minimum(ends.T_a, ends.T_b), np.maximum(ends.T_a, ends.T_b)
     if not (isinstance(family, Isochore) or (isinstance(family, Polytrope) and family.level_in_dome)):
         low, high = _DIP * low, high / _DIP
@@ -29,12 +48,7 @@ def kinks_on(model: Model, family: Family, ends: Ends, local: Lanes) -> Array | 
         near = np.flatnonzero((low < kink) & (kink < high))
         if near.size:
             found.extend(_crossings(model, family, ends.take(near), local[near], near, kink))
-    if not found:
-        return None
-    table = np.full((len(found), ends.T_a.size), np.nan)
-    for row, (lane, x) in zip(table, found, strict=True):
-        row[lane] = x
-    return table
+    return found
 
 
 def _crossings(
