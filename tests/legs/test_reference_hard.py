@@ -79,6 +79,7 @@ def test_vapour_to_cold_liquid_at_low_pressure(T: float) -> None:
 
 
 def test_rounding_of_a_rough_equation_is_no_failed_check() -> None:
+    """R-22 once more, next to its critical point, where entropies scatter by 1e-13 R."""
     solved("R-22", "T: 369.6872 K, rho: 674.2913 kg/m3", "path: isothermal, to: {v: {ratio: 1.887289}}")
 
 
@@ -133,5 +134,5 @@ def test_polytropic_efficiency_to_other_targets(start: str, target: str) -> None
 
 
 def test_thin_vapour_over_cold_toluene_keeps_its_exergy_balance() -> None:
-    """At 1e-3 Pa the work on the surroundings is 1e8 times the exergy: rounding of it is no failed check."""
-    solved("toluene", "T: 200 K, x: 0.5", "path: saturation, to: {T: 191 K}")
+    """At 1 Pa the work on the surroundings is 1e4 times the exergy: rounding of it is no failed check."""
+    solved("toluene", "T: 200 K, x: 0.9", "path: saturation, to: {T: 190 K}")
