@@ -15,7 +15,8 @@ WITH_VALUES = sorted(p.stem for p in CARDS.glob("*.yaml") if "\ncheck_values:" i
 
 
 def verified(substance: str, equation: str = "reference"):
-    return solve(f"substance: {substance}, equation: {equation}", "T: 400 K, p: 1 bar", "name: a, path: isobaric, to: {T: 420 K}").verified  # fmt: skip
+    fluid = f"substance: {substance}, equation: {equation}"
+    return solve(fluid, "T: 400 K, p: 1 bar", "name: a, path: isobaric, to: {T: 420 K}").verified
 
 
 def test_some_cards_have_them() -> None:
