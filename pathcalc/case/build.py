@@ -84,10 +84,19 @@ def _version(data: Mapping, out: Findings) -> bool:
         out.missing((), "pathcalc", "the file needs the key 'pathcalc', as its first line `pathcalc: 1`")
         return True
     if data["pathcalc"] != names.FORMAT_VERSION:
-        text = f"version {plain(data['pathcalc'])!r} of the format is not known; write {names.FORMAT_VERSION}"
-        out.add(("pathcalc",), text, "wrong-version")
+        out.add(("pathcalc",), version_text(plain(data["pathcalc"])), "wrong-version")
         return False
     return True
+
+
+def version_text(written: Any) -> str:
+    """Why a version of the format is not this one, and what would do."""
+    current = names.FORMAT_VERSION
+    if isinstance(written, str) and written.isascii() and written.isdigit() and len(written) < 7:
+        if int(written) > int(current):
+            return f"version {written} of the format is newer than this program, which reads {current}; update pathcalc"
+        return f"version {written} of the format is older than {current}; pathcalc check --upgrade rewrites the file"
+    return f"{written!r} is no version of the format; write {current}"
 
 
 def _top_keys(data: Mapping, out: Findings) -> None:

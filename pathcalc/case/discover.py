@@ -7,7 +7,6 @@ from pathlib import Path
 
 import yaml
 
-from pathcalc.case.yaml_reader import MAX_BYTES
 from pathcalc.errors import UsageError
 
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
@@ -41,10 +40,8 @@ def find_cases(path: str | os.PathLike[str]) -> list[Path]:
 
 
 def begins_as_case(file: Path) -> bool:
-    """Is ``pathcalc`` the first key of a file, as far as its head can be read."""
+    """Is ``pathcalc`` the first key of a file, as far as its head can be read, however long the rest is."""
     try:
-        if file.stat().st_size > MAX_BYTES:
-            return False
         with file.open("rb") as stream:
             text = stream.read(_HEAD).decode("utf-8", errors="replace").removeprefix("\ufeff")
         for event in yaml.parse(text, Loader=_LOADER):

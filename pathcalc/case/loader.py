@@ -29,6 +29,12 @@ def load(path: str | os.PathLike[str], *, root: str | os.PathLike[str] | None = 
             data = stream.read(MAX_BYTES + 1)
     except (OSError, ValueError) as error:
         raise UsageError(f"{file} cannot be read: {getattr(error, 'strerror', None) or error}") from None
+    return load_bytes(data, shown, root=root)
+
+
+def load_bytes(data: bytes, path: Path, *, root: str | os.PathLike[str] | None = None) -> Case:
+    """Case of what a file holds or is going to hold; see :func:`load`."""
+    shown, file = path, path.as_posix()
     folder = shown.parent.resolve()
     top = _root(root, folder)
     here = folder / shown.name

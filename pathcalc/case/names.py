@@ -57,6 +57,16 @@ TOTAL_KEYS = {
 }
 PER_TIME = {"energy": "power", "entropy": "entropy-rate"}
 
+# kinds of results, as tolerances name them, with their dimensions
+RESULT_KINDS = {
+    "temperature": "temperature", "pressure": "pressure", "specific-volume": "specific-volume", "density": "density",
+    "specific-energy": "specific-energy", "specific-entropy": "specific-entropy", "heat-capacity": "specific-entropy",
+    "speed": "speed", "fraction": "fraction", "expansivity": "expansivity", "compressibility": "compressibility",
+    "joule-thomson": "joule-thomson", "energy": "energy", "power": "power", "entropy": "entropy",
+    "entropy-rate": "entropy-rate", "mass": "mass", "mass-flow": "mass-flow", "volume": "volume",
+    "volume-flow": "volume-flow", "molar-mass": "molar-mass",
+}  # fmt: skip
+
 AMOUNTS = {"flow": ("mass-flow", "mole-flow"), "closed": ("mass", "mole", "volume")}
 
 UNIT_KINDS = {

@@ -28,8 +28,8 @@ from pathcalc.case.fields import (
     raise_problems,
 )
 from pathcalc.case.leg_model import OneOf, Strict
-from pathcalc.case.names import AMOUNTS, DATUMS, DIAGRAMS, EQUATIONS, EQUATIONS_LATER, MAX_REPEAT, PHASES
-from pathcalc.quantities.parse import Problem, QuantityError, nearest, parse, words
+from pathcalc.case.names import AMOUNTS, DATUMS, DIAGRAMS, EQUATIONS, EQUATIONS_LATER, MAX_REPEAT, PHASES, RESULT_KINDS
+from pathcalc.quantities.parse import Problem, QuantityError, difference_of, nearest, parse, words
 from pathcalc.quantities.values import Quantity
 
 
@@ -170,6 +170,46 @@ class Revision(Strict):
     text: Text = Field(description="What changed, and why.", examples=["First issue."])
 
 
+ALLOWED_DIFFERENCES = (
+    "temperature-difference", "pressure-difference", "specific-volume", "density", "specific-energy",
+    "specific-entropy", "speed", "expansivity", "compressibility", "joule-thomson", "energy", "power", "entropy",
+    "entropy-rate", "mass", "mass-flow", "volume", "volume-flow", "fraction",
+)  # fmt: skip
+
+
+class Tolerance(Strict):
+    """How far a result may be from the stored one in a regression, other than by default, and why."""
+
+    quantity: Text | None = Field(
+        default=None,
+        description="Address of the result, such as first stage.T; * stands for any characters.",
+        examples=["*.joule_thomson"],
+    )
+    kind: Annotated[str, ChoiceField(tuple(RESULT_KINDS))] | None = Field(
+        default=None, description="Kind of results, instead of an address.", examples=["heat-capacity"]
+    )
+    relative: Annotated[Quantity, QuantityField(("fraction",), low=0.0, high=1.0)] | None = Field(
+        default=None, description="Part of the stored value.", examples=[1e-6]
+    )
+    absolute: Annotated[Quantity, QuantityField(ALLOWED_DIFFERENCES, low=0.0, any_sign=True)] | None = Field(
+        default=None, description="Difference that is allowed whatever the value is.", examples=["0.01 K"]
+    )
+    reason: Text = Field(description="Why the default will not do.", examples=["close to the critical point"])
+
+    @model_validator(mode="after")
+    def _form(self) -> Tolerance:
+        if (self.quantity is None) == (self.kind is None):
+            raise_problems(Problem("one-of", "give one of quantity or kind", key=True))
+        if self.relative is None and self.absolute is None:
+            raise_problems(Problem("missing-key", "give relative, absolute or both", key=True))
+        q = self.absolute
+        if q is not None and q.per == "mole":
+            raise_problems(Problem("wrong-dimension", f"{q.text} is per mole; results are per kg", ("absolute",)))
+        if q is not None and self.kind is not None and q.dimension != difference_of(RESULT_KINDS[self.kind]):
+            raise_problems(Problem("wrong-dimension", f"{q.text} is no difference of a {self.kind}", ("absolute",)))
+        return self
+
+
 class Record(Strict):
     """What a checker needs beside the numbers."""
 
@@ -206,6 +246,11 @@ class Record(Strict):
         default=None,
         description="Citations by id; any quantity, leg or limit may name one.",
         examples=[{"vendor": "Booster data sheet D-118, revision 2"}],
+    )
+    tolerances: list[Tolerance] | None = Field(
+        default=None,
+        description="Tolerances of this case in a regression, where the defaults will not do.",
+        examples=[[{"quantity": "*.cp", "relative": 1e-6, "reason": "close to the critical point"}]],
     )
 
 

@@ -12,7 +12,7 @@ from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import PATH, Input, gather, root_option
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, loudness, write_utf8
-from pathcalc.errors import Finding, InvalidCaseError, NoSolutionError, PathcalcError
+from pathcalc.errors import Finding, InvalidCaseError, NoSolutionError, PathcalcError, UsageError
 
 if TYPE_CHECKING:
     from pathcalc.case import Case
@@ -21,10 +21,11 @@ if TYPE_CHECKING:
 @click.command("check", short_help=COMMANDS["check"])
 @click.argument("paths", nargs=-1, required=True, type=PATH, metavar="PATH...")
 @click.option("--format", "form", type=click.Choice(FORMATS), default="text", help="Form of the findings.")
+@click.option("--upgrade", is_flag=True, help="Rewrite cases of an older version of the format; comments stay.")
 @root_option
 @loudness
 @click.pass_obj
-def command(talk: Talk, paths: tuple[str, ...], form: str, root: str | None) -> int:
+def command(talk: Talk, paths: tuple[str, ...], form: str, upgrade: bool, root: str | None) -> int:
     """Validate cases without solving them.
 
     A PATH is a file, a folder (every *.yaml below it that begins with the key pathcalc) or - for standard input.
@@ -35,7 +36,10 @@ def command(talk: Talk, paths: tuple[str, ...], form: str, root: str | None) -> 
     code, valid = inputs.code, 0
     findings: list[Finding] = []
     for item in inputs.items:
-        own, found = _check(item, root, talk)
+        own, found = _upgraded(item, root, talk) if upgrade else (0, [])
+        if own == 0:
+            own, more = _check(item, root, talk)
+            found += more
         code = max(code, own)
         valid += own == 0
         findings += found
@@ -45,6 +49,20 @@ def command(talk: Talk, paths: tuple[str, ...], form: str, root: str | None) -> 
         write_utf8(rendered(findings, form))
     talk.note(_tally(valid, len(inputs.items)))
     return code
+
+
+def _upgraded(item: Input, root: str | None, talk: Talk) -> tuple[int, list[Finding]]:
+    """Rewrite one case, and tell every edit; the file stays as it is where anything is wrong."""
+    from pathcalc.library.upgrade import upgrade
+
+    if item.path is None:
+        return report_error(UsageError("--upgrade rewrites files; name one"), talk), []
+    try:
+        return 0, list(upgrade(item.path, root).changes)
+    except InvalidCaseError as error:
+        return error.exit_code, error.findings
+    except PathcalcError as error:
+        return report_error(error, talk, item.shown), []
 
 
 def _check(item: Input, root: str | None, talk: Talk) -> tuple[int, list[Finding]]:

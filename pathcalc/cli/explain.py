@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from pathcalc.cli.group import COMMANDS
-from pathcalc.cli.inputs import PATH, place_of, root_option, single
+from pathcalc.cli.inputs import PATH, root_option, single
 from pathcalc.cli.talk import Talk, loudness, write
 from pathcalc.errors import Finding, NoSolutionError
 
@@ -60,6 +60,8 @@ def command(talk: Talk, case: str, quantity: str, root: str | None) -> int:
     try:
         solution = solve(loaded)
     except NoSolutionError as error:
+        from pathcalc.case.places import place_of
+
         file, line, column = place_of(loaded, error.trouble.at) or (item.shown, 1, 1)
         talk.line(str(Finding(file, line, column, str(error.trouble).rpartition(" (")[0], error.trouble.code)))
         return error.exit_code

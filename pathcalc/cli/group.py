@@ -17,6 +17,9 @@ COMMANDS = {
     "check": "Validate cases without solving them.",
     "solve": "Solve cases: summary or JSON, and reports.",
     "explain": "Show how one number came about.",
+    "regress": "Hold a library of cases against its stored results.",
+    "compare": "Tell what differs between two cases, results or revisions.",
+    "where-used": "List the cases that lean on a file or a substance.",
     "substances": "List the substances, or show one in full.",
     "schema": "Print the JSON Schema of the case file.",
     "new": "Write a commented case to start from.",
@@ -40,7 +43,7 @@ class Group(click.Group):
         """The command of that name, from its own module."""
         if cmd_name not in COMMANDS:
             return None
-        command: click.Command = import_module(f"pathcalc.cli.{cmd_name}").command
+        command: click.Command = import_module(f"pathcalc.cli.{cmd_name.replace('-', '_')}").command
         return command
 
     def resolve_command(

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, TypeVar
@@ -47,6 +47,18 @@ class Input:
         data = sys.stdin.buffer.read(MAX_BYTES + 1)
         return loads(data.decode("utf-8", errors="surrogateescape"), name=STDIN, root=root)
 
+    def id(self, root: str | None) -> str:
+        """The id that the case has, told without reading it: its path under the root without the ending."""
+        if self.path is None:
+            return "stdin"
+        from pathcalc.case.files import find_root
+
+        folder = self.path.parent.resolve()
+        top = find_root(folder) if root is None else Path(root).resolve()
+        here = folder / self.path.name
+        shown = here.relative_to(top) if here.is_relative_to(top) else Path(self.path.name)
+        return shown.with_suffix("").as_posix()
+
 
 @dataclass(frozen=True)
 class Inputs:
@@ -85,30 +97,3 @@ def gather(paths: Sequence[str], talk: Talk) -> Inputs:
 def single(path: str) -> Input:
     """The one case behind a PATH that may not be a folder."""
     return Input(None, STDIN) if path == STDIN else Input(Path(path), Path(path).as_posix())
-
-
-def places(case: Case) -> Iterator[tuple[str, tuple[str, int, int]]]:
-    """Name of every leg with the file, line and column it begins at."""
-    for leg in case.legs:
-        line, column = leg.origin
-        yield leg.name, (leg.origin_file, line, column)
-
-
-def place_of(case: Case, at: str) -> tuple[str, int, int] | None:
-    """File, line and column of what an address or a name of a leg stands for; None where it has none."""
-    for limit in case.limits:
-        if limit.quantity == at and limit.line:
-            file = case.positions.get(("limits",))
-            return str(file[0]) if file else "", limit.line, limit.column
-    name = at
-    known = dict(places(case))
-    while name and name not in known:
-        name = name.rpartition(".")[0]
-    if name and known[name][1]:
-        return known[name]
-    for key in ("start", "surroundings", "fluid", "limits"):
-        if at == key or at.startswith(f"{key}."):
-            mark = case.positions.get((key,))
-            if mark is not None:
-                return str(mark[0]), int(mark[1]), int(mark[2])
-    return None

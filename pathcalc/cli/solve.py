@@ -7,11 +7,11 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from pathcalc.cli.group import COMMANDS
-from pathcalc.cli.inputs import PATH, Input, Inputs, gather, place_of, root_option
-from pathcalc.cli.reports import Reports, asked_words
+from pathcalc.cli.inputs import PATH, Input, Inputs, gather, root_option
+from pathcalc.cli.reports import PAPERS, Reports, asked_words
 from pathcalc.cli.run import report_error
 from pathcalc.cli.talk import Talk, json_text, loudness, write_utf8
-from pathcalc.errors import Finding, NoSolutionError
+from pathcalc.errors import Finding, NoSolutionError, UsageError
 
 if TYPE_CHECKING:
     from pathcalc.case import Case
@@ -31,9 +31,12 @@ OUTCOMES = {
 @click.command("solve", short_help=COMMANDS["solve"])
 @click.argument("paths", nargs=-1, required=True, type=PATH, metavar="PATH...")
 @click.option("--json", "as_json", is_flag=True, help="Print the results as JSON, in SI units.")
-@click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, or html,md.")
+@click.option("--report", "formats", metavar="FORMAT,...", help="Write reports: html, md, pdf, or several.")
 @click.option("-o", "--output", type=click.Path(), metavar="DIR", help="Folder of the reports, by default reports/.")
+@click.option("--template", type=click.Path(), metavar="DIR", help="Folder with your own templates, style and logo.")
 @click.option("--words", type=click.Path(), metavar="FILE", help="Catalogue (TOML) of another language of the reports.")
+@click.option("--since", metavar="EARLIER", help="Tell in the report what changed since a case or results file.")
+@click.option("--paper", type=click.Choice(PAPERS), default=PAPERS[0], show_default=True, help="Sheet of the PDF.")
 @root_option
 @loudness
 @click.pass_obj
@@ -43,30 +46,45 @@ def command(
     as_json: bool,
     formats: str | None,
     output: str | None,
+    template: str | None,
     words: str | None,
+    since: str | None,
+    paper: str,
     root: str | None,
 ) -> int:
     """Solve cases: a summary or JSON on standard output, and reports.
 
     A PATH is a file, a folder (every *.yaml below it that begins with the key pathcalc) or - for standard input.
     One file gives one JSON object; a folder or several PATHs give a list of those that have a solution. A report is
-    called as the case's id, the folders of the id kept. -o alone writes html,md.
+    called as the case's id, the folders of the id kept; over several cases there is an index, too. -o alone writes
+    html,md. pdf needs an installed browser of the Chromium family; PATHCALC_BROWSER names one. EARLIER is a case, a
+    results file or REVISION:PATH of a checkout.
     """
-    reports = Reports.asked(formats, output)
+    reports = Reports.asked(formats, output, template, paper)
     reports.words = asked_words(words, reports, talk)
     inputs = gather(paths, talk)
-    codes = Solving(talk, root, as_json, reports).all(inputs)
+    if since is not None and (inputs.many or not reports.formats):
+        raise UsageError("--since is of the report of one case; name one, and add --report or -o")
+    codes = Solving(talk, root, as_json, reports, since).all(inputs)
+    unwritten = 0
+    if inputs.many and codes:
+        places, failed = reports.write_index()
+        for place in places:
+            talk.note(f"index: {place}")
+        if failed:
+            talk.error(failed)
+            unwritten = 2
     if inputs.many:
         counts = [f"{codes.count(code)} {text}" for code, text in OUTCOMES.items() if code in codes]
         talk.note(f"{len(codes)} case{'' if len(codes) == 1 else 's'}: {', '.join(counts) or 'none'}")
-    return max([inputs.code, *codes])
+    return max([inputs.code, unwritten, *codes])
 
 
 class Solving:
     """One run over the cases of a command line."""
 
-    def __init__(self, talk: Talk, root: str | None, as_json: bool, reports: Reports) -> None:
-        self.talk, self.root, self.as_json, self.reports = talk, root, as_json, reports
+    def __init__(self, talk: Talk, root: str | None, as_json: bool, reports: Reports, since: str | None = None) -> None:
+        self.talk, self.root, self.as_json, self.reports, self.since = talk, root, as_json, reports, since
         self.printed = 0
 
     def all(self, inputs: Inputs) -> list[int]:
@@ -81,6 +99,7 @@ class Solving:
             except BrokenPipeError:
                 raise
             except Exception as error:
+                self.reports.failed(item, self.root, error, None)
                 codes.append(report_error(error, self.talk, item.shown))
         if as_list:
             write_utf8("\n]" if self.printed else "]")
@@ -97,9 +116,15 @@ class Solving:
             result = solution.to_dict()
         except NoSolutionError as error:
             self.talk.line(str(_finding(case, item, error)))
+            self.reports.failed(item, self.root, error, case)
             return error.exit_code
         text = self._text(solution, result, many)
-        written, failed = self.reports.write(solution, case)
+        changes = None
+        if self.since is not None:
+            from pathcalc.library.compare_sides import changes_since
+
+            changes = changes_since(self.since, solution, self.root)
+        written, failed = self.reports.write(solution, case, changes)
         self._print(text, written, many)
         missed = _missed(solution, result)
         for line in missed:
@@ -168,6 +193,8 @@ def _missed(solution: Solution, result: dict[str, Any]) -> list[str]:
 
 
 def _finding(case: Case, item: Input, error: NoSolutionError) -> Finding:
+    from pathcalc.case.places import place_of
+
     trouble = error.trouble
     file, line, column = place_of(case, trouble.at) or (item.shown, 1, 1)
     at = f"{trouble.at}: " if trouble.at else ""

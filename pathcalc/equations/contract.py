@@ -179,6 +179,11 @@ class IdealPart(Protocol):
         """The highest temperature the source of the heat capacity states, K."""
         ...
 
+    @property
+    def kinks(self) -> tuple[float, ...]:
+        """Temperatures at which the heat capacity or its slope jumps, K, ascending."""
+        ...
+
     def cp0_R(self, T: Array) -> Array:
         """c_p0/R."""
         ...

@@ -128,6 +128,12 @@ class IdealGasHeatCapacity:
         at_zero = self.terms(np.array([T_STANDARD]))
         put(self, "_zero", (float(at_zero.h0_R[0]), float(at_zero.s0_R[0])))
 
+    @property
+    def kinks(self) -> tuple[float, ...]:
+        """Temperatures at which the heat capacity or its slope jumps, K: joints of ranges, ends of a held range."""
+        joints = tuple(float(edge) for edge in self._edges)
+        return (self.T_min, *joints, self.T_max) if self.held else joints
+
     def _continuity(self) -> tuple[tuple[float, float], ...]:
         """What to add to enthalpy and entropy of each range so that neither jumps at a joint."""
         joins = [(0.0, 0.0)]

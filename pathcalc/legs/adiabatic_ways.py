@@ -12,6 +12,7 @@ from pathcalc.legs.integration.bracket import scanned_root
 from pathcalc.legs.integration.segments import Integrals
 from pathcalc.legs.polytropic_path import follow
 from pathcalc.legs.run import Exchange, LegRun, Outcome, Place, machine_work
+from pathcalc.legs.trail import Trail
 from pathcalc.legs.ways import constant, isobar, isochore, isotherm
 
 Targets = dict[str, Array]
@@ -110,9 +111,10 @@ def polytropic_efficiency(run: LegRun, targets: Targets) -> Outcome:
     else:
         ((key, goal),) = targets.items()
         wanted = a.h + goal if key == "work" else goal
+        trail = Trail(run, efficiency)
 
         def miss(log_p: Array) -> Array:
-            end = follow(run, np.exp(log_p), efficiency, quiet=True).end
+            end = trail.end(log_p)
             if key == "work":
                 value: Array = (end.h - wanted) / (model_scale + np.abs(goal))
                 return value

@@ -32,6 +32,8 @@ from pathcalc.legs.run import LegRun, Place
 
 MAX_STRETCHES = 80
 MAX_HALVINGS = 40
+LEAST = 1e-6
+"""A stretch of ln p that is shorter and still rough leads nowhere, such as to below the triple point."""
 
 
 @dataclass(frozen=True)
@@ -64,7 +66,9 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     factor = np.where(p >= a.p, 1.0 / efficiency, efficiency)
     goal = np.log(p)
     x = a.points.x
-    front = _Front(np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p))
+    front = _Front(
+        np.log(a.p), a.T.copy(), a.v.copy(), a.h.copy(), x.copy(), np.isfinite(goal * a.T), _inside(run, p, factor)
+    )
     segments: list[Segment] = []
     start = a.points
     for _ in range(MAX_STRETCHES):
@@ -91,7 +95,7 @@ def follow(run: LegRun, p: Array, efficiency: Array, *, quiet: bool = False) -> 
     return Course(end, _with_end(segments, front, end))
 
 
-def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
+def _inside(run: LegRun, p: Array, factor: Array) -> NDArray[np.bool_]:
     """Whether the first stretch of each lane lies in the dome."""
     a = run.inlet
     x = a.points.x
@@ -101,7 +105,7 @@ def _inside(run: LegRun, p: Array) -> NDArray[np.bool_]:
         lanes = np.flatnonzero(edge)
         nudge = np.where(p[lanes] > a.p[lanes], 1.0, -1.0) * 1e-6
         near_p = a.p[lanes] * (1.0 + nudge)
-        near = flash(run.model, {"p": near_p, "h": a.h[lanes] + a.v[lanes] * (near_p - a.p[lanes])})
+        near = flash(run.model, {"p": near_p, "h": a.h[lanes] + (factor * a.v)[lanes] * (near_p - a.p[lanes])})
         inside[lanes] = ~np.isnan(near.x)
     return inside
 
@@ -115,7 +119,7 @@ def _in_one_phase(run: LegRun, front: _Front, goal: Array, factor: Array, lanes:
     line = run.setting.boundary.line() if model.has_dome else None
     entry = first_entry(model, line, solution)
     for _ in range(MAX_HALVINGS):
-        again = np.flatnonzero(entry.lost | solution.rough)
+        again = np.flatnonzero((entry.lost | solution.rough) & (np.abs(y_b - y_a) > LEAST))
         if again.size == 0:
             break
         y_b[again] = 0.5 * (y_a[again] + y_b[again])
@@ -134,7 +138,8 @@ def _in_one_phase(run: LegRun, front: _Front, goal: Array, factor: Array, lanes:
         solution = solve(slopes, y_a, y_b, initial)
     short = ~meets & (np.abs(y_b - goal[lanes]) > 1e-12)
     T, v = solution.last
-    bad = ~solution.converged | ~np.isfinite(T + v)
+    stuck = short & (np.abs(y_b - y_a) <= LEAST)
+    bad = ~solution.converged | ~np.isfinite(T + v) | stuck
     h = _enthalpy(model, T, v)
     front.y[lanes], front.T[lanes], front.v[lanes] = y_b, T, v
     front.h[lanes] = np.where(bad, np.nan, h)
@@ -167,7 +172,7 @@ def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lan
     slopes = dome_slopes(model, factor[lanes])
     solution = solve(slopes, y_a, y_b, initial)
     for _ in range(MAX_HALVINGS):
-        again = np.flatnonzero(solution.rough)
+        again = np.flatnonzero(solution.rough & (np.abs(y_b - y_a) > LEAST))
         if again.size == 0:
             break
         y_b[again] = 0.5 * (y_a[again] + y_b[again])
@@ -199,13 +204,13 @@ def _in_dome(model: Model, front: _Front, goal: Array, factor: Array, lanes: Lan
         y_b = np.where(leaves, root, y_b)
         solution = solve(slopes, y_a, y_b, initial)
     h = solution.last[0]
-    bad = ~solution.converged | ~np.isfinite(h)
+    short = ~leaves & (np.abs(y_b - goal[lanes]) > 1e-12)
+    bad = ~solution.converged | ~np.isfinite(h) | (short & (np.abs(y_b - y_a) <= LEAST))
     end = flash(model, {"p": np.exp(y_b), "h": h})
     front.y[lanes], front.h[lanes] = y_b, np.where(bad, np.nan, h)
     front.T[lanes] = end.T
     front.v[lanes] = end.v
     front.x[lanes] = np.where(leaves, np.where(dry, 1.0, 0.0), end.x)
-    short = ~leaves & (np.abs(y_b - goal[lanes]) > 1e-12)
     front.open[lanes] = (leaves | short) & ~bad
     front.into_dome[lanes] = short
     return Segment(

@@ -21,9 +21,28 @@ if TYPE_CHECKING:
 POINTS = 41
 
 
+_NO_STATES = frozenset({"throttling", "free-expansion", "mixing", "separation"})
+
+
 def curves_of(solution: Solution) -> list[Curve]:
     """One curve a leg, lane 0."""
-    return [Curve(leg.leg.name, _pieces_of(solution.path, leg)) for leg in solution.path.legs]
+    return [
+        Curve(leg.leg.name, _pieces_of(solution.path, leg), passes_through(leg), len(leg.outcome.segments))
+        for leg in solution.path.legs
+    ]
+
+
+def passes_through(solved: SolvedLeg) -> bool:
+    """Whether the fluid goes through the states of the leg's line, one after the other.
+
+    It does not where it is far from equilibrium on the way (throttling, expansion into a vacuum, work against a
+    constant pressure), where streams part or meet, and where an efficiency tells of the end state alone. The
+    polytropic efficiency is defined along the line (a row of small stages), and a pressure drop along a heat
+    exchanger is taken to be one.
+    """
+    leg = solved.leg
+    given = (getattr(leg, key, None) for key in ("efficiency", "against"))
+    return leg.path not in _NO_STATES and all(item is None for item in given)
 
 
 def _pieces_of(path: SolvedPath, solved: SolvedLeg) -> tuple[CurvePiece, ...]:

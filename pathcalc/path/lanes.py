@@ -80,7 +80,9 @@ def mark_open_lanes(path: SolvedPath) -> None:
     for solved in path.legs:
         with np.errstate(invalid="ignore", divide="ignore", over="ignore"):
             error, closure = closure_of(path, solved)
-            open_ = (closure > error + rounding_of(path, solved)) & (closure > OPEN)
+            open_ = (closure > error) & (closure > OPEN)
+            if open_.any():
+                open_ &= closure > error + rounding_of(path, solved)
         path.setting.status.fail(
             open_,
             Trouble(

@@ -70,7 +70,6 @@ def _leg(solution: Solution, name: str) -> dict[str, Any]:
         "total": {key: plain(leg["total"][key]) for key in EXCHANGE_KEYS},
         "maxwell": {key: plain(leg["maxwell"][key]) for key in ("ds", "du", "dh", "error", "closure")},
         "pieces": [{k: plain(v) for k, v in piece.items()} for piece in solution.pieces(name)],
-        "other": None if leg["other"] is None else {k: plain(v) for k, v in leg["other"].items()},
     }
 
 

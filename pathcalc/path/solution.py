@@ -28,7 +28,7 @@ from pathcalc.path.values import (
 from pathcalc.words import Catalogue, in_force, using
 
 if TYPE_CHECKING:
-    from pathcalc.path.steps import Basis, Curve, Dome, HandSum, StateParts, Step
+    from pathcalc.path.steps import Basis, Curve, Dome, HandSum, Isoline, StateParts, Step, Verified
 
 
 T = TypeVar("T")
@@ -254,6 +254,22 @@ class Solution:
         return all(row["passed"] for row in (*self.checks, *self.limits))
 
     @cached_property
+    def verified(self) -> tuple[Verified, ...]:
+        """States that a publication prints for the equation of the case, computed again."""
+        from pathcalc.path.verification import verified_values
+
+        return verified_values(self)
+
+    @cached_property
+    def streams(self) -> dict[str, dict[str, Any]]:
+        """Streams that leave by separation or join by mixing, by leg: amount (kg/s, negative where it leaves), T, p, v,
+
+        u, h, s, x.
+        """
+        self._of_one_lane("streams")
+        return {name: leg["other"] for name, leg in self.legs.items() if leg["other"] is not None}
+
+    @cached_property
     def state_parts(self) -> tuple[StateParts, ...]:
         """What the properties of the states are put together from, in the order of the path."""
         self._of_one_lane("parts of states")
@@ -289,6 +305,20 @@ class Solution:
         from pathcalc.path.curves import dome_of
 
         return dome_of(self)
+
+    @cached_property
+    def isolines(self) -> list[Isoline]:
+        """Isobars and isotherms through the states, for diagrams."""
+        from pathcalc.path.isolines import isolines_of
+
+        return isolines_of(self)
+
+    @cached_property
+    def others(self) -> dict[str, Solution | str]:
+        """By equation of ``report.compare_with``: the same path solved with it, or why it has no solution."""
+        from pathcalc.path.comparison import solved_with
+
+        return {equation: solved_with(self, equation) for equation in self.case.report.compare_with}
 
     @property
     def basis(self) -> Basis:

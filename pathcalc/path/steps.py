@@ -99,9 +99,24 @@ class CurvePiece:
 
 @dataclass(frozen=True, eq=False)
 class Curve:
-    """The way of one leg through the state surface, for diagrams."""
+    """The way of one leg through the state surface, for diagrams.
+
+    ``states`` is False where the fluid does not pass through the states of the line: the line is then only the
+    way of integration between two states. ``steps`` is the number of stretches that way is laid out in.
+    """
 
     leg: str
+    pieces: tuple[CurvePiece, ...]
+    states: bool = True
+    steps: int = 1
+
+
+@dataclass(frozen=True, eq=False)
+class Isoline:
+    """A line of one pressure (``key`` "p") or one temperature ("T") through a state; pieces by phase region."""
+
+    key: str
+    value: float
     pieces: tuple[CurvePiece, ...]
 
 
@@ -122,6 +137,17 @@ class Dome:
     v_c: float
     s_c: float
     h_c: float
+
+
+class Verified(NamedTuple):
+    """A printed value of a publication, and what the equation gives now, in the printed unit."""
+
+    quantity: str
+    at: str
+    printed: str
+    computed: float
+    agrees: bool
+    source: str
 
 
 class Constant(NamedTuple):

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array
+from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium.points import PHASES
 from pathcalc.equilibrium.states import States, state_properties
 from pathcalc.legs.run import Place
@@ -195,14 +196,39 @@ def rounding_of(path: SolvedPath, solved: SolvedLeg) -> Array:
     """What rounding alone may leave between the two routes, relative, (n,).
 
     The closed form is a difference of two values counted from the datum: 64 units in the last place of each,
-    and of the ends as far as they were iterated (1e-12 of s, h and u at the flash).
+    and of the ends as far as they were iterated (1e-12 of s, h and u at the flash); more where the terms of the
+    equation cancel or the volumes of coexisting phases are loose.
     """
     a, b = solved.inlet, solved.end
     sizes = np.stack([np.abs(a.s) + np.abs(b.s), np.abs(a.u) + np.abs(b.u), np.abs(a.h) + np.abs(b.h)])
     kinetic = path.model.R * np.stack([np.ones_like(a.T), a.T + b.T, a.T + b.T])
-    sizes = sizes + sum(_coexistence_rounding(path, place) for place in (a, b))
+    sizes = sizes + sum(_coexistence_rounding(path, place) + _cancellation(path, place) for place in (a, b))
     rounding: Array = 64.0 * np.finfo(float).eps * ((sizes + kinetic) / scales(path, solved)).max(axis=0)
     return rounding
+
+
+_STEPS = np.arange(-8.0, 8.0)[:, None]
+"""Temperatures, in steps of 8 units in the last place, over which the rounding of an equation is looked at."""
+
+
+def _cancellation(path: SolvedPath, place: Place) -> Array:
+    """How rough s, u and h are at a state, (3, n), in units of the 64 eps that the caller multiplies by.
+
+    The terms of some equations are a thousand times their sum (R-22, Kamei et al. 1995). Over a few units in the
+    last place of T every property is a straight line; four times the largest distance from it is taken.
+    """
+    points = place.points
+    mixed = ~np.isnan(points.x)
+    found = np.zeros((3, points.T.size))
+    for v in (np.where(mixed, points.v_liquid, points.v), np.where(mixed, points.v_vapour, points.v)):
+        near = thermal(path.model, points.T * (1.0 + 8.0 * np.finfo(float).eps * _STEPS), v + 0.0 * _STEPS)
+        values = np.stack([near.s, near.u, near.h])
+        slope = (values * (_STEPS + 0.5)).sum(axis=1) / float(((_STEPS + 0.5) ** 2).sum())
+        line = values.mean(axis=1)[:, None] + slope[:, None] * (_STEPS + 0.5)
+        found = np.fmax(found, np.abs(values - line).max(axis=1))
+        if not mixed.any():
+            break
+    return found / (16.0 * np.finfo(float).eps)
 
 
 def _coexistence_rounding(path: SolvedPath, place: Place) -> Array:

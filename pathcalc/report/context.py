@@ -27,8 +27,9 @@ def pick(thing: Any, name: str, default: Any = None) -> Any:
 class Context:
     """One report in the making."""
 
-    def __init__(self, solution: SolutionLike) -> None:
+    def __init__(self, solution: SolutionLike, changes: Mapping[str, Any] | None = None) -> None:
         self.solution = solution
+        self.changes = changes
         self.case = solution.case
         self.result: dict[str, Any] = solution.to_dict()
         self.flow = self.result["boundary"] == "flow"

@@ -2,36 +2,43 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from functools import lru_cache
+from typing import TYPE_CHECKING, Any
 
-from jinja2 import Environment, PackageLoader, StrictUndefined
+from markupsafe import Markup
 
-from pathcalc.report import maths, textsafe
+from pathcalc.report import maths, templating, textsafe
 from pathcalc.report.view import Cell, Column, Document
-from pathcalc.report.words import say
+
+if TYPE_CHECKING:
+    from jinja2 import Environment
+
+    from pathcalc.report.company import Company
+    from pathcalc.report.index import Index
 
 
-@lru_cache(maxsize=1)
-def environment() -> Environment:
-    """The template environment; every text goes through the ``md`` filter, which escapes for Markdown."""
-    env = Environment(
-        loader=PackageLoader("pathcalc.report"),
-        autoescape=False,
-        undefined=StrictUndefined,
-        trim_blocks=True,
-        lstrip_blocks=True,
-        keep_trailing_newline=True,
-    )
-    env.filters["md"] = textsafe.markdown
-    env.filters["fence"] = textsafe.fence
-    env.filters["math"] = maths.inline_markdown
-    env.filters["display"] = maths.display_markdown
-    env.filters["result"] = maths.result_markdown
-    env.filters["figure"] = maths.figure
-    env.filters["cell"] = cell
-    env.filters["head"] = head
-    env.globals["say"] = say
-    return env
+@lru_cache(maxsize=4)
+def environment(company: Company | None = None) -> Environment:
+    """The template environment; every text that no filter has made Markdown is escaped as Markdown."""
+    filters: dict[str, Callable[..., str]] = {
+        "md": textsafe.markdown,
+        "fence": textsafe.fence,
+        "math": maths.inline_markdown,
+        "display": maths.display_markdown,
+        "result": maths.result_markdown,
+        "figure": maths.figure,
+        "cell": cell,
+        "head": head,
+        "address": address,
+        "code": textsafe.inline_code,
+    }
+    marked = {name: templating.markup(function) for name, function in filters.items()}
+    return templating.environment(_finalize, marked, company.loader if company else None)
+
+
+def _finalize(value: Any) -> Any:
+    return Markup(textsafe.markdown(value)) if isinstance(value, str) and not isinstance(value, Markup) else value
 
 
 def cell(c: Cell) -> str:
@@ -57,8 +64,26 @@ def head(column: Column) -> str:
     return f"{text}, {textsafe.markdown(column.unit)}" if column.unit else text
 
 
-def render(document: Document, stem: str) -> tuple[str, dict[str, bytes]]:
+def address(path: str) -> str:
+    """A relative address, percent-encoded, that Markdown takes as it is."""
+    return path.replace("(", "%28").replace(")", "%29").replace("_", "\\_").replace("*", "%2A")
+
+
+def render(document: Document, stem: str, company: Company | None = None) -> tuple[str, dict[str, bytes]]:
     """The text, and the diagrams' SVG by file name."""
     files = {f.name: f"{stem}-{f.name}.svg" for f in document.figures}
-    text = environment().get_template("markdown.md.j2").render(doc=document, files=files)
+    text = _text("markdown.md.j2", company, doc=document, files={k: Markup(v) for k, v in files.items()})
     return text, {files[f.name]: (f.svg + "\n").encode() for f in document.figures}
+
+
+def render_index(index: Index, company: Company | None = None) -> str:
+    """The page that leads to the reports of a library."""
+    return _text("index.md.j2", company, doc=index)
+
+
+def _text(name: str, company: Company | None, **values: Any) -> str:
+    template = environment(company)
+    if company is None:
+        return template.get_template(name).render(values)
+    with company.at_fault():
+        return template.get_template(name).render(values)

@@ -99,6 +99,11 @@ def scientific(x: float | None, digits: int = 2) -> str:
     return mantissa.replace("-", MINUS) + "×10" + str(int(exponent)).translate(SUPERSCRIPTS)
 
 
+def ten_to(exponent: int) -> str:
+    """A power of ten, such as 10⁻³."""
+    return "10" + str(exponent).translate(SUPERSCRIPTS)
+
+
 def common_decimals(values: Iterable[float | None], digits: int = SIGNIFICANT_DIGITS) -> int:
     """Decimals that show the largest of ``values`` to ``digits`` significant digits, at most six.
 

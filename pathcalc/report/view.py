@@ -11,7 +11,7 @@ the worked steps alone.
     the results object of one lane, SI, exactly as ``pathcalc solve --json`` writes it;
 ``solution.case``
     the case: record, fluid, start, legs, limits, units, report block, text, digest;
-``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``
+``solution.explanations``, ``.curves``, ``.dome``, ``.basis``, ``.state_parts``, ``.streams``, ``.verified``
     the records of :mod:`pathcalc.path.steps`.
 """
 
@@ -21,7 +21,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any, Literal, Protocol
 
-from pathcalc.path.steps import Basis, Curve, Dome, StateParts, Step
+from pathcalc.path.steps import Basis, Curve, Dome, StateParts, Step, Verified
 
 
 class SolutionLike(Protocol):
@@ -37,6 +37,10 @@ class SolutionLike(Protocol):
     def dome(self) -> Dome | None: ...
     @property
     def basis(self) -> Basis: ...
+    @property
+    def verified(self) -> Sequence[Verified]: ...
+    @property
+    def streams(self) -> Mapping[str, Mapping[str, Any]]: ...
     @property
     def state_parts(self) -> Sequence[StateParts]: ...
     def to_dict(self) -> dict[str, Any]: ...
@@ -212,8 +216,12 @@ class Document:
         return next((s for s in self.sections if s.key == key), None)
 
 
-def build(solution: SolutionLike) -> Document:
-    """The document for one solved case."""
+def build(solution: SolutionLike, changes: Mapping[str, Any] | None = None) -> Document:
+    """The document for one solved case.
+
+    ``changes`` is what differs from an earlier revision, as ``Comparison.to_dict()`` of
+    :mod:`pathcalc.library.compare` gives it.
+    """
     from pathcalc.report.sections import document
 
-    return document(solution)
+    return document(solution, changes)

@@ -113,6 +113,26 @@ class MeltingPart:
 
 
 @dataclass(frozen=True)
+class CheckValue:
+    """A state that a publication prints for this equation: what is given, what is printed, as texts with units."""
+
+    given: Mapping[str, str]
+    printed: Mapping[str, str]
+    source: str
+
+
+CHECK_GIVEN = {"T": "temperature", "p": "pressure", "rho": "density"}
+CHECK_PRINTED = {
+    "p": "pressure",
+    "rho": "density",
+    "cv": "specific-entropy",
+    "cp": "specific-entropy",
+    "sound_speed": "speed",
+}
+"""What a check value may give and print, with its dimension."""
+
+
+@dataclass(frozen=True)
 class Reference:
     """A published equation of state of one substance; see ``reference_reader`` for the card's form.
 
@@ -143,6 +163,7 @@ class Reference:
     notes: tuple[str, ...] = ()
     table: str | None = None
     acentric: float | None = None
+    check_values: tuple[CheckValue, ...] = ()
     line_of: Mapping[str, tuple[int, int]] = field(default_factory=dict, repr=False, compare=False)
 
     def citation(self, key: str) -> str:

@@ -24,6 +24,8 @@ file name; it is read only when the equation is asked for. Its form, all numbers
       vapour_pressure: {form: exponential-over-T, T_r: …, value_r: …, rows: [[n, t], …], T_min: …, T_max: …,
                         source: …}
     melting: [{form: simon, T_0: …, p_0: …, rows: [[a, t], …], T_min: …, T_max: …, source: …}]     # optional
+    check_values:                      # optional: states a publication prints for this equation, to its own digits
+      - {given: {T: 300 K, rho: 996.556 kg/m3}, printed: {p: 0.0992418352 MPa}, source: text}
     notes: [text, …]                   # optional
     sources: {span2000: full citation}
 """
@@ -31,6 +33,7 @@ file name; it is read only when the equation is asked for. Its form, all numbers
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 from pathlib import Path
 from typing import Any
 
@@ -42,11 +45,14 @@ from pathcalc.substances.fields import Fields
 from pathcalc.substances.fields import Path as Place
 from pathcalc.substances.reference import (
     ANCILLARY_FORMS,
+    CHECK_GIVEN,
+    CHECK_PRINTED,
     MELTING_FORMS,
     QUANTITIES,
     TERM_COLUMNS,
     TERM_DEFAULTS,
     Ancillary,
+    CheckValue,
     Limits,
     MeltingPart,
     Point,
@@ -60,7 +66,7 @@ NEEDED = (
     "reference", "title", "source", "why", "gas_constant", "molar_mass", "reducing", "critical", "summit", "triple",
     "valid", "limits", "uncertainty", "ideal_gas", "terms", "sources",
 )  # fmt: skip
-OPTIONAL = ("table", "acentric", "ancillaries", "melting", "notes")
+OPTIONAL = ("table", "acentric", "ancillaries", "melting", "notes", "check_values")
 ANCILLARIES = ("vapour_pressure", "bubble_pressure", "dew_pressure", "liquid_density", "vapour_density")
 FOLDER = "reference"
 CANCEL = 1e-12
@@ -142,6 +148,7 @@ def build_reference(fields: Fields, card: Card) -> Reference:
         melting=_melting(fields, data.get("melting", [])),
         sources=_sources(fields, data["sources"]),
         notes=fields.texts(data.get("notes", []), ("notes",)),
+        check_values=_check_values(fields, data.get("check_values", [])),
         line_of={key: fields.place((key,)) for key in data},
     )
     _check(fields, found, card)
@@ -194,6 +201,38 @@ def _uncertainty(fields: Fields, value: Any) -> tuple[Uncertainty, ...]:
         _one_of(fields, item["of"], (*path, "of"), QUANTITIES)
         found.append(Uncertainty(*(fields.text(item[key], (*path, key)) for key in ("of", "where", "value"))))
     return tuple(found)
+
+
+def _check_values(fields: Fields, value: Any) -> tuple[CheckValue, ...]:
+    found = []
+    for i, item in enumerate(fields.sequence(value, ("check_values",)) if value else ()):
+        path: Place = ("check_values", i)
+        if fields.mapping(item, path, ("given", "printed", "source")):
+            given = _quantities(fields, item["given"], (*path, "given"), CHECK_GIVEN)
+            if given and not ("T" in given and len(given) == 2):
+                fields.wrong((*path, "given"), "a check value gives T and one of p, rho", "bad-value")
+            printed = _quantities(fields, item["printed"], (*path, "printed"), CHECK_PRINTED)
+            found.append(CheckValue(given, printed, fields.text(item["source"], (*path, "source"))))
+    return tuple(found)
+
+
+def _quantities(fields: Fields, value: Any, path: Place, known: Mapping[str, str]) -> dict[str, str]:
+    """Texts of quantities by key; the numbers are kept as printed."""
+    from pathcalc.quantities import parse_text
+    from pathcalc.quantities.parse import QuantityError
+
+    found: dict[str, str] = {}
+    if not fields.mapping(value, path, (), tuple(known)):
+        return found
+    for key, item in value.items():
+        text = fields.text(item, (*path, str(key)))
+        try:
+            parse_text(text, (known[str(key)],))
+        except QuantityError as error:
+            fields.wrong((*path, str(key)), str(error), "bad-value")
+        else:
+            found[str(key)] = text
+    return found
 
 
 def _one_of(fields: Fields, value: Any, path: Place, known: tuple[str, ...]) -> str:

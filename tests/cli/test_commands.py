@@ -16,7 +16,7 @@ from command_line import Run, environment
 from pathcalc.cli.group import COMMANDS, cli
 from pathcalc.cli.new import FOLDER, TEMPLATES
 
-HEAVY = {"numpy", "scipy", "pydantic", "pydantic_core", "rich", "jinja2", "matplotlib", "yaml"}
+HEAVY = {"numpy", "scipy", "pydantic", "pydantic_core", "rich", "jinja2", "yaml"}
 
 
 @pytest.mark.parametrize(

@@ -61,9 +61,13 @@ def test_every_command_and_exit_code_is_told() -> None:
 def test_the_case_in_readme_solves(tmp_path: Path) -> None:
     import pathcalc
 
-    (text,) = re.findall(r"```yaml\n(.+?)```", README, re.DOTALL)
-    solution = pathcalc.solve(pathcalc.loads(text, root=tmp_path))
+    case, card = re.findall(r"```yaml\n(.+?)```", README, re.DOTALL)
+    solution = pathcalc.solve(pathcalc.loads(case, root=tmp_path))
     assert solution.passed
+    (tmp_path / "own.yaml").write_text(card, encoding="utf-8")
+    text = case.replace("substance: argon", "card: own.yaml")
+    assert text != case
+    assert pathcalc.solve(pathcalc.loads(text, root=tmp_path)).states["valve"].T > 0.0
 
 
 def test_the_python_in_readme_runs(monkeypatch: pytest.MonkeyPatch) -> None:

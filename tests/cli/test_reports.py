@@ -25,7 +25,9 @@ def test_the_folders_of_the_id_are_kept(run: Run, tmp_path: Path) -> None:
     assert sorted(p.relative_to(tmp_path).as_posix() for p in (tmp_path / "out").rglob("*") if p.is_file()) == [
         "out/a/same.html",
         "out/b/same.html",
+        "out/index.html",
     ]
+    assert "index: out/index.html" in done.stderr
     assert "report: out/a/same.html" in done.stderr
     assert "report:" not in done.stdout
 
@@ -56,7 +58,7 @@ def test_a_report_that_fails_leaves_nothing_half_written(run: Run, cases: Path) 
     (cases / "out" / "good.md").mkdir(parents=True)
     done = run("solve", "good.yaml", "quick.yaml", "--report", "html,md", "-o", "out")
     assert done.returncode == 2
-    assert "error: good.yaml: cannot write reports into out: a folder stands where the report would go" in done.stderr
+    assert "error: good.yaml: cannot write reports into out: a folder stands where the file would go" in done.stderr
     assert sorted(p.name for p in (cases / "out").iterdir() if p.name.startswith(("good.html", "."))) == []
     assert (cases / "out" / "quick.html").is_file()
 

@@ -12,7 +12,7 @@ from typing import Any
 
 import numpy as np
 
-from pathcalc.path.steps import Basis, Constant, Curve, CurvePiece, Dome, StateParts, Step
+from pathcalc.path.steps import Basis, Constant, Curve, CurvePiece, Dome, StateParts, Step, Verified
 from pathcalc.quantities import Quantity, Relative, parse_text
 
 R = 8.314462618
@@ -34,6 +34,8 @@ class MadeSolution:
     dome: Dome | None = None
     basis: Basis = field(default_factory=lambda: nitrogen_basis())
     state_parts: tuple[StateParts, ...] = ()
+    streams: dict[str, Any] = field(default_factory=dict)
+    verified: tuple[Verified, ...] = ()
 
     def to_dict(self) -> dict[str, Any]:
         return self.result

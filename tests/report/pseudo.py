@@ -71,6 +71,7 @@ def of_others(solution: Any, case: Path) -> list[str]:
         found += [solution.case.id, *solution.explanations, *solution.to_dict()["software"]]
     found += [address for row in solution.comparison for address in row["quantities"]]
     found += [row["quantity"] for row in solution.limits]
+    found += [text for row in solution.verified for text in (row.source, row.at, row.printed)]
     found += [item.address for item in inputs(Context(solution))]
     found += ["start", "totals", *EQUATIONS, *(solution.case.record.sources or ())]
     found += [f"{kind}:" for kind in (*UNITS_DEFAULT, "volume", "amount", "power")]

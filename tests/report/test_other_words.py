@@ -23,8 +23,8 @@ CASES = (
     "cylinder-against-atmosphere",
 )
 NO_LANGUAGE = {
-    *("Pa", "kPa", "bar", "psia", "kJ", "MJ", "Btu", "kg", "lb", "mol", "kmol", "kW", "hp", "min", "ft", "in"),
-    *("ds", "du", "dh", "gen", "sat", "res", "rev", "ext", "CO"),
+    *("Pa", "kPa", "bar", "MPa", "psia", "kJ", "MJ", "Btu", "kg", "lb", "mol", "kmol", "kW", "hp", "min", "ft", "in"),
+    *("ds", "du", "dh", "gen", "sat", "res", "rev", "ext", "rho", "CO"),
 }
 """Units, symbols and their indices, element symbols."""
 

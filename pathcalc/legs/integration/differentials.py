@@ -13,10 +13,11 @@ The residual Helmholtz energy is not used here: the closed-form state functions 
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from pathcalc.equations.contract import Array, Model, SaturationLine
 from pathcalc.legs.integration.families import Nodes
-from pathcalc.legs.integration.quadrature import GAUSS_WEIGHTS, KRONROD_WEIGHTS, NODES, estimate, over_nodes
+from pathcalc.legs.integration.quadrature import GAUSS_WEIGHTS, KRONROD_WEIGHTS, NODES, estimate, integrate, over_nodes
 
 QUANTITIES = ("ds", "du", "dh", "p_dv", "v_dp", "T_ds", "dh_over_T")
 """What is integrated along every curve: J/(mol K), J/mol, J/mol, J/mol, J/mol, J/mol, J/(mol K)."""
@@ -31,12 +32,11 @@ _EXPANSION = 2e-11
 _ROUNDING = 1e-9
 """Error of c_v/R by that way which rounding of the equation leaves (found: below 5·10^-10)."""
 
-_CAUTION = 50.0
-"""Times the estimate in panels: near a critical point of many terms it may be too small (found: up to 30 times)."""
+_CAUTION = 10.0
+"""Times the estimate of a halved integral: where terms cancel, rounding may exceed it (found: up to 6 times)."""
 
-_PANELS = (4, 12, 36)
 _WANTED = 1e-11
-"""Error of c_v/R above which the integral is taken in more panels."""
+"""Error of c_v/R, and of a panel of its integral, above which the integral is taken in more panels."""
 
 
 def isochoric_heat_capacity(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
@@ -61,7 +61,7 @@ def _inner(model: Model, T: Array, v: Array) -> tuple[Array, Array]:
     """
     line = model.residual.coexistence
     if line is None:
-        return _in_panels(model, None, T, v, 1)
+        return _panel(model, T, v / NODES[:, None], -T / v)
     value, error = np.empty(T.size), np.empty(T.size)
     dense = (v < model.v_c) & (_ACROSS * model.T_c > T) & (line.T_low <= T)
     across, straight = np.flatnonzero(dense), np.flatnonzero(~dense)
@@ -94,28 +94,34 @@ def _across(model: Model, line: SaturationLine, T: Array, v: Array) -> tuple[Arr
 
 def _refined(model: Model, rho: Array | None, T: Array, v: Array) -> tuple[Array, Array]:
     """The integral from the density ``rho`` (None: zero) to 1/v, in more panels where it needs them."""
-    value, error = _in_panels(model, rho, T, v, 1)
-    for panels in _PANELS:
-        rough = np.flatnonzero(error > _WANTED * model.R)
-        if rough.size == 0:
-            break
-        value[rough], estimated = _in_panels(model, None if rho is None else rho[rough], T[rough], v[rough], panels)
-        error[rough] = _CAUTION * estimated
+    first = np.zeros(T.size) if rho is None else rho
+    volume = v / NODES[:, None] if rho is None else 1.0 / (first + (1.0 / v - first) * NODES[:, None])
+    value, error = _panel(model, T, volume, -T * (1.0 / v - first))
+    rough = np.flatnonzero(error > _WANTED * model.R)
+    if rough.size:
+        value[rough], error[rough] = _bisected(model, first[rough], T[rough], 1.0 / v[rough])
     return value, error
 
 
-def _in_panels(model: Model, rho: Array | None, T: Array, v: Array, panels: int) -> tuple[Array, Array]:
-    if panels == 1 and rho is None:
-        return _panel(model, T, v / NODES[:, None], -T / v)
-    total, slip = np.zeros(T.size), np.zeros(T.size)
-    first = np.zeros(T.size) if rho is None else rho
-    width = (1.0 / v - first) / panels
-    for panel in range(panels):
-        volume = 1.0 / (first + width * (panel + NODES[:, None]))
-        kronrod, error = _panel(model, T, volume, -T * width)
-        total += kronrod
-        slip += error
-    return total, slip
+def _bisected(model: Model, first: Array, T: Array, last: Array) -> tuple[Array, Array]:
+    """The integral between two densities, (n,), by halving of panels, cut at the critical density.
+
+    Next to the critical point the integrand has its peak there, the sharper the nearer.
+    """
+    middle = np.clip(1.0 / model.v_c, first, last)
+    low, high = np.concatenate([first, middle]), np.concatenate([middle, last])
+    lane = np.flatnonzero(high > low)
+    low, width, warm = low[lane], (high - low)[lane], np.tile(T, 2)[lane]
+
+    def integrand(x: Array, k: NDArray[np.intp]) -> tuple[Array, Array, Array]:
+        volume = 1.0 / (low[k] + x * width[k])
+        value = -warm[k] * width[k] * model.residual.pressure_curvature(warm[k], volume) * volume * volume
+        return value[None], np.abs(value)[None], np.zeros_like(value)[None]
+
+    found = integrate(integrand, 1, lane.size, np.full((1, lane.size), model.R), rtol=_WANTED)
+    value, error = np.zeros(2 * T.size), np.zeros(2 * T.size)
+    value[lane], error[lane] = found.value[0], _CAUTION * found.error[0]
+    return value.reshape(2, -1).sum(axis=0), error.reshape(2, -1).sum(axis=0)
 
 
 def _panel(model: Model, T: Array, volume: Array, scale: Array) -> tuple[Array, Array]:

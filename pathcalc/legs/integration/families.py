@@ -26,7 +26,7 @@ NEWTON_LIMIT = 40
 STEP_TOLERANCE = 2.0e-13
 SETTLED = 12
 NOISE = 1e-9
-"""After SETTLED steps a step of this part of T counts as the rounding of the held property."""
+"""After SETTLED steps a step of this part of T (or v) counts as the rounding of the held property."""
 
 
 class Ends(NamedTuple):
@@ -358,12 +358,12 @@ def _along_temperature(model: Model, ends: Ends, x: Array, level: Array) -> Node
         slopes.append(-t.p_T * span / (t.p_v * v_end))
     log_v = _hermite(x, np.log(ends.v_a), np.log(ends.v_b), slopes[0], slopes[1])
     done = np.zeros(T.shape, dtype=bool)
-    for _ in range(NEWTON_LIMIT):
+    for iteration in range(NEWTON_LIMIT):
         v = np.exp(log_v)
         t = model.residual.pressure(T, v)
         step = np.where(done, 0.0, np.clip((level - t.p) / (t.p_v * v), -0.1, 0.1))
         log_v = log_v + step
-        done |= ~(np.abs(step) > 1e-13)
+        done |= ~(np.abs(step) > (1e-13 if iteration < SETTLED else NOISE))
         if done.all():
             break
     v = np.exp(log_v)
@@ -409,7 +409,7 @@ class HeatedWithDrop:
         T = ends.T_a + x * (ends.T_b - ends.T_a)
         log_v = np.log(ends.v_a) + x * np.log(ends.v_b / ends.v_a)
         done = np.zeros(T.shape, dtype=bool)
-        for _ in range(NEWTON_LIMIT):
+        for iteration in range(NEWTON_LIMIT):
             v = np.exp(log_v)
             state = thermal(model, T, v)
             _h, h_T, h_v = _enthalpy(state, T, v)
@@ -420,7 +420,8 @@ class HeatedWithDrop:
                 step_v = np.where(done, 0.0, (state.p_T * miss_h - miss_p * h_T) / determinant / v)
             step_T, step_v = np.clip(step_T, -0.3 * T, 0.3 * T), np.clip(step_v, -0.3, 0.3)
             T, log_v = T + step_T, log_v + step_v
-            done |= ~((np.abs(step_T) > 1e-13 * T) | (np.abs(step_v) > 1e-12))
+            least_T, least_v = (1e-13, 1e-12) if iteration < SETTLED else (NOISE, NOISE)
+            done |= ~((np.abs(step_T) > least_T * T) | (np.abs(step_v) > least_v))
             if done.all():
                 break
         v = np.exp(log_v)

@@ -101,12 +101,20 @@ def estimate(kronrod: Array, gauss: Array, spread: Array, magnitude: Array) -> A
     return np.maximum(error, 50.0 * EPS * magnitude)
 
 
-def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, rtol: float = 1e-11) -> Quadrature:
+def integrate(
+    integrand: Integrand,
+    quantities: int,
+    lanes: int,
+    floors: Array,
+    rtol: float = 1e-11,
+    breaks: Array | None = None,
+) -> Quadrature:
     """Integrate over [0, 1] in every lane, halving the panels of a lane until its own error is small enough.
 
     ``integrand(x, lane)`` takes abscissas (15, k) and lane numbers (k,) and returns values, magnitudes and
     inherited errors, each (quantities, 15, k). ``floors`` (quantities, lanes) is the magnitude below which a
-    result counts as zero. A lane whose integrand is not finite is marked, not raised; where rounding keeps the error
+    result counts as zero; ``breaks`` (K, lanes), NaN where there is none, are abscissas in (0, 1) that panels must not
+    cross. A lane whose integrand is not finite is marked, not raised; where rounding keeps the error
     above ``rtol`` of the magnitude, the error says so.
     """
     value = np.zeros((quantities, lanes))
@@ -114,8 +122,7 @@ def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, 
     magnitude = np.zeros((quantities, lanes))
     converged = np.ones(lanes, dtype=bool)
     panels = np.zeros(lanes, dtype=np.intp)
-    lane = np.arange(lanes, dtype=np.intp)
-    left, width = np.zeros(lanes), np.ones(lanes)
+    lane, left, width = _first_panels(lanes, breaks)
     scale: Array | None = None
     for depth in range(MAX_DEPTH + 1):
         if lane.size == 0:
@@ -129,7 +136,10 @@ def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, 
         amount = over_nodes(weights * size) * width
         bound = estimate(kronrod * width, gauss * width, spread, amount)
         if scale is None:
-            scale = np.maximum(amount, floors)
+            total = np.zeros((quantities, lanes))
+            for m in range(quantities):
+                np.add.at(total[m], lane, amount[m])
+            scale = np.maximum(total, floors)
         good = (bound <= rtol * scale[:, lane]).all(axis=0)
         crowded = np.bincount(lane, minlength=lanes)[lane] > MAX_PANELS
         finite = np.isfinite(bound).all(axis=0)
@@ -148,3 +158,18 @@ def integrate(integrand: Integrand, quantities: int, lanes: int, floors: Array, 
         left = np.concatenate([left[split], left[split] + half])
         width = np.concatenate([half, half])
     return Quadrature(value, error, magnitude, converged, panels)
+
+
+def _first_panels(lanes: int, breaks: Array | None) -> tuple[NDArray[np.intp], Array, Array]:
+    """Lane, left end and width of the panels to begin with: one a lane, and one more for every break."""
+    every = np.arange(lanes, dtype=np.intp)
+    if breaks is None:
+        return every, np.zeros(lanes), np.ones(lanes)
+    row, column = np.nonzero((breaks > 0.0) & (breaks < 1.0))
+    lane = np.concatenate([every, column.astype(np.intp)])
+    left = np.concatenate([np.zeros(lanes), breaks[row, column]])
+    order = np.lexsort((left, lane))
+    lane, left = lane[order], left[order]
+    right = np.append(left[1:], 1.0)
+    right[np.append(lane[1:] != lane[:-1], True)] = 1.0
+    return lane, left, right - left

@@ -15,6 +15,7 @@ from pathcalc.equilibrium.points import Points
 from pathcalc.equilibrium.saturation import saturation_at_p, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
 from pathcalc.legs.integration.families import Ends, Family, HeatedWithDrop, Isochore, Isotherm, Lanes, Polytrope
+from pathcalc.legs.integration.kinks import kinks_on
 from pathcalc.legs.integration.polytropic_efficiency import end_mismatch
 from pathcalc.legs.integration.quadrature import Quadrature, integrate
 from pathcalc.legs.integration.saturation_line import Cuts, SaturationLine, Side, sorted_cuts
@@ -258,7 +259,8 @@ def _piece(model: Model, segment: Segment, ends: Ends, local: Lanes, in_dome: bo
         return differentials(model, family.nodes(model, ends.take(k), x, local[k]))
 
     if not in_dome:
-        total = integrate(integrand, COUNT, local.size, _floors(model, ends))
+        breaks = kinks_on(model, family, ends, local)
+        total = integrate(integrand, COUNT, local.size, _floors(model, ends), breaks=breaks)
         if not isinstance(family, Isotherm | Isochore):
             total = replace(total, error=total.error + end_mismatch(model, family, ends, local))
     elif family.level_in_dome:

@@ -14,7 +14,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from pathcalc.equations.contract import Array, Model
+from pathcalc.equations.contract import Array, Model, PressureTerms
 from pathcalc.equilibrium.saturation import Saturation, saturation_at_T
 from pathcalc.legs.integration.differentials import QUANTITIES, differentials
 from pathcalc.legs.integration.families import Ends, Family, Lanes, Nodes
@@ -90,10 +90,10 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
         push = family.dome_volume(liquid, gas, lanes[k]) * liquid.dp_dT * dT
         values[4], sizes[4] = push, np.abs(push)
         values[6], sizes[6] = push / T, np.abs(push) / T
-        inherited = sizes * _looseness(model, T, liquid, gas, v, terms.p_v)
+        inherited = sizes * _looseness(model, T, liquid, gas, v, terms)
         return values, sizes, inherited
 
-    along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10)
+    along = integrate(integrand, len(QUANTITIES), span.size, floors, rtol=1e-10, breaks=_kinks(model, root_a, span))
     value = along.value.copy()
     size = along.magnitude.copy()
     for row, name in enumerate(("ds", "du", "dh")):
@@ -112,24 +112,39 @@ def sloping_piece(model: Model, family: Family, ends: Ends, lanes: Lanes, floors
     return Quadrature(value, error, size, good, along.panels)
 
 
+def _kinks(model: Model, root_a: Array, span: Array) -> Array | None:
+    """Abscissas at which the temperature is one where the ideal-gas heat capacity has a kink, (K, k)."""
+    cold = [T for T in model.ideal.kinks if model.T_c > T]
+    if not cold:
+        return None
+    roots = np.sqrt(model.T_c - np.array(cold))[:, None]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return np.asarray((roots - root_a) / span)
+
+
 def _boundary_entropy_error(model: Model, sat: Saturation) -> Array:
     """Entropy that the volumes of a change of phase are uncertain by next to the critical point, J/(mol K)."""
     liquid, gas = side_of(model, sat, False), side_of(model, sat, True)
     total = np.zeros_like(sat.T)
     for side in (liquid, gas):
-        p_v = model.residual.pressure(sat.T, side.v).p_v
-        total = total + sat.dp_dT * side.v * _looseness(model, sat.T, liquid, gas, side.v, p_v)
+        terms = model.residual.pressure(sat.T, side.v)
+        total = total + sat.dp_dT * side.v * _looseness(model, sat.T, liquid, gas, side.v, terms)
     return total
 
 
-def _looseness(model: Model, T: Array, liquid: Side, gas: Side, v: Array, p_v: Array) -> Array:
-    """Relative error of a boundary volume: equal Gibbs energy is met to 5e-14 R T, which fixes the pressure to
+def _looseness(model: Model, T: Array, liquid: Side, gas: Side, v: Array, terms: PressureTerms) -> Array:
+    """Relative error of a boundary volume and of its slope.
 
-    that over the change of volume, and the pressure fixes the volume by its compressibility.
+    Equal Gibbs energy is met to 5e-14 R T, which fixes the pressure to that over the change of volume, and the
+    pressure fixes the volume by its compressibility. Next to some critical points the volumes found miss equal Gibbs
+    energy and equal pressure by more, steadily along the boundary. The slope of the boundary then is wrong by more
+    than the volume itself: it goes with 1/(v - v_c).
     """
     change = np.maximum(gas.v - liquid.v, 1e-300)
+    gap = np.abs((liquid.h - T * liquid.s) - (gas.h - T * gas.s))
     with np.errstate(divide="ignore", invalid="ignore"):
-        loose: Array = 5e-14 * model.R * T / change / np.abs(p_v * v)
+        missed = (gap / change + np.abs(terms.p - liquid.p)) * v / np.abs(v - model.v_c)
+        loose: Array = (5e-14 * model.R * T / change + missed) / np.abs(terms.p_v * v)
     return np.minimum(np.where(np.isfinite(loose), loose, 0.0), 1e-3)
 
 

@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from typing import Any
+
 from pathcalc.report.context import Context
 from pathcalc.report.sections import basis, checks, closing, conclusions, diagrams, fluid, front, results, worked
+from pathcalc.report.sections import changes as changed
 from pathcalc.report.view import Document, Figure, Section, SolutionLike
 
 _SECTIONS = (
     conclusions.revisions,
+    changed.section,
     front.purpose,
     basis.section,
     fluid.section,
@@ -26,9 +31,9 @@ _SECTIONS = (
 """The order of the document."""
 
 
-def document(solution: SolutionLike) -> Document:
-    """The whole view model of one solved case."""
-    ctx = Context(solution)
+def document(solution: SolutionLike, changes: Mapping[str, Any] | None = None) -> Document:
+    """The whole view model of one solved case; see :func:`pathcalc.report.view.build`."""
+    ctx = Context(solution, changes)
     sections: list[Section] = []
     for make in _SECTIONS:
         section = make(ctx)

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from pathcalc.report import numbers
 from pathcalc.report.context import Context, pick
-from pathcalc.report.view import Block, Cell, Column, Listing, Notice, Paragraph, Section
+from pathcalc.report.units import pretty
+from pathcalc.report.view import Block, Cell, Column, Heading, Listing, Notice, Paragraph, Section
 from pathcalc.report.words import say
 
 _P_EQUIPMENT = 0.5e5
@@ -79,8 +81,34 @@ def made(ctx: Context) -> Section:
     sources = pick(ctx.solution, "sources_in_words", fluid["sources"])
     rows += [(Cell(say("made.sources")), Cell(_source(s))) for s in sources]
     columns = [Column(say("col.item")), Column(say("col.value"))]
-    blocks = (ctx.table(say("made.caption"), columns, rows), Paragraph(say("made.repeat")))
+    blocks = (ctx.table(say("made.caption"), columns, rows), Paragraph(say("made.repeat")), *_verified(ctx))
     return Section("made", say("made.title"), blocks)
+
+
+def _verified(ctx: Context) -> list[Block]:
+    """The equation against published values, computed while this document was made."""
+    found = ctx.solution.verified
+    blocks: list[Block] = [Heading(say("made.verified"))]
+    if not found:
+        return [*blocks, Paragraph(say("made.verified.none"))]
+    columns = [Column(say(f"col.{key}")) for key in ("quantity", "at")]
+    columns += [Column(say(f"col.{key}"), numeric=True) for key in ("printed", "computed")]
+    columns += [Column(say(f"col.{key}")) for key in ("outcome", "source")]
+    rows = []
+    for item in found:
+        unit = item.printed.partition(" ")[2]
+        outcome = Cell(say("made.agrees"), "good") if item.agrees else Cell(say("made.differs"), "bad")
+        rows.append(
+            (
+                Cell(say(f"q.{item.quantity}")),
+                Cell(pretty(item.at)),
+                Cell(pretty(item.printed), "number"),
+                Cell(f"{numbers.significant(item.computed, 10)}\u00a0{pretty(unit)}", "number"),
+                outcome,
+                Cell(item.source),
+            )
+        )
+    return [*blocks, Paragraph(say("made.verified.lead")), ctx.table(say("made.caption.verified"), columns, rows)]
 
 
 def _source(source: object) -> str:

@@ -171,7 +171,8 @@ def _totals(ctx: Context) -> list[Block]:
 
 def _streams(ctx: Context) -> list[Block]:
     """Streams that leave by separation or join by mixing, with their states."""
-    found = [leg for leg in ctx.legs if leg.get("other")]
+    streams = ctx.solution.streams
+    found = [leg for leg in ctx.legs if leg["name"] in streams]
     if not found:
         return []
     keys = ("T", "p", "v", "h", "s", "x")
@@ -179,7 +180,7 @@ def _streams(ctx: Context) -> list[Block]:
     columns += [ctx.column(f"q.{k}", SYMBOLS[k], STATE_KINDS[k]) for k in keys]
     rows = []
     for leg in found:
-        other = leg["other"]
+        other = streams[leg["name"]]
         amount = other["amount"]
         way = say("results.stream.joins" if leg["path"] == "mixing" else "results.stream.leaves")
         row = [Cell(str(leg["name"])), Cell(way), ctx.cell("amount", None if amount is None else abs(amount))]

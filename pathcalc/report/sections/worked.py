@@ -63,6 +63,8 @@ def _heading(ctx: Context, name: str) -> str:
         return say("worked.totals")
     if name == "start":
         return say("worked.start")
+    if name == "cycle":
+        return say("results.cycle")
     leg = next((leg for leg in ctx.legs if leg["name"] == name), None)
     if leg is None:
         return name
