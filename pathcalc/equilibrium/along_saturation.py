@@ -65,6 +65,12 @@ def _neighbour(model: Model, key: str, T: Array, offset: Array) -> Array:
     return np.where(outside, np.nan, quantity.value(model, key, T + offset, v))
 
 
+def _held(model: Model, T: Array) -> Array:
+    """``T`` (K), at an end of the model's range where it lies beyond by no more than rounding."""
+    within = np.clip(T, *model.T_limits)
+    return np.where(np.abs(within / T - 1.0) < _ROUNDING, within, T)
+
+
 def _settle_quality(model: Model, draft: Draft, at: NDArray[np.intp], sat: Saturation, x: Array) -> None:
     draft.put_mixed(at, sat, x)
 
@@ -74,9 +80,7 @@ def _settle_beside(model: Model, draft: Draft, at: NDArray[np.intp], sat: Satura
     draft.put_mixed(where, sat, np.ones(where.size))
     off = (offset != 0.0) & (sat.reason == 0)
     if off.any():
-        T = sat.T[off] + offset[off]
-        within = np.clip(T, *model.T_limits)
-        points = flash_Tp(model, np.where(np.abs(within / T - 1.0) < _ROUNDING, within, T), sat.p[off])
+        points = flash_Tp(model, _held(model, sat.T[off] + offset[off]), sat.p[off])
         draft.take(where[off], points)
 
 
@@ -118,6 +122,7 @@ def _scan(
     if twice.size:
         a, b = saturation_at_T(model, first.x[twice]), saturation_at_T(model, second.x[twice])
         off = 0.0 if away is None else away[twice]
-        draft.T[twice], draft.p[twice], draft.T_other[twice], draft.p_other[twice] = a.T + off, a.p, b.T + off, b.p
+        draft.T[twice], draft.T_other[twice] = _held(model, a.T + off), _held(model, b.T + off)
+        draft.p[twice], draft.p_other[twice] = a.p, b.p
         draft.reason[twice] = reasons.TWO_SOLUTIONS
     draft.reason[count == 0] = reasons.TARGET_NOT_REACHED

@@ -73,9 +73,9 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     points = flash_p(model, np.exp(root.x), "s", s[at])
     draft.take(at, points)
     tried = at[points.ok]
-    settled = _polish(model, draft, tried, s, key, target)
     # a cold liquid hardly changes h or u with p: there the value itself decides
     miss = np.abs(_on_isentrope(model, points, key)[0] - target[at])
+    settled = _polish(model, draft, tried, s, key, target, miss[points.ok])
     reached = points.ok & (root.ok | (miss <= _REACHED * (np.abs(target[at]) + model.R * points.T)))
     reached |= np.isin(at, settled)
     missed = at[~reached]
@@ -86,15 +86,18 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     return draft.finish(model)
 
 
-def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array) -> NDArray[np.intp]:
+def _polish(
+    model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array, miss: Array
+) -> NDArray[np.intp]:
     """Newton steps in T and v on both values themselves: p is a poor measure of a liquid that hardly compresses.
 
-    Returns the lanes where they settled.
+    Returns the lanes where they settled. A trace of vapour is given up only for a liquid that meets both better than
+    ``miss``, what is missing of h or u with it.
 
     With X = h or u, det = (c_v/T) (∂X/∂v)_T − (∂p/∂T)_v (∂X/∂T)_v.
     """
     wet = draft.x[at] > _HARDLY_WET
-    at = at[~wet]
+    at, miss = at[~wet], miss[~wet]
     if at.size == 0 or model.residual.coexistence is None:
         return at[:0]
     barely = draft.x[at] == draft.x[at]
@@ -125,7 +128,7 @@ def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str
         p = thermal(model, T, v).p
         p_s = np.zeros(at.size)
         p_s[barely] = saturation_at_T(model, T[barely]).p
-        good &= p > p_s
+        good &= (p > p_s) & (~barely | (least < miss))
     here = at[good]
     draft.T[here], draft.v[here], draft.p[here] = T[good], v[good], p[good]
     for a in (draft.x, draft.v_liquid, draft.v_vapour):
