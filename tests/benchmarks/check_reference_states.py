@@ -55,6 +55,9 @@ DIGITS = 2e-15
 EXPANDED = 2e-14
 """The same of energies and entropies of saturated phases, whose expansions are rounded too."""
 
+ALIKE = 1e-5
+"""Temperatures further apart than this part of themselves are those of two states, whatever their values."""
+
 SCATTER = 4.0
 """Times the scatter seen at a few neighbours that the worst of it may be."""
 
@@ -393,7 +396,7 @@ def check_pair(
         miss_T, miss_v = np.abs(np.log(points.T / want.T)), np.abs(np.log(points.v / want.v))
         good = ok & (miss_T <= STRICT + ln_T) & (miss_v <= STRICT + ln_v)
         # both values to their rounding, by another state that they do not tell from this one
-        met = ok & (miss_T < 1e-6)
+        met = ok & (miss_T < ALIKE)
         for key, value in given.items():
             of_line = np.where(points.x == points.x, EXPANDED * np.abs(value), 0.0)
             met &= np.abs(getattr(got, key, value) - value) <= rounding[key] + of_line
