@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import re
 from pathlib import Path
 
 import yaml
@@ -11,6 +12,7 @@ from pathcalc.errors import UsageError
 
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 _HEAD = 65536
+_FIRST_KEY = re.compile(r"""(?:[ \t]*(?:[#%][^\n]*|---[ \t]*)?\r?\n)*["']?pathcalc["']?[ \t]*:""")
 
 
 def find_cases(path: str | os.PathLike[str]) -> list[Path]:
@@ -49,6 +51,8 @@ def begins_as_case(file: Path) -> bool:
                 return bool(event.value == "pathcalc")
             if isinstance(event, (yaml.SequenceStartEvent, yaml.AliasEvent)):
                 return False
-    except (OSError, yaml.YAMLError):
+    except OSError:
         return False
+    except yaml.YAMLError:
+        return _FIRST_KEY.match(text) is not None  # a case that is not readable is one all the same, and has to be told
     return False

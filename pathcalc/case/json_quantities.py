@@ -41,15 +41,41 @@ def refer(schema: dict[str, Any]) -> dict[str, Any]:
     return {"$ref": f"#/$defs/{schema[MARKER]}"} | {k: v for k, v in schema.items() if k != MARKER}
 
 
+BESIDE: dict[str, Any] = {
+    "source": {
+        "description": "Id of a source in record.sources.",
+        "examples": ["vendor"],
+        "type": ["string", "number"],
+    },
+    "note": {
+        "description": "Anything a reader should know.",
+        "examples": ["per vendor sheet"],
+        "type": ["string", "number", "boolean"],
+    },
+}
+
+
+def example_of(dimensions: Collection[str]) -> str | float:
+    """A value with a unit of the first dimension."""
+    first = next(iter(dimensions))
+    return 0.5 if first == "fraction" else f"1 {spellings(first)[0]}"
+
+
 def target_schema(dimensions: Collection[str], ratio: bool) -> dict[str, Any]:
     """A quantity, or one of ratio, rise, drop, same_as."""
     step = quantity_schema([difference_of(d) for d in dimensions])
-    kinds: dict[str, Any] = {"rise": step, "drop": step, "same_as": {"type": "string"}}
+    such = example_of([difference_of(d) for d in dimensions])
+    kinds: dict[str, Any] = {
+        "rise": {**step, "description": "So much above the leg's inlet.", "examples": [such]},
+        "drop": {**step, "description": "So much below the leg's inlet.", "examples": [such]},
+        "same_as": {"type": "string", "description": "Name of an earlier state.", "examples": ["start"]},
+    }
     if ratio:
-        kinds = {"ratio": quantity_schema(("fraction",))} | kinds
+        times = quantity_schema(("fraction",))
+        kinds = {"ratio": {**times, "description": "So many times the leg's inlet.", "examples": [3.1]}} | kinds
     relative = {
         "type": "object",
-        "properties": {**kinds, "source": {"type": ["string", "number"]}, "note": {"type": "string"}},
+        "properties": {**kinds, **BESIDE},
         "patternProperties": {"^x-": {}},
         "additionalProperties": False,
         "oneOf": [{"required": [kind]} for kind in kinds],
@@ -63,20 +89,25 @@ def definitions(name: str) -> dict[str, dict[str, Any]]:
     if dimensions is None:
         return {}
     spread = [difference_of(d) for d in dimensions]
+    such = example_of(spread)
     mapping = {
         "type": "object",
         "properties": {
-            "value": _text_ref(dimensions),
-            "u": {"description": "Standard uncertainty.", **_text_ref(spread)},
-            "U": {"description": "Expanded uncertainty; k goes with it.", **_text_ref(spread)},
-            "k": {"description": "Coverage factor of U.", "type": ["number", "string"]},
+            "value": {"description": "The value.", "examples": [example_of(dimensions)], **_text_ref(dimensions)},
+            "u": {"description": "Standard uncertainty.", "examples": [such], **_text_ref(spread)},
+            "U": {"description": "Expanded uncertainty; k goes with it.", "examples": [such], **_text_ref(spread)},
+            "k": {"description": "Coverage factor of U.", "examples": [2], "type": ["number", "string"]},
             "half_width": {
                 "description": "Half the width of the interval of all values; shape goes with it.",
+                "examples": [such],
                 **_text_ref(spread),
             },
-            "shape": {"enum": ["rectangular", "triangular"]},
-            "source": {"description": "Id of a source in record.sources.", "type": ["string", "number"]},
-            "note": {"type": ["string", "number", "boolean"]},
+            "shape": {
+                "enum": ["rectangular", "triangular"],
+                "description": "Distribution over the interval of half_width.",
+                "examples": ["rectangular"],
+            },
+            **BESIDE,
         },
         "patternProperties": {"^x-": {}},
         "required": ["value"],

@@ -1,4 +1,4 @@
-"""The JSON Schema of a case file (draft 2020-12), for editors: from the same models that load it."""
+"""The JSON Schema of a case file (draft 7), for editors: from the same models that load it."""
 
 from __future__ import annotations
 
@@ -8,6 +8,7 @@ from pydantic import BaseModel
 
 from pathcalc.case import names
 from pathcalc.case.expand import Repeat
+from pathcalc.case.json_draft7 import as_draft7, by_key
 from pathcalc.case.json_quantities import definitions, quantity_schema, refer
 from pathcalc.case.leg_registry import leg_models
 from pathcalc.case.sections import AMOUNT_DIMENSIONS, Fluid, Limit, Record, Report, Start, Surroundings
@@ -15,19 +16,30 @@ from pathcalc.case.substance_check import substance_names
 from pathcalc.quantities.units import spellings
 
 _LEG = {"name": "first stage", "path": "adiabatic", "to": {"p": "4.5 barg"}, "efficiency": 0.76}
+_UNIT_WORDS = {
+    "T": "temperatures", "p": "pressures; a gauge unit shows gauge pressures", "energy": "energies", "mass": "masses",
+    "time": "times", "volume": "volumes", "amount": "amounts of substance",
+}  # fmt: skip
+SETTINGS_MODEL = "pathcalc.library.settings_model"
+"""The room above this one that has the settings, asked for its model by name."""
 USER_KEYS: dict[str, Any] = {"^x-": {}}
 
 
 def case_json_schema() -> dict[str, Any]:
     """JSON Schema of the format. Keys that begin with ``x-`` are allowed in every mapping."""
     defs: dict[str, Any] = {}
-    legs = [_model(model, f"leg-{path}", defs) for path, model in leg_models().items()]
-    repeat = _model(Repeat, "repeat", defs)
-    defs["repeat"]["properties"]["legs"] = {"$ref": "#/$defs/legs"}
+    for path, model in leg_models().items():
+        _model(model, f"leg-{path}", defs)
+        _describe_leg(defs[f"leg-{path}"], path, defs)
+    _model(Repeat, "repeat", defs)
+    defs["repeat"]["properties"]["legs"] = _key(
+        {"$ref": "#/$defs/legs"}, "The legs of one time through.", [{**_LEG, "name": "stage"}]
+    )
+    kinds = {path: f"leg-{path}" for path in leg_models()}
     defs["legs"] = {
         "type": "array",
         "minItems": 1,
-        "items": {"oneOf": [*legs, repeat], "discriminator": {"propertyName": "path"}},
+        "items": by_key("path", kinds, "Kind of the leg: what it holds, or how it goes.", ("repeat", "repeat")),
     }
     fluid = _model(Fluid, "fluid", defs)
     substance = defs["fluid"]["properties"]["substance"]
@@ -38,7 +50,6 @@ def case_json_schema() -> dict[str, Any]:
     substance.pop("type", None)
     included = {"type": "string", "minLength": 1}
     schema: dict[str, Any] = {
-        "$schema": "https://json-schema.org/draft/2020-12/schema",
         "title": "pathcalc case",
         "description": "One process path of one fluid, version 1 of the format.",
         "type": "object",
@@ -90,7 +101,33 @@ def case_json_schema() -> dict[str, Any]:
     }
     _define(schema, defs)
     schema["$defs"] = dict(sorted(defs.items()))
-    return schema
+    return as_draft7(schema)
+
+
+def settings_json_schema() -> dict[str, Any]:
+    """JSON Schema of the settings file of a library."""
+    from importlib import import_module
+
+    model: type[BaseModel] = import_module(SETTINGS_MODEL).SettingsModel
+    defs: dict[str, Any] = {}
+    _model(model, "settings", defs)
+    schema = {"title": "pathcalc library settings", **defs.pop("settings")}
+    _define(schema, defs)
+    schema["$defs"] = dict(sorted(defs.items()))
+    return as_draft7(schema)
+
+
+def _describe_leg(leg: dict[str, Any], path: str, defs: dict[str, Any]) -> None:
+    """What the models leave unsaid of the keys that all legs have: where it goes, and examples."""
+    properties = leg["properties"]
+    properties["path"]["examples"] = [path]
+    if "to" in properties:
+        targets = defs[properties["to"]["$ref"].rpartition("/")[2]]
+        first = next(iter(targets["properties"].items()))
+        example = first[1]["examples"][0]
+        properties["to"] = _key(properties["to"], "Where the leg ends.", {first[0]: example})
+    if "with" in properties:
+        properties["with"]["description"] = "The stream that joins."
 
 
 def _key(schema: dict[str, Any], description: str, example: Any) -> dict[str, Any]:
@@ -101,7 +138,7 @@ def _units() -> dict[str, Any]:
     kinds = {}
     for kind, dimensions in names.UNIT_KINDS.items():
         allowed = [u for d in dimensions for u in spellings(d) if u not in names.UNIT_KINDS_REFUSED]
-        kinds[kind] = {"enum": allowed}
+        kinds[kind] = _key({"enum": allowed}, f"Unit of {_UNIT_WORDS[kind]}.", allowed[0])
     mapping = {
         "type": "object",
         "properties": kinds,

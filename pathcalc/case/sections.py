@@ -117,7 +117,13 @@ class HeatCapacityField(_Field):
 
         named = {
             "type": "object",
-            "properties": {"correlation": {"type": "string"}},
+            "properties": {
+                "correlation": {
+                    "type": "string",
+                    "description": "A correlation of the substance's card, by its name.",
+                    "examples": ["wide-range"],
+                }
+            },
             "required": ["correlation"],
             "additionalProperties": False,
         }

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any
 
-from pathcalc.cli.talk import Talk, safe
+from pathcalc.cli.talk import Talk, visible
 
 if TYPE_CHECKING:
     from pathcalc.library.compare import Comparison, InputChange, LimitChange, ResultChange
@@ -32,11 +32,11 @@ def as_text(pairs: Sequence[Pair], old: str, new: str, talk: Talk) -> str:
     same = [p for p in pairs if p.unchanged or (p.comparison is not None and p.comparison.same)]
     for pair in pairs:
         if pair.only:
-            page.line(f"{safe(pair.name)}: only in {safe(old if pair.only == 'old' else new)}")
+            page.line(f"{visible(pair.name)}: only in {visible(old if pair.only == 'old' else new)}")
         elif pair.comparison is not None and not pair.comparison.same:
             _text_of(page, pair.comparison, pair.name if len(pairs) > 1 else "", talk.verbose)
     if len(pairs) == 1 and same:
-        page.line(f"{safe(old)} and {safe(new)}: nothing differs")
+        page.line(f"{visible(old)} and {visible(new)}: nothing differs")
     elif same:
         page.line(f"{len(same)} case{'' if len(same) == 1 else 's'} without a difference")
     software = dict.fromkeys(text for p in pairs if p.comparison for text in p.comparison.software)
@@ -48,14 +48,14 @@ def as_text(pairs: Sequence[Pair], old: str, new: str, talk: Talk) -> str:
 def _text_of(page: Any, found: Comparison, name: str, every: bool) -> None:
     if name:
         page.line("")
-        page.title(safe(name))
+        page.title(visible(name))
     page.line(f"old: {_head(found.old)}")
     page.line(f"new: {_head(found.new)}")
     for side, snapshot in (("old", found.old), ("new", found.new)):
         if snapshot.results is None:
-            page.line(f"{side} has no solution: {safe(snapshot.trouble)}")
+            page.line(f"{side} has no solution: {visible(snapshot.trouble)}")
     for before, after in found.renamed.items():
-        page.line(f"leg {safe(before)!r} is called {safe(after)!r} now")
+        page.line(f"leg {visible(before)!r} is called {visible(after)!r} now")
     if found.old.inputs is None or found.new.inputs is None:
         page.line("inputs are not compared: a results file that was not accepted does not hold them")
     if found.inputs:
@@ -85,8 +85,8 @@ def _warnings_text(page: Any, found: Comparison) -> None:
 
 
 def _head(snapshot: Any) -> str:
-    revision = f", revision {safe(snapshot.revision)}" if snapshot.revision else ""
-    return f"{safe(snapshot.label)}{revision}: {safe(snapshot.title)}"
+    revision = f", revision {visible(snapshot.revision)}" if snapshot.revision else ""
+    return f"{visible(snapshot.label)}{revision}: {visible(snapshot.title)}"
 
 
 def _si(value: Any) -> str:
@@ -98,7 +98,7 @@ def _si(value: Any) -> str:
 def _as_written(value: Any) -> str:
     if value is None:
         return "absent"
-    text = safe(str(value["written"]))
+    text = visible(str(value["written"]))
     return text if len(text) <= 60 else f"{text[:57]}..."
 
 
@@ -204,10 +204,10 @@ _MARKUP = {c: f"\\{c}" for c in "\\`*_[]<>|~#"} | {"&": "&amp;"}
 
 def _cell(text: str) -> str:
     """Text that Markdown shows as it is, on one line."""
-    return "".join(_MARKUP.get(c, c) for c in safe(" ".join(text.split())))
+    return "".join(_MARKUP.get(c, c) for c in visible(" ".join(text.split())))
 
 
 def _code(text: str) -> str:
-    plain = safe(" ".join(text.split())).replace("|", "\\|")
+    plain = visible(" ".join(text.split())).replace("|", "\\|")
     fence = "`" * (1 + max((len(run) for run in plain.split("`")), default=0) if "`" in plain else 1)
     return f"{fence} {plain} {fence}" if "`" in plain else f"`{plain}`"

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from pathcalc.cli.talk import json_text, safe
+from pathcalc.cli.talk import json_text, visible
 from pathcalc.errors import Finding
 
 FORMATS = ("text", "json", "github")
@@ -20,7 +20,7 @@ def rendered(findings: Iterable[Finding], form: str) -> str:
 
 
 def _line(finding: Finding) -> str:
-    return safe(str(finding))
+    return visible(str(finding))
 
 
 def _annotation(finding: Finding) -> str:

@@ -27,6 +27,9 @@ TEMPLATES = {
 }
 """Templates with what each is about; the files lie in the folder ``templates``."""
 DEFAULT = "compression"
+SCHEMA = "pathcalc-case.schema.json"
+MODELINE = "# yaml-language-server: $schema={}\n"
+"""What leads the YAML language server to a schema; the path is relative to the case."""
 FOLDER = Path(__file__).parent / "templates"
 
 
@@ -48,19 +51,27 @@ LIST = "\b\nTemplates:\n" + "\n".join(f"  {name:<13}{text}" for name, text in TE
     shell_complete=_names,
     help=f"What the case is like, by default {DEFAULT}; the list is below.",
 )
+@click.option("--schema/--no-schema", default=True, help="Whether the first line leads an editor to the schema.")
 @loudness
 @click.pass_obj
-def command(talk: Talk, name: str, like: str) -> None:
+def command(talk: Talk, name: str, like: str, schema: bool) -> None:
     """Write NAME.yaml: a commented case that can be solved as it is, to be changed into your own.
 
-    A file that is there already is never written over.
+    Its first line leads an editor with a YAML language server to the schema pathcalc-case.schema.json, in the case's
+    folder or one above it in the checkout; where there is none, it is written beside the case. A file that is there
+    already is never written over.
     """
     text = template(like)
     target = Path(name if name.lower().endswith((".yaml", ".yml")) else f"{name}.yaml")
     if not target.stem or name in ("", "-") or name.endswith("/"):
         raise UsageError(f"{name!r} cannot be the name of a case; give one such as booster")
     try:
-        _write_new(target, text)
+        place = _schema_for(target) if schema else None
+        lead = "" if place is None else MODELINE.format(Path(os.path.relpath(place, target.parent)).as_posix())
+        _write_new(target, lead + text)
+        if place is not None and not place.exists():
+            _write_schema(place)
+            talk.note(f"{place.as_posix()} written, for editors")
     except FileExistsError:
         raise UsageError(f"{target.as_posix()} is there already; choose another name") from None
     except (OSError, ValueError) as error:
@@ -76,6 +87,28 @@ def template(like: str) -> str:
         hint = f"did you mean {near[0]!r}? " if near else ""
         raise UsageError(f"no template {like!r}; {hint}there are {', '.join(TEMPLATES)}")
     return (FOLDER / f"{like}.yaml").read_text(encoding="utf-8")
+
+
+def _schema_for(target: Path) -> Path:
+    """The schema for editors: beside the case or in the nearest folder above it in its checkout; else to be beside."""
+    from pathcalc.case.files import find_root
+
+    folder = target.parent
+    root = find_root(folder) if folder.is_dir() else folder.resolve()
+    for above in (folder.resolve(), *folder.resolve().parents):
+        if (above / SCHEMA).is_file():
+            return above / SCHEMA
+        if above == root:
+            break
+    return folder / SCHEMA
+
+
+def _write_schema(place: Path) -> None:
+    from pathcalc.case.json_schema import case_json_schema
+    from pathcalc.cli.talk import json_text
+    from pathcalc.files import write_file
+
+    write_file(place, f"{json_text(case_json_schema())}\n".encode())
 
 
 def _write_new(target: Path, text: str) -> None:

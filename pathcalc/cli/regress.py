@@ -10,7 +10,7 @@ import click
 from pathcalc.cli.findings import FORMATS
 from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import root_option
-from pathcalc.cli.talk import Talk, loudness, safe
+from pathcalc.cli.talk import Talk, loudness, visible
 from pathcalc.errors import UsageError
 
 if TYPE_CHECKING:
@@ -86,7 +86,7 @@ def command(
         with watching(talk) as watch:
             result = regress(folder, options, watch)
     except StoringInterrupted as stopped:
-        names = ", ".join(safe(place.as_posix()) for place in stopped.written) or "none"
+        names = ", ".join(visible(place.as_posix()) for place in stopped.written) or "none"
         talk.note(f"stored before the interrupt: {names}; all others are as they were")
         raise
     shown(result, form, talk)

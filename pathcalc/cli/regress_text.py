@@ -6,7 +6,7 @@ import sys
 from typing import TYPE_CHECKING
 
 from pathcalc.cli.findings import rendered
-from pathcalc.cli.talk import Talk, json_text, safe, write, write_utf8
+from pathcalc.cli.talk import Talk, json_text, visible, write, write_utf8
 
 if TYPE_CHECKING:
     from pathcalc.errors import Finding
@@ -29,19 +29,19 @@ def shown(result: RunResult, form: str, talk: Talk) -> None:
         return
     for outcome in result.outcomes:
         for finding in _told(outcome, not talk.verbose):
-            write_utf8(safe(str(finding)))
+            write_utf8(visible(str(finding)))
         hidden = len(outcome.findings) - MOST_FINDINGS
         if hidden > 0 and not talk.verbose and outcome.status != "accepted":
-            write_utf8(safe(f"{outcome.file}: {hidden} more; --verbose tells all"))
+            write_utf8(visible(f"{outcome.file}: {hidden} more; --verbose tells all"))
         if talk.verbose and outcome.detail:
             talk.line(outcome.detail.rstrip())
         for note in outcome.notes:
-            talk.note(f"{outcome.file}: {note}")
+            talk.note(visible(f"{outcome.file}: {note}"))
     if not talk.quiet:
         _table(result, talk)
     sys.stdout.flush()
     for place in result.written:
-        talk.note(f"stored: {place.as_posix()}")
+        talk.note(visible(f"stored: {place.as_posix()}"))
 
 
 def write_utf8_if(text: str) -> None:
@@ -88,11 +88,11 @@ def _row(outcome: Outcome) -> list[str]:
     if outcome.stored_limits_missed and not outcome.code:
         status += ", limit missed as accepted"
     return [
-        safe(outcome.file),
+        visible(outcome.file),
         status,
         str(len(outcome.misses) or ""),
         largest,
-        "" if tight is None else safe(tight.quantity),
+        "" if tight is None else visible(tight.quantity),
         margin,
         "" if outcome.verdict is None else str(outcome.verdict.warnings or ""),
     ]

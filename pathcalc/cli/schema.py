@@ -9,12 +9,13 @@ from pathcalc.cli.talk import loudness, write_json
 
 
 @click.command("schema", short_help=COMMANDS["schema"])
+@click.argument("of", type=click.Choice(("case", "settings")), default="case", metavar="[case|settings]")
 @loudness
-def command() -> None:
-    """Print the JSON Schema of the case file.
+def command(of: str) -> None:
+    """Print the JSON Schema of the case file, or of the settings file of a library.
 
-    Editors that know JSON Schema complete and check cases with it: pathcalc schema > case.schema.json
+    Editors that know JSON Schema complete and check cases with it: pathcalc schema > pathcalc-case.schema.json
     """
-    from pathcalc.case.json_schema import case_json_schema
+    from pathcalc.case.json_schema import case_json_schema, settings_json_schema
 
-    write_json(case_json_schema())
+    write_json(case_json_schema() if of == "case" else settings_json_schema())

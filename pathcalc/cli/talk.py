@@ -20,6 +20,11 @@ def safe(text: str) -> str:
     return _CONTROL.sub(lambda found: f"\\x{ord(found[0]):02x}", text)
 
 
+def visible(text: str) -> str:
+    """Text from outside that is to stay on its line: line feeds and tabs are made visible, too."""
+    return safe(text).replace("\n", "\\x0a").replace("\t", "\\x09")
+
+
 def one_line(text: str) -> str:
     """The text on one line, at most 300 characters."""
     flat = " ".join(text.split())

@@ -8,7 +8,7 @@ import click
 
 from pathcalc.cli.group import COMMANDS
 from pathcalc.cli.inputs import root_option
-from pathcalc.cli.talk import Talk, json_text, loudness, safe, write_utf8
+from pathcalc.cli.talk import Talk, json_text, loudness, visible, write_utf8
 from pathcalc.errors import UsageError
 
 
@@ -36,9 +36,9 @@ def command(talk: Talk, folder: str, things: tuple[str, ...], form: str, root: s
         write_utf8(json_text([asdict(use) for use in chosen]))
     else:
         for use in chosen:
-            write_utf8(f"{use.kind} {safe(use.name)} ({len(use.cases)})")
+            write_utf8(f"{use.kind} {visible(use.name)} ({len(use.cases)})")
             for case in use.cases:
-                write_utf8(f"  {safe(case)}")
+                write_utf8(f"  {visible(case)}")
     for thing in things:
         if not only(every, thing):
             talk.note(f"no case below {folder} leans on {thing}")

@@ -12,6 +12,9 @@ from pathcalc.equilibrium import reasons
 from pathcalc.equilibrium.points import NONE, Points
 
 _ROUNDING = 1e-9
+SMALL = 1e-11
+"""Part of R T/v that the pressure of a cold liquid may be off by: its bulk modulus is some 30 R T/v, and its volume
+is known to some 1e-13 of itself."""
 
 
 def fenced(model: Model, points: Points) -> Points:
@@ -23,7 +26,8 @@ def fenced(model: Model, points: Points) -> Points:
     with np.errstate(invalid="ignore"):
         one = (points.reason == 0) & ~(points.x == points.x)
         high = one & (points.p > limits.p_max * (1.0 + _ROUNDING))
-        solid = one & ~high & (points.p > limits.melting_pressure(points.T) * (1.0 + _ROUNDING))
+        slack = SMALL * model.R * points.T / points.v
+        solid = one & ~high & (points.p > limits.melting_pressure(points.T) * (1.0 + _ROUNDING) + slack)
         mixed = np.zeros(points.T.size, dtype=np.bool_)
         if lines is not None:
             mixed = (points.reason == 0) & ((points.x == points.x) | ((points.p > lines[0]) & (points.p < lines[1])))

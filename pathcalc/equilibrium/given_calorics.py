@@ -35,6 +35,14 @@ _HIGHEST_Z = 2.0
 _APART = 1e-9
 _MISSED = 1e-7
 """A sign change of a scan that leaves more than this is a jump, not a state."""
+_CRITICAL = 1e-6
+_POLISHING = 24
+"""Steps: u hardly changes along an isentrope of a liquid near p = 0, where they only halve what is missing."""
+
+_STILL = 1e-12
+_REACHED = 3e-12
+"""Part of h or u that equations whose terms cancel (R-22, R-123) scatter by."""
+
 _FIELDS = tuple(Saturation.__dataclass_fields__)
 
 
@@ -65,32 +73,40 @@ def flash_s(model: Model, s: Array, key: str, target: Array) -> Points:
     points = flash_p(model, np.exp(root.x), "s", s[at])
     draft.take(at, points)
     tried = at[points.ok]
-    settled = _polish(model, draft, tried, s, key, target)
     # a cold liquid hardly changes h or u with p: there the value itself decides
     miss = np.abs(_on_isentrope(model, points, key)[0] - target[at])
-    reached = points.ok & (root.ok | (miss <= 1e-12 * (np.abs(target[at]) + model.R * points.T)))
+    settled = _polish(model, draft, tried, s, key, target, miss[points.ok])
+    reached = points.ok & (root.ok | (miss <= _REACHED * (np.abs(target[at]) + model.R * points.T)))
     reached |= np.isin(at, settled)
     missed = at[~reached]
-    draft.reason[missed] = np.where(points.reason[~reached] == 0, reasons.TARGET_NOT_REACHED, points.reason[~reached])
+    why = np.where(points.reason == 0, reasons.TARGET_NOT_REACHED, points.reason)
+    if model.has_dome:
+        why[points.ok & (np.abs(points.T / model.T_c - 1.0) < _CRITICAL)] = reasons.NEAR_CRITICAL
+    draft.reason[missed] = why[~reached]
     return draft.finish(model)
 
 
-def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array) -> NDArray[np.intp]:
+def _polish(
+    model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str, target: Array, miss: Array
+) -> NDArray[np.intp]:
     """Newton steps in T and v on both values themselves: p is a poor measure of a liquid that hardly compresses.
 
-    Returns the lanes where they settled.
+    Returns the lanes where they settled. A trace of vapour is given up only for a liquid that meets both better than
+    ``miss``, what is missing of h or u with it.
 
     With X = h or u, det = (c_v/T) (∂X/∂v)_T − (∂p/∂T)_v (∂X/∂T)_v.
     """
     wet = draft.x[at] > _HARDLY_WET
-    at = at[~wet]
+    at, miss = at[~wet], miss[~wet]
     if at.size == 0 or model.residual.coexistence is None:
         return at[:0]
     barely = draft.x[at] == draft.x[at]
     T, v = draft.T[at], np.where(barely, draft.v_liquid[at], draft.v[at])
     wanted_s, wanted = s[at], target[at]
     with np.errstate(all="ignore"):
-        for _ in range(5):
+        settled, good = np.zeros(at.size, dtype=np.bool_), np.zeros(at.size, dtype=np.bool_)
+        least, T_best, v_best = np.full(at.size, np.inf), T, v
+        for _ in range(_POLISHING):
             t = thermal(model, T, v)
             S, S_T, S_v = quantity.of("s", t, T, v)
             X, X_T, X_v = quantity.of(key, t, T, v)
@@ -98,11 +114,21 @@ def _polish(model: Model, draft: Draft, at: NDArray[np.intp], s: Array, key: str
             dT = ((wanted_s - S) * X_v - S_v * (wanted - X)) / det
             dv = (S_T * (wanted - X) - X_T * (wanted_s - S)) / det
             near = (np.abs(dT) < 1e-3 * T) & (np.abs(dv) < 1e-3 * v)
-            T, v = np.where(near, T + dT, T), np.where(near, v + dv, v)
+            # what is left bounces at the rounding of u: the least of it counts
+            left = np.abs(wanted - X) + T * np.abs(wanted_s - S)
+            better = (left < least) & ~settled
+            least, T_best, v_best = (np.where(better, a, b) for a, b in ((left, least), (T, T_best), (v, v_best)))
+            good = np.where(better, (np.abs(dT) < 1e-7 * T) & (np.abs(dv) < 1e-6 * v), good)
+            go = near & ~settled
+            T, v = np.where(go, T + dT, T), np.where(go, v + dv, v)
+            settled |= ~near | ((np.abs(dT) < _STILL * T) & (np.abs(dv) < _STILL * v))
+            if settled.all():
+                break
+        T, v = T_best, v_best
         p = thermal(model, T, v).p
         p_s = np.zeros(at.size)
         p_s[barely] = saturation_at_T(model, T[barely]).p
-        good = near & (p > p_s) & (np.abs(dT) < 1e-7 * T) & (np.abs(dv) < 1e-6 * v)
+        good &= (p > p_s) & (~barely | (least < miss))
     here = at[good]
     draft.T[here], draft.v[here], draft.p[here] = T[good], v[good], p[good]
     for a in (draft.x, draft.v_liquid, draft.v_vapour):
@@ -164,6 +190,10 @@ def _by_volume(model: Model, pv: Array, least: float, most: float) -> Array:
     return np.asarray(np.sort(np.clip(np.concatenate(nodes), least, most), axis=0))
 
 
+def _some(points: Points, at: NDArray[np.intp]) -> Points:
+    return Points(**{name: getattr(points, name)[at] for name in Points.__dataclass_fields__})
+
+
 def _contracting(model: Model, pv: Array, u: Array) -> NDArray[np.bool_]:
     """Where liquid of this p v contracts on heating (water below 4 °C): p and v then have two temperatures."""
     line = model.residual.coexistence
@@ -216,6 +246,17 @@ def flash_uh(model: Model, u: Array, h: Array) -> Points:
     jumped = (found.reason[at] == 0) & ~(miss <= _MISSED * (np.abs(u[at]) + model.R * found.T[at]))
     draft.reason[at] = np.where((count == 0) | jumped, reasons.TARGET_NOT_REACHED, draft.reason[at])
     twice = count >= 2
+    limits = model.residual.limits
+    lines = None if limits is None else limits.dew_and_bubble(np.append(other.T, found.T[at]))
+    if lines is not None:
+        # a mixture treated as one component has no states inside the dome, nor next to it
+        T, q = np.append(other.T, found.T[at]), np.append(other.p, found.p[at])
+        wet = np.append(other.x, found.x[at])
+        barred = ((q > lines[0]) & (q < lines[1])) | (wet == wet) | ~(T > 0.0)
+        second, first_barred = ~barred[: at.size], barred[at.size :]
+        instead = np.flatnonzero(twice & first_barred & second)
+        draft.take(at[instead], _some(other, instead))
+        twice = twice & ~first_barred & second
     draft.reason[at[twice]] = reasons.TWO_SOLUTIONS
     if model.residual.coexistence is not None:
         once = at[count == 1]

@@ -14,7 +14,7 @@ from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.direct import at_pressure
 from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation
-from pathcalc.equilibrium.saturation import difference, ends, pressure_range, quality, saturation_at_p
+from pathcalc.equilibrium.saturation import beside_critical, difference, ends, pressure_range, quality, saturation_at_p
 from pathcalc.equilibrium.scan import scanned
 
 AT_SATURATION = 1e-9
@@ -301,17 +301,25 @@ def _single_phase(
         root = guarded_newton(at_volume if key == "v" else fun, x, lo, hi, args, unit=1.0 if logarithmic else None)
         T = np.clip(np.exp(root.x) if logarithmic else root.x, T_low, T_high)
         v = volume_on(model, T, q, b)
-    ok = root.ok
+    ok, blurred = root.ok, None
     if key == "v":
+        wanted = target[todo]
         with np.errstate(all="ignore"):
-            ok = ok & (np.abs(v / target[todo] - 1.0) < _ON_BRANCH)
-        v = target[todo].copy()
+            on_branch = np.abs(v / wanted - 1.0) < _ON_BRANCH
+            if model.has_dome:
+                # the volume of a pressure has lost its digits there
+                blurred = beside_critical(model, T, wanted)
+                on_branch |= blurred & (model.residual.pressure(T, wanted).p_v < 0.0)
+        ok = ok & on_branch
+        v = wanted.copy()
     middle = 0.5 * (T_low + T_high)
     failed = np.where(middle > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
     if not model.has_dome:
         with np.errstate(all="ignore"):
             dense = np.isnan(volume_on(model, T * (1.0 - 1e-6), q, b))
         failed = np.where(dense, reasons.NO_ROOT, failed)
+    if blurred is not None:
+        failed = np.where(blurred, reasons.NEAR_CRITICAL, failed)
     draft.put(todo, T, q, v, np.where(ok, 0, failed).astype(np.int16))
 
 

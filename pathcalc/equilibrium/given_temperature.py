@@ -13,14 +13,16 @@ from numpy.typing import NDArray
 from pathcalc.equations.contract import Array, Model
 from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
+from pathcalc.equilibrium.fence import SMALL
 from pathcalc.equilibrium.given_pressure import range_reason
 from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Points, Saturation
-from pathcalc.equilibrium.saturation import ends, quality, saturation_at_T
+from pathcalc.equilibrium.saturation import beside_critical, ends, quality, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _NODES = 80
 _BESIDE = 10.0 ** np.arange(-8.0, -1.4, 0.5)
+_ONE_STATE = 1e-9
 _P_LEAST = 1.0
 _P_MOST = 1e10
 _P_INVERSE_MOST = 1e-15
@@ -114,7 +116,10 @@ def _on_branch(
         reason = np.where((v > low) | (v > model.residual.v_min(t)), 0, reasons.NO_ROOT)
         with np.errstate(all="ignore"):
             state = thermal(model, t, v)
-        reason[(reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))] = reasons.NO_ROOT
+        lost = (reason == 0) & ~((state.p > 0.0) & (state.p_v < 0.0))
+        reason[lost] = reasons.NO_ROOT
+        if model.has_dome:
+            reason[lost & beside_critical(model, t, v)] = reasons.NEAR_CRITICAL
         draft.put(at, t, state.p, v, reason.astype(np.int16))
         return
     if scan and model.residual.coexistence is not None:
@@ -183,14 +188,20 @@ def _settle(
 ) -> None:
     """The states found by a scan; two, or one more than is known already, are a reason of their own."""
     with np.errstate(all="ignore"):
-        v = floor + np.exp(first.x)
-        p = thermal(model, T, v).p
-        p_second = thermal(model, T, floor + np.exp(second.x)).p
-    already = draft.reason[at] == 0
+        v, v_second = floor + np.exp(first.x), floor + np.exp(second.x)
+        p, p_second = thermal(model, T, v).p, thermal(model, T, v_second).p
+        v, p, p_second, count = _allowed(model, T, (v, p), (v_second, p_second), count)
+        already = draft.reason[at] == 0
+        if _without_mixtures(model):
+            already &= ~(draft.x[at] == draft.x[at])
+        # two on the same spot, or saturated liquid and the liquid just beside it: one state to rounding
+        count = np.where((count == 2) & (np.abs(v_second / v - 1.0) < _ONE_STATE), 1.0, count)
+        count = np.where(already & (np.abs(v / draft.v[at] - 1.0) < _ONE_STATE), 0.0, count)
     new = (count >= 1) & ~already
     reason = np.where(count >= 2, reasons.TWO_SOLUTIONS, 0)
     fresh = at[new]
     draft.put(fresh, T[new], p[new], v[new], reason[new].astype(np.int16))
+    draft.x[fresh] = draft.v_liquid[fresh] = draft.v_vapour[fresh] = np.nan
     draft.p_other[fresh] = np.where(count[new] >= 2, p_second[new], np.nan)
     draft.T_other[fresh] = np.where(count[new] >= 2, T[new], np.nan)
     again = (count >= 1) & already
@@ -199,6 +210,25 @@ def _settle(
     draft.T_other[both], draft.p_other[both] = T[again], p[again]
     none = at[(count == 0) & (draft.reason[at] == reasons.NOT_CONVERGED)]
     draft.reason[none] = reasons.TARGET_NOT_REACHED
+
+
+def _without_mixtures(model: Model) -> bool:
+    """Whether the equation is of a mixture treated as one component: it has no states inside the dome."""
+    limits = model.residual.limits
+    return limits is not None and limits.dew_and_bubble(np.array([model.T_c])) is not None
+
+
+def _allowed(
+    model: Model, T: Array, one: tuple[Array, Array], two: tuple[Array, Array], count: Array
+) -> tuple[Array, Array, Array, Array]:
+    """v, p of the first state and p of the second, without those between dew and bubble lines; their number."""
+    limits = model.residual.limits
+    lines = None if limits is None else limits.dew_and_bubble(T)
+    if lines is None:
+        return (*one, two[1], count)
+    first, second = (~((p > lines[0]) & (p < lines[1])) for _, p in (one, two))
+    v, p = (np.where(first, a, b) for a, b in zip(one, two, strict=True))
+    return v, p, two[1], (first & (count >= 1)) + 1.0 * (second & (count >= 2))
 
 
 def _scan_isotherm(
@@ -210,6 +240,7 @@ def _scan_isotherm(
     melting = limits.melting_pressure(T)
     # a little beyond, so that a state on the very end is not lost
     most = np.where(melting > 0.0, np.minimum(melting, model.p_max), model.p_max) * (1.0 + 1e-6)
+    most += SMALL * model.R * T / model.residual.v_min(T)
     line = model.residual.coexistence
     least = _P_LEAST if line is None else min(_P_LEAST, 1e-3 * line.p_low)
     with np.errstate(all="ignore"):
@@ -217,6 +248,9 @@ def _scan_isotherm(
         assert densest is not None
         far = np.minimum(high, model.R * T / least)
         near = np.where(densest[0] > low, densest[0], low)
+        if line is not None:
+            # next to the triple point the melting line may begin below saturation: no liquid but the saturated one
+            near = np.where((low < model.v_c) & (most < line.p_at(T)), far, near)
         near = np.log(np.minimum(near, far))
         share = np.linspace(0.0, 1.0, _NODES)[:, None]
         wide = np.log(far) - near

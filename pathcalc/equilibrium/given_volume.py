@@ -15,7 +15,7 @@ from pathcalc.equations.properties import thermal
 from pathcalc.equilibrium import quantity, reasons
 from pathcalc.equilibrium.iterate import Root, guarded_newton
 from pathcalc.equilibrium.points import Draft, Mask, Points, Saturation, mix
-from pathcalc.equilibrium.saturation import nearest_T, quality, saturation_at_T
+from pathcalc.equilibrium.saturation import beside_critical, nearest_T, quality, saturation_at_T
 from pathcalc.equilibrium.scan import scanned
 
 _ROUNDING = 1e-11
@@ -99,7 +99,8 @@ def _through_dome(model: Model, at: NDArray[np.intp], v: Array, wanted: Array, k
         t = thermal(model, T, v)
         sound = (t.p > 0.0) & (t.p_v < 0.0)
     failed = np.where(0.5 * (T_low + T_high) > T, reasons.BELOW_TRIPLE_POINT, reasons.ABOVE_RANGE)
-    reason = np.where(root.ok, np.where(sound | inside, 0, reasons.NO_ROOT), failed).astype(np.int16)
+    lost = np.where(beside_critical(model, T, v), reasons.NEAR_CRITICAL, reasons.NO_ROOT)
+    reason = np.where(root.ok, np.where(sound | inside, 0, lost), failed).astype(np.int16)
     draft.put(at, T, t.p, v, reason)
     both = np.flatnonzero(inside)
     if both.size:

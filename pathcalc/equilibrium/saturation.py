@@ -19,6 +19,7 @@ from pathcalc.equilibrium.points import Codes, Mask, Saturation
 __all__ = [
     "NEAR_CRITICAL",
     "Saturation",
+    "beside_critical",
     "difference",
     "ends",
     "nearest_T",
@@ -33,6 +34,10 @@ NEAR_CRITICAL = 1e-8
 
 _STEPS = 120
 _TOLERANCE = 1e-8
+_HARDLY_ABOVE = 1e-6
+_AROUND = 0.1
+_SCATTER = 3e-14
+"""Part of a saturated energy or entropy that rounding of the equation's sums may take."""
 
 
 def _lanes(value: Array | float) -> Array:
@@ -129,16 +134,25 @@ def nearest_T(model: Model) -> float:
     return model.T_c * (1.0 - 1.5 * NEAR_CRITICAL) if line is None else line.T_top
 
 
+def beside_critical(model: Model, T: Array, v: Array) -> Mask:
+    """Where ``T`` (K), ``v`` (m3/mol) lie so close to the critical point that p hardly depends on v."""
+    with np.errstate(invalid="ignore"):
+        warm = (nearest_T(model) < T) & (model.T_c * (1.0 + _HARDLY_ABOVE) > T)
+        return np.asarray(warm & (np.abs(v - model.v_c) < _AROUND * model.v_c))
+
+
 def quality(key: str, wanted: Array, liquid: Array, vapour: Array) -> Array:
     """x from the values of both phases; one within rounding of an end is that end.
 
-    Energies and entropies are rounded to the larger of both, as they count from anywhere; a volume to itself.
+    Energies and entropies are rounded to the larger of both, as they count from anywhere; a volume to itself. Those
+    of the equation scatter by some of their last digits: a liquid that hardly evaporates would be full of vapour.
     """
-    size_l, size_v = np.abs(liquid), np.abs(vapour)
+    size_l, size_v, digits = np.abs(liquid), np.abs(vapour), 4e-15
     if key != "v":
         size_l = size_v = np.maximum(size_l, size_v)
+        digits = _SCATTER
     x = (wanted - liquid) / (vapour - liquid)
-    at_liquid, at_vapour = np.abs(wanted - liquid) <= 4e-15 * size_l, np.abs(wanted - vapour) <= 4e-15 * size_v
+    at_liquid, at_vapour = np.abs(wanted - liquid) <= digits * size_l, np.abs(wanted - vapour) <= digits * size_v
     return np.asarray(np.where(at_liquid, 0.0, np.where(at_vapour, 1.0, x)))
 
 

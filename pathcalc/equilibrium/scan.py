@@ -11,6 +11,7 @@ from pathcalc.equilibrium.iterate import Root, bracketed
 
 _TURNS = 12
 _HALVINGS = 50
+_MOST_TURNS = 3
 
 
 def scanned(
@@ -19,7 +20,7 @@ def scanned(
     """Every sign change of ``fun(x, *args)`` between the ``nodes`` (k, n): first root, second root, their
     number.
 
-    A pair of roots between two neighbouring nodes shows as a turning point: the one nearest to zero is
+    A pair of roots between two neighbouring nodes shows as a turning point: those nearest to zero are
     sought by parabolas and added to the nodes. Where ``fun`` is NaN at an end of the nodes, the edge of its
     domain is found by halving and taken for the end.
     """
@@ -36,8 +37,8 @@ def scanned(
             if at.size:
                 i, o = inner[at], inner[at] + step
                 nodes[o, at], f[o, at] = _edge(fun, nodes[i, at], nodes[o, at], f[i, at], tuple(a[at] for a in args))
-        nodes, f = _with_turning_point(fun, nodes, f, args)
-        change = (f[:-1] * f[1:] < 0.0) | ((f[:-1] == 0.0) & (f[1:] == f[1:]))
+        nodes, f = _with_turning_points(fun, nodes, f, args)
+        change = (f[:-1] * f[1:] < 0.0) | ((f[:-1] == 0.0) & (f[1:] == f[1:]) & (nodes[:-1] < nodes[1:]))
         change[-1] |= f[-1] == 0.0
     count = np.add.reduce(change, axis=0, dtype=np.intp)
     roots = []
@@ -66,20 +67,24 @@ def _edge(
     return inside, f
 
 
-def _with_turning_point(
+def _with_turning_points(
     fun: Callable[..., Array], nodes: Array, f: Array, args: tuple[Array, ...]
 ) -> tuple[Array, Array]:
-    """One node more a lane: the turning point towards zero where there is one, else the last node again."""
+    """Some nodes more a lane: the turning points towards zero where there are any, else the last node again."""
     size = np.abs(f)
     turns = (size[1:-1] <= size[:-2]) & (size[1:-1] <= size[2:])
     turns &= (f[1:-1] * f[:-2] > 0.0) & (f[1:-1] * f[2:] > 0.0)
-    at = np.flatnonzero(turns.any(axis=0))
-    extra_x, extra_f = nodes[-1:].copy(), f[-1:].copy()
-    if at.size:
-        least = 1 + np.argmin(np.where(turns[:, at], size[1:-1, at], np.inf), axis=0)
-        x = np.stack([nodes[least + d, at] for d in (-1, 0, 1)])
-        y = np.stack([f[least + d, at] for d in (-1, 0, 1)])
-        extra_x[0, at], extra_f[0, at] = _turning_point(fun, x, y, tuple(a[at] for a in args))
+    height = np.where(turns, size[1:-1], np.inf)
+    extra_x, extra_f = nodes[-1:].repeat(_MOST_TURNS, axis=0), f[-1:].repeat(_MOST_TURNS, axis=0)
+    for more_x, more_f in zip(extra_x, extra_f, strict=True):
+        at = np.flatnonzero(np.isfinite(height).any(axis=0))
+        if at.size == 0:
+            break
+        inner = np.argmin(height[:, at], axis=0)
+        height[inner, at] = np.inf
+        x = np.stack([nodes[inner + 1 + d, at] for d in (-1, 0, 1)])
+        y = np.stack([f[inner + 1 + d, at] for d in (-1, 0, 1)])
+        more_x[at], more_f[at] = _turning_point(fun, x, y, tuple(a[at] for a in args))
     nodes, f = np.concatenate([nodes, extra_x]), np.concatenate([f, extra_f])
     order = np.argsort(nodes, axis=0, kind="stable")
     return np.take_along_axis(nodes, order, 0), np.take_along_axis(f, order, 0)

@@ -96,7 +96,7 @@ def parse_results(data: bytes) -> dict[str, Any]:
         if line.startswith(("<<<<<<< ", ">>>>>>> ")):
             raise ResultsError(f"holds the marks of an unfinished merge, line {number}")
     try:
-        found = json.loads(text, object_pairs_hook=_pairs, parse_constant=_constant)
+        found = json.loads(text, object_pairs_hook=_pairs, parse_constant=_constant, parse_float=_finite)
     except json.JSONDecodeError as error:
         raise ResultsError(f"is not JSON, line {error.lineno}, column {error.colno}: {error.msg}") from None
     except RecursionError:
@@ -119,6 +119,13 @@ def _pairs(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
 
 def _constant(name: str) -> Any:
     raise ValueError(f"holds {name}, which is no number")
+
+
+def _finite(text: str) -> float:
+    number = float(text)
+    if number in (float("inf"), float("-inf")):
+        raise ValueError(f"holds {text}, which is too large a number")
+    return number
 
 
 NUMBERS = ("T", "p", "v", "u", "h", "s", "a", "g")

@@ -8,6 +8,7 @@ import queue
 import signal
 import sys
 import threading
+import time
 from typing import IO, Any
 
 READY: dict[str, Any] = {"ready": True}
@@ -25,8 +26,11 @@ def main() -> None:
     _import_what_solving_needs()
     _answer(answers, READY)
     while True:
-        outcome = work(Job(**jobs.get()))
-        _answer(answers, {"outcome": outcome.to_dict(), "memory": _memory()})
+        job = jobs.get()
+        began = time.process_time()
+        outcome = work(Job(**job))
+        used = {"memory": _memory(), "processor": time.process_time() - began}
+        _answer(answers, {"outcome": outcome.to_dict(), **used})
 
 
 def _listen(source: IO[bytes], jobs: queue.Queue[dict[str, Any]]) -> None:

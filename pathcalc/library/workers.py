@@ -40,6 +40,8 @@ class Watch:
     note: Callable[[str], None] = lambda text: None
     memory: list[float] = field(default_factory=list)
     """Most memory the answering worker had held, MB, an entry an answer."""
+    processor: list[float] = field(default_factory=list)
+    """Processor time of every answer, s."""
 
 
 class Worker:
@@ -210,6 +212,7 @@ class _Run:
         if number is None or worker.over_time:
             return 0
         self.watch.memory.append(message["memory"])
+        self.watch.processor.append(message["processor"])
         self._settle(number, Outcome.from_dict(message["outcome"]))
         return 1
 

@@ -29,6 +29,7 @@ def compared_addresses(solution: Solution) -> list[str]:
         f"{name}.{key}"
         for name in solution.legs
         for key in ("T", "p", "v", "x", "heat", "work", "delta.s", "delta.g", "entropy_generated")
+        if key != "x" or solution.states[name].x == solution.states[name].x
     ]
     if solution.totals.work is not None:
         addresses += ["totals.heat", "totals.work", "totals.exergy_destroyed"]

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from importlib.metadata import version
+from functools import cache
 from typing import TYPE_CHECKING, Any
 
 from pathcalc import __version__
@@ -22,6 +22,14 @@ def plain(value: Any) -> Any:
     return number if math.isfinite(number) else None
 
 
+@cache
+def version_of(name: str) -> str:
+    """Version of an installed library; looked up once a process, because it costs some milliseconds."""
+    from importlib.metadata import version
+
+    return version(name)
+
+
 def as_dict(solution: Solution) -> dict[str, Any]:
     """Everything of contract 6."""
     case, path = solution.case, solution.path
@@ -33,7 +41,7 @@ def as_dict(solution: Solution) -> dict[str, Any]:
     return {
         "pathcalc": 1,
         "case": {"id": case.id, "title": case.title, "sha256": case.sha256},
-        "software": {"pathcalc": __version__, **{name: version(name) for name in ("numpy", "scipy")}},
+        "software": {"pathcalc": __version__, **{name: version_of(name) for name in ("numpy", "scipy")}},
         "fluid": {
             "substance": path.card.name,
             "equation": path.model.equation,

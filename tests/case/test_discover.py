@@ -36,4 +36,7 @@ def test_a_file_is_itself(tmp_path: Path) -> None:
 
 def test_a_case_with_a_fault_is_still_a_case(tmp_path: Path) -> None:
     (tmp_path / "a.yaml").write_text("pathcalc: 1\nstart: {T: [\n")
-    assert len(find_cases(tmp_path)) == 1
+    (tmp_path / "b.yaml").write_bytes(b"# a remark\n---\n'pathcalc': 1\ntitle: \x00\n")
+    (tmp_path / "c.yaml").write_text("name: \x01\npathcalc: 1\n")
+    (tmp_path / "d.yaml").write_text("pathcalc: 1\n#" + "x" * 3_000_000)
+    assert [p.name for p in find_cases(tmp_path)] == ["a.yaml", "b.yaml", "d.yaml"]

@@ -9,11 +9,11 @@ import jsonschema
 import pytest
 import yaml
 
-from pathcalc.case.json_schema import case_json_schema
+from pathcalc.case.json_schema import case_json_schema, settings_json_schema
 
 HERE = Path(__file__).parent
 SCHEMA = case_json_schema()
-VALIDATOR = jsonschema.Draft202012Validator(SCHEMA)
+VALIDATOR = jsonschema.Draft7Validator(SCHEMA)
 
 
 class CoreLoader(yaml.SafeLoader):
@@ -32,7 +32,7 @@ def parsed(file: Path) -> Any:
 
 
 def test_the_schema_is_a_schema() -> None:
-    jsonschema.Draft202012Validator.check_schema(SCHEMA)
+    jsonschema.Draft7Validator.check_schema(SCHEMA)
 
 
 @pytest.mark.parametrize("file", sorted((HERE / "accepted").glob("*.yaml")), ids=lambda f: f.stem)
@@ -68,17 +68,59 @@ def nodes(schema: Any) -> list[dict[str, Any]]:
     return [n for v in schema for n in nodes(v)] if isinstance(schema, list) else []
 
 
-def test_every_key_is_described_and_has_an_example() -> None:
-    models = [SCHEMA] + [d for name, d in SCHEMA["$defs"].items() if not name.startswith(("quantity--", "text--"))]
-    for model in models:
-        for key, prop in model.get("properties", {}).items():
-            plain = key in ("name", "path", "to", "legs") or "examples" in prop
-            assert plain, (model.get("title"), key)
-            described = "description" in prop or "$ref" in prop
-            assert described, key
+def keys(schema: Any) -> list[tuple[str, dict[str, Any]]]:
+    """Every key of every mapping, in definitions and in what they hold."""
+    found = []
+    for node in nodes(schema):
+        properties = node.get("properties")
+        if isinstance(properties, dict) and "const" not in str(node.get("if", properties)):
+            found += [(key, prop) for key, prop in properties.items() if isinstance(prop, dict)]
+    return found
+
+
+@pytest.mark.parametrize("schema", [SCHEMA, settings_json_schema()], ids=["case", "settings"])
+def test_every_key_is_described_and_has_an_example(schema: dict[str, Any]) -> None:
+    described = [(key, prop) for key, prop in keys(schema) if "const" not in prop or "description" in prop]
+    assert len(described) > 15
+    for key, prop in described:
+        assert prop.get("description"), (key, prop)
+        assert prop.get("examples"), (key, prop)
+
+
+def test_examples_are_valid() -> None:
+    """Where a key stands in a definition, its own example is what it allows."""
+    for name, definition in SCHEMA["definitions"].items():
+        for key, prop in definition.get("properties", {}).items():
+            whole = {**prop, "definitions": SCHEMA["definitions"]}
+            for example in prop["examples"]:
+                errors = [e.message for e in jsonschema.Draft7Validator(whole).iter_errors(example)]
+                assert errors == [], (name, key, example)
 
 
 def test_every_reference_leads_somewhere() -> None:
     references = {n["$ref"] for n in nodes(SCHEMA) if isinstance(n.get("$ref"), str)}
     assert references
-    assert {r.removeprefix("#/$defs/") for r in references} <= SCHEMA["$defs"].keys()
+    assert {r.removeprefix("#/definitions/") for r in references} <= SCHEMA["definitions"].keys()
+
+
+def test_nothing_stands_beside_a_reference() -> None:
+    """Draft 7, section 8.3: all other keys of an object with $ref are ignored."""
+    assert [n for n in nodes(SCHEMA) if isinstance(n.get("$ref"), str) and len(n) > 1] == []
+    assert SCHEMA["$schema"] == "http://json-schema.org/draft-07/schema#"
+
+
+def test_substances_and_paths_are_proposed() -> None:
+    from pathcalc.case.leg_registry import leg_models
+    from pathcalc.substances import names
+
+    (proposed, _) = SCHEMA["definitions"]["fluid"]["properties"]["substance"]["anyOf"]
+    assert proposed["enum"] == sorted(names())
+    assert SCHEMA["definitions"]["legs"]["items"]["properties"]["path"]["enum"] == list(leg_models())
+
+
+def test_a_leg_is_held_to_its_own_keys() -> None:
+    """One message about the one kind of leg that was meant, not one a kind."""
+    case = yaml.safe_load((HERE / "accepted" / "whole.yaml").read_text(encoding="utf-8"))
+    case["legs"][0]["colour"] = "red"
+    found = [e.message for e in VALIDATOR.iter_errors(case) if "colour" in e.message]
+    assert len(found) == 1

@@ -35,7 +35,7 @@ def test_help_imports_nothing_heavy(args: list[str]) -> None:
 
 def test_commands_are_those_of_their_modules() -> None:
     for name, text in COMMANDS.items():
-        command = importlib.import_module(f"pathcalc.cli.{name}").command
+        command = importlib.import_module(f"pathcalc.cli.{name.replace('-', '_')}").command
         assert isinstance(command, click.Command)
         assert command.name == name
         assert command.get_short_help_str(80) == text

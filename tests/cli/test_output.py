@@ -246,7 +246,7 @@ def test_schema_is_the_schema_and_accepts_a_case(run: Run) -> None:
     import yaml
 
     schema = json.loads(run("schema").stdout)
-    jsonschema.Draft202012Validator.check_schema(schema)
-    validator = jsonschema.Draft202012Validator(schema)
+    jsonschema.Draft7Validator.check_schema(schema)
+    validator = jsonschema.Draft7Validator(schema)
     assert validator.is_valid(yaml.safe_load(GOOD))
     assert not validator.is_valid(yaml.safe_load(GOOD.replace("limits:", "limit:")))

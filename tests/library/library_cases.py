@@ -87,3 +87,29 @@ def as_json(done: subprocess.CompletedProcess[str]) -> Any:
 def status_of(done: subprocess.CompletedProcess[str]) -> dict[str, str]:
     """Status of every case of a run with ``--format json``, by the name of its file."""
     return {Path(row["file"]).name: row["status"] for row in as_json(done)["cases"]}
+
+
+def slow(steps: int) -> str:
+    """A case that takes a second for every hundred steps or so."""
+    head = REAL[: REAL.index("legs:")].replace("include: shared/site.yaml\n", "")
+    leg = "{name: step, path: throttling, to: {p: {ratio: 0.999}}}"
+    return f"{head}legs:\n  - repeat: {steps}\n    legs:\n      - {leg}\n"
+
+
+def children(pid: int) -> list[int]:
+    """Processes that a process has started."""
+    found = []
+    for task in Path(f"/proc/{pid}/task").glob("*/children"):
+        try:
+            found += [int(word) for word in task.read_text().split()]
+        except OSError:
+            continue
+    return found
+
+
+def alive(pid: int) -> bool:
+    """Is a process there and not only waiting to be collected."""
+    try:
+        return Path(f"/proc/{pid}/stat").read_text().rpartition(")")[2].split()[0] != "Z"
+    except OSError:
+        return False

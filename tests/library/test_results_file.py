@@ -71,6 +71,7 @@ DAMAGED = {
     "newer": (b'{"pathcalc": 2}', "of version 2"),
     "lacking": (b'{"pathcalc": 1}', "lacks the key 'case'"),
     "nan": (b'{"pathcalc": NaN}', "holds NaN"),
+    "infinite": (b'{"pathcalc": 1e999}', "too large a number"),
     "double": (b'{"pathcalc": 1, "pathcalc": 1}', "twice"),
     "deep": (b"[" * 100_000, "nested too deep"),
     "merge": (b'{\n<<<<<<< HEAD\n"pathcalc": 1\n', "unfinished merge, line 2"),
