@@ -46,7 +46,7 @@ def command(
     called as the case's id, the folders of the id kept. -o alone writes html,md.
     """
     reports = Reports.asked(formats, output)
-    inputs = gather(paths, talk)
+    inputs = gather(paths, talk, root)
     codes = Solving(talk, root, as_json, reports).all(inputs)
     if inputs.many:
         counts = [f"{codes.count(code)} {text}" for code, text in OUTCOMES.items() if code in codes]
