@@ -17,6 +17,7 @@ from pathcalc.quantities.units import spellings
 
 _LEG = {"name": "first stage", "path": "adiabatic", "to": {"p": "4.5 barg"}, "efficiency": 0.76}
 _UNIT_WORDS = {
+    "power": "power",
     "T": "temperatures", "p": "pressures; a gauge unit shows gauge pressures", "energy": "energies", "mass": "masses",
     "time": "times", "volume": "volumes", "amount": "amounts of substance",
 }  # fmt: skip

@@ -32,7 +32,7 @@ def command(talk: Talk, paths: tuple[str, ...], form: str, upgrade: bool, root: 
     Each finding is a line of standard output, file:line:column: error: message (code), or an item of a JSON list,
     or an annotation of a workflow.
     """
-    inputs = gather(paths, talk)
+    inputs = gather(paths, talk, root)
     code, valid = inputs.code, 0
     findings: list[Finding] = []
     for item in inputs.items:

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING, Any, TypeVar
 import click
 
 from pathcalc.cli.run import report_error
-from pathcalc.cli.talk import Talk
+from pathcalc.cli.talk import Talk, visible
 from pathcalc.errors import UsageError
 
 if TYPE_CHECKING:
@@ -70,9 +70,12 @@ class Inputs:
     """Exit code of the PATHs that lead to no case."""
 
 
-def gather(paths: Sequence[str], talk: Talk) -> Inputs:
-    """The cases of all PATHs, each once, in the order given; a PATH without any is told and counted as wrong usage."""
-    from pathcalc.case import find_cases
+def gather(paths: Sequence[str], talk: Talk, root: str | None = None) -> Inputs:
+    """The cases of all PATHs, each once, in the order given; a PATH without any is told and counted as wrong usage.
+
+    Links in a folder that lead out of the root are not followed, and each is told and counted as such, too.
+    """
+    from pathcalc.library.discovery import discover
 
     found: dict[object, Input] = {}
     code, many = 0, len(paths) > 1
@@ -83,7 +86,12 @@ def gather(paths: Sequence[str], talk: Talk) -> Inputs:
         folder = Path(path).is_dir()
         many = many or folder
         try:
-            files = find_cases(path)
+            found_here = discover(path, root, results=False)
+            files = found_here.cases
+            for outcome in found_here.outcomes:
+                code = max(code, outcome.code)
+                for finding in outcome.findings:
+                    talk.line(visible(str(finding)))
             if folder and not files:
                 raise UsageError(f"{path}: no case in this folder (*.yaml that begin with the key pathcalc)")
         except UsageError as error:

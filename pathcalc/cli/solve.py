@@ -62,7 +62,7 @@ def command(
     """
     reports = Reports.asked(formats, output, template, paper)
     reports.words = asked_words(words, reports, talk)
-    inputs = gather(paths, talk)
+    inputs = gather(paths, talk, root)
     if since is not None and (inputs.many or not reports.formats):
         raise UsageError("--since is of the report of one case; name one, and add --report or -o")
     codes = Solving(talk, root, as_json, reports, since).all(inputs)

@@ -26,11 +26,11 @@ class Found:
     outcomes: tuple[Outcome, ...]
 
 
-def discover(path: str, root: str | None = None) -> Found:
+def discover(path: str, root: str | None = None, *, results: bool = True) -> Found:
     """Everything below a folder, or the one case that ``path`` is. Raises UsageError where nothing is there.
 
     Links are followed as far as they stay under the root; what leads out of it is told and left out, and a folder
-    reached twice is entered once.
+    reached twice is entered once. ``results``: whether to look for stored results without a case.
     """
     top = Path(path)
     if not top.exists():
@@ -64,7 +64,7 @@ def discover(path: str, root: str | None = None) -> Found:
             if name.endswith(CASE) and file.is_file() and begins_as_case(file):
                 if _stays(file, fence, outcomes):
                     cases.append(file)
-            elif name.endswith(ENDING):
+            elif results and name.endswith(ENDING):
                 outcomes += _orphan(file, names)
     cases.sort(key=lambda p: p.relative_to(top).parts)
     return Found(top, fence, tuple(cases), tuple(outcomes))

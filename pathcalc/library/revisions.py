@@ -64,7 +64,10 @@ def _kind(top: Path, commit: str, path: str) -> str | None:
 
 
 def _environment() -> dict[str, str]:
-    return {**os.environ, "GIT_OPTIONAL_LOCKS": "0", "LC_ALL": "C", "GIT_NO_LAZY_FETCH": "1"}
+    """Without what a hook sets, which would point at another checkout than the one around the current folder."""
+    set_by_hooks = ("GIT_DIR", "GIT_WORK_TREE", "GIT_INDEX_FILE", "GIT_PREFIX", "GIT_COMMON_DIR")
+    kept = {name: value for name, value in os.environ.items() if name not in set_by_hooks}
+    return {**kept, "GIT_OPTIONAL_LOCKS": "0", "LC_ALL": "C", "GIT_NO_LAZY_FETCH": "1"}
 
 
 def _run(folder: Path, *arguments: str) -> subprocess.CompletedProcess[bytes]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import os
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 from functools import cache
 from pathlib import Path
@@ -194,8 +194,3 @@ def _settings_finder(found: Found) -> Callable[[Path], str | None]:
 def _top_settings(found: Found) -> Settings:
     file = find_settings(found.top if found.top.is_dir() else found.top.parent, found.root)
     return Settings() if file is None else read_settings(file)
-
-
-def chosen_cases(path: str, names: Sequence[str], root: str | None = None) -> tuple[Path, ...]:
-    """The cases below a path, all or those that are named."""
-    return choose(discover(path, root), tuple(names)).cases

@@ -53,7 +53,7 @@ class Worker:
         self.deadline = time.monotonic() + START_LIMIT
         self.over_time = False
         self._errors = tempfile.TemporaryFile()  # noqa: SIM115 (lives as long as the process does)
-        path = json.dumps([os.path.abspath(p) if p else os.getcwd() for p in sys.path])
+        path = json.dumps([os.path.abspath(p) if not p or os.path.exists(p) else p for p in sys.path])
         environment = {**os.environ, **{name: os.environ.get(name, "1") for name in ONE_THREAD}}
         self.process = subprocess.Popen(
             [sys.executable, "-P", "-X", "faulthandler", "-c", _CODE, path],
@@ -118,6 +118,7 @@ def run_jobs(jobs: Sequence[Job], workers: int, time_limit: float, watch: Watch 
     Raises WorkersError where workers cannot be started.
     """
     run = _Run(jobs, time_limit, watch or Watch())
+    run.watch.done(0, len(jobs))
     try:
         run.go(range(len(jobs)), max(1, min(workers, len(jobs))))
         for number in run.crashed:

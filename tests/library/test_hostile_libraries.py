@@ -99,6 +99,9 @@ def test_links(tmp_path: Path, here: Here) -> None:
         "up.yaml": ["include-outside"],
     }
     assert not list(outside.glob("*.json"))
+    checked = here("check", ".", cwd=inside, code=3)
+    assert "away:1:1: error: this link leads out of the root folder and is not followed" in checked.stderr
+    assert "1 of 5 cases valid" in checked.stderr
 
 
 def test_accepting_writes_over_a_link_and_not_through_it(tmp_path: Path, here: Here) -> None:
