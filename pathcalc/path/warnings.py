@@ -9,6 +9,7 @@ full-of-liquid. Temperatures and pressures are told in the units of the case.
 from __future__ import annotations
 
 import itertools
+from collections.abc import Mapping, Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -69,11 +70,11 @@ def all_warnings(solution: Solution) -> list[Warning_]:
                 meaning=meaning(row["name"]),
             )
             rows.append(_warning("check-failed", row["at"], text))
-    return _merged(rows)
+    return rows
 
 
-def _merged(rows: list[Warning_]) -> list[Warning_]:
-    """Equal warnings of several places as one."""
+def merged(rows: Sequence[Mapping[str, str]]) -> list[Warning_]:
+    """Equal warnings of several places as one, for a reader; the results keep a row a place."""
     places: dict[tuple[str, str], list[str]] = {}
     for row in rows:
         places.setdefault((row["code"], row["text"]), []).append(row["at"])

@@ -6,6 +6,7 @@ from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
+from pathcalc.path.warnings import merged
 from pathcalc.report import numbers, units
 from pathcalc.report.derivations import Derivations
 from pathcalc.report.view import Cell, Column, SolutionLike, Table
@@ -35,7 +36,7 @@ class Context:
         self.flow = self.result["boundary"] == "flow"
         self.states: list[dict[str, Any]] = self.result["states"]
         self.legs: list[dict[str, Any]] = self.result["legs"]
-        self.warnings: list[dict[str, Any]] = pick(solution, "warnings_in_words", self.result["warnings"])
+        self.warnings = merged(pick(solution, "warnings_in_words", self.result["warnings"]))
         self.ambient = float(pick(self.result["surroundings"], "p", P_AMBIENT))
         self.units = units.Units(
             pick(self.case, "units", {}),
@@ -185,8 +186,8 @@ def _family(kind: str) -> str:
 
 
 def _about(place: object, name: str) -> bool:
-    at = str(place or "")
-    return at == name or at.startswith(name + ".")
+    places = str(place or "").split(", ")
+    return any(at == name or at.startswith(name + ".") for at in places)
 
 
 def phase_words(phase: str | None) -> str:
