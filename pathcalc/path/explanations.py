@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 from pathcalc.path.closed_forms import closed_form_steps
 from pathcalc.path.cycle_steps import cycle_steps
+from pathcalc.path.exchange_steps import exchange_steps, formulas_of
 from pathcalc.path.hand_steps import hand_steps
 from pathcalc.path.maths import bracketed, number, rough, shown, signed, uncertain, with_unit
 from pathcalc.path.state_steps import exergy_steps, start_steps, state_steps
 from pathcalc.path.steps import Step
-from pathcalc.path.streams import share_numbers, stream_steps
+from pathcalc.path.streams import stream_steps
 from pathcalc.words import say, say_of
 
 if TYPE_CHECKING:
@@ -49,12 +49,6 @@ def explain_all(solution: Solution) -> dict[str, list[Step]]:
     return found
 
 
-def formulas_of(solved: SolvedLeg) -> dict[str, str]:
-    """The formulas that stand beside the solving of the leg's kind."""
-    formulas: dict[str, str] = import_module(type(solved.leg).__module__).FORMULAS
-    return formulas
-
-
 def _leg(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
     name = solved.leg.name
     return {
@@ -63,10 +57,7 @@ def _leg(solution: Solution, solved: SolvedLeg) -> dict[str, list[Step]]:
         f"{name}.delta.h": _energy(solution, solved, "h"),
         f"{name}.delta.a": _free_energy(solution, solved, "a", "u"),
         f"{name}.delta.g": _free_energy(solution, solved, "g", "h"),
-        f"{name}.work": _work(solution, solved),
-        f"{name}.heat": _heat(solution, solved),
-        f"{name}.entropy_generated": _generated(solution, solved),
-        f"{name}.exergy_destroyed": _destroyed(solution, solved),
+        **exchange_steps(solution, solved),
     }
 
 
@@ -189,166 +180,6 @@ def _free_energy(solution: Solution, solved: SolvedLeg, key: str, base: str) -> 
         )
         note = say("note.datum")
     return [Step(energy, formula, numbers, with_unit(delta[key], "energy"), note=note)]
-
-
-def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
-    flow = solution.path.setting.flow
-    leg, formulas = solution.legs[solved.leg.name], formulas_of(solved)
-    a, b = solution.states[solved.inlet_name], solution.states[solved.leg.name]
-    steps: list[Step] = []
-    model_M = solution.path.model.M
-    efficiency = getattr(solved.leg, "efficiency", None)
-    against = getattr(solved.leg, "against", None)
-    if solved.outcome.ideal is not None and efficiency is not None:
-        energy = "h" if flow else "u"
-        ideal = float(getattr(solved.outcome.ideal, energy)[0]) / model_M
-        change = ideal - a[energy]
-        eta = number(efficiency.value)
-        steps.append(
-            Step(
-                title=say("step.reversible-work"),
-                formula=rf"w_s={energy}_{{2s}}-{energy}_1\quad(s_{{2s}}=s_1)",
-                numbers=rf"{shown(ideal, 'energy')}-{bracketed(a[energy], 'energy')}",
-                result=with_unit(change, "energy"),
-            )
-        )
-        formula = r"w=\frac{w_s}{\eta}" if change > 0.0 else r"w=\eta\,w_s"
-        numbers = (
-            rf"\frac{{{shown(change, 'energy')}}}{{{eta}}}"
-            if change > 0.0
-            else rf"{eta}\times {bracketed(change, 'energy')}"
-        )
-        title = say("step.isentropic")
-    elif efficiency is not None:
-        ideal = float(solved.integrals["v_dp"][0]) / model_M
-        steps.append(
-            Step(
-                title=say("step.reversible-isothermal"),
-                formula=r"w_\mathrm{rev}=\int v\,\mathrm{d}p=\Delta g",
-                result=with_unit(ideal, "energy"),
-            )
-        )
-        eta = number(efficiency.value)
-        formula = r"w=\frac{w_\mathrm{rev}}{\eta}" if ideal > 0.0 else r"w=\eta\,w_\mathrm{rev}"
-        numbers = (
-            rf"\frac{{{shown(ideal, 'energy')}}}{{{eta}}}"
-            if ideal > 0.0
-            else rf"{eta}\times {bracketed(ideal, 'energy')}"
-        )
-        title = say("step.isothermal")
-    elif against is not None:
-        p_ext = against.value
-        title, formula = say("step.against"), r"w=-p_\mathrm{ext}\,(v_2-v_1)"
-        numbers = rf"-{shown(p_ext, 'p')}\times({number(b.v)}-{number(a.v)})"
-    else:
-        title = say("step.work")
-        formula = formulas["work_flow" if flow else "work_closed"]
-        numbers = ""
-        if solved.leg.path == "adiabatic":
-            energy = "h" if flow else "u"
-            numbers = rf"{shown(b[energy], 'energy')}-{bracketed(a[energy], 'energy')}"
-        elif solved.leg.path == "isobaric" and not flow:
-            numbers = rf"-{shown(a.p, 'p')}\times({number(b.v)}-{number(a.v)})"
-        elif solved.leg.path == "isochoric" and flow:
-            numbers = rf"{number(a.v)}\times({shown(b.p, 'p')}-{shown(a.p, 'p')})"
-    poly = getattr(solved.leg, "polytropic_efficiency", None)
-    if poly is not None:
-        sense = r"\frac{1}{\eta_p}" if b.p >= a.p else r"\eta_p"
-        steps.append(
-            Step(
-                title=say("step.polytropic"),
-                formula=rf"\mathrm{{d}}h={sense}\,v\,\mathrm{{d}}p",
-                numbers=rf"\eta_p={number(poly.value)}",
-                note=say("note.polytropic"),
-            )
-        )
-        push = float(solved.integrals["v_dp"][0]) / model_M
-        up = b.p >= a.p
-        steps.append(
-            Step(
-                title=say("step.polytropic-integral"),
-                formula=rf"w={sense}\int v\,\mathrm{{d}}p",
-                numbers=rf"\frac{{{shown(push, 'energy')}}}{{{number(poly.value)}}}"
-                if up
-                else rf"{number(poly.value)}\times {bracketed(push, 'energy')}",
-                result=with_unit(push / poly.value if up else push * poly.value, "energy"),
-            )
-        )
-    steps.append(Step(title, formula, numbers, with_unit(leg.work, "energy")))
-    return [*steps, *closed_form_steps(solution, solved, "work")]
-
-
-def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
-    flow, leg = solution.path.setting.flow, solution.legs[solved.leg.name]
-    if solved.leg.path in ("adiabatic", "throttling", "free-expansion", "separation", "mixing"):
-        return [Step(say("step.heat"), r"q=0", "", "0", note=say("note.adiabatic"))]
-    base = "h" if flow else "u"
-    steps = [
-        Step(
-            title=say("step.first-law.flow" if flow else "step.first-law.closed"),
-            formula=rf"q=\Delta {base}-w",
-            numbers=rf"{shown(leg['delta'][base], 'energy')}-{bracketed(leg.work, 'energy')}",
-            result=with_unit(leg.heat, "energy"),
-        )
-    ]
-    if solved.outcome.reversible:
-        integral = float(solved.integrals["T_ds"][0]) / solution.path.model.M
-        steps.append(
-            Step(
-                title=say("step.heat-integral"),
-                formula=r"q=\int T\,\mathrm{d}s",
-                result=with_unit(integral, "energy"),
-            )
-        )
-    return steps
-
-
-def _generated(solution: Solution, solved: SolvedLeg) -> list[Step]:
-    leg, formulas = solution.legs[solved.leg.name], formulas_of(solved)
-    reservoir = getattr(solved.leg, "reservoir", None)
-    if reservoir is not None:
-        return [
-            Step(
-                title=say("step.generated.reservoir"),
-                formula=r"s_\mathrm{gen}=\Delta s-\frac{q}{T_\mathrm{res}}",
-                numbers=rf"{shown(leg['delta']['s'], 'entropy')}"
-                rf"-\frac{{{shown(leg.heat, 'energy')}}}{{{number(reservoir.value)}}}",
-                result=with_unit(leg.entropy_generated, "entropy"),
-            )
-        ]
-    carried = leg["delta"]["s"] - leg.entropy_generated
-    if solved.outcome.other is not None:
-        return [
-            Step(
-                title=say("step.generated.streams"),
-                formula=r"s_\mathrm{gen}=\Delta s-r\,(s_o-s_1)",
-                numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{share_numbers(solution, solved, 's')}",
-                result=uncertain(leg.entropy_generated, abs(carried) * 1e-12, "entropy"),
-                note=say("note.other-stream"),
-            )
-        ]
-    return [
-        Step(
-            title=say("step.generated.own" if leg.heat else "step.generated"),
-            formula=rf"s_\mathrm{{gen}}=\Delta s-{formulas['boundary']}",
-            numbers=rf"{shown(leg['delta']['s'], 'entropy')}-{bracketed(carried, 'entropy')}",
-            result=with_unit(leg.entropy_generated, "entropy"),
-            note=say("note.reversible") if solved.outcome.reversible else "",
-        )
-    ]
-
-
-def _destroyed(solution: Solution, solved: SolvedLeg) -> list[Step]:
-    leg, T0 = solution.legs[solved.leg.name], float(solution.path.setting.T0[0])
-    return [
-        Step(
-            title=say("step.destroyed"),
-            formula=r"e_\mathrm{d}=T_0\,s_\mathrm{gen}",
-            numbers=rf"{number(T0)}\times {bracketed(leg.entropy_generated, 'entropy')}",
-            result=with_unit(leg.exergy_destroyed, "energy"),
-            source=say("source.gouy-stodola"),
-        )
-    ]
 
 
 def _totals(solution: Solution) -> dict[str, list[Step]]:

@@ -69,7 +69,7 @@ def catalogue(path: Path | str) -> Catalogue:
     return Catalogue(file.name, texts, len(known) - len(own))
 
 
-def placeholders(text: str) -> set[str]:
+def slots(text: str) -> set[str]:
     """The names in braces of a text. ValueError where a brace is left open, or holds more than a name."""
     found = set()
     for _, name, form, conversion in Formatter().parse(text):
@@ -101,11 +101,11 @@ def _faults(key: str, value: Any, known: Mapping[str, str]) -> Iterator[tuple[st
         yield f"{key} is empty; leave the key out to keep the English text", "empty-value"
         return
     try:
-        given = placeholders(value)
+        given = slots(value)
     except ValueError as error:
         yield f"{key}: {error}", "bad-braces"
         return
-    wanted = placeholders(known[key])
+    wanted = slots(known[key])
     for names, what in ((wanted - given, "lacks"), (given - wanted, "has, unlike the English text,")):
         if names:
             yield f"{key} {what} {', '.join(f'{{{name}}}' for name in sorted(names))}", "bad-braces"

@@ -12,7 +12,7 @@ import pytest
 
 import pathcalc
 from pathcalc.words import WORDS, Saying, english, say, say_of, using
-from pathcalc.words.catalogue import _ENGLISH, _flat, _plain, placeholders
+from pathcalc.words.catalogue import _ENGLISH, _flat, _plain, slots
 
 FOLDER = Path(pathcalc.__file__).parent
 ROOMS = ("equations", "path", "report", "cli")
@@ -65,7 +65,7 @@ def test_every_value_of_a_text_is_given() -> None:
         for key in whole:
             if key in WORDS and None not in given:
                 checked += 1
-                assert placeholders(WORDS[key]) <= given, (file, key)
+                assert slots(WORDS[key]) <= given, (file, key)
     assert checked > 200
 
 
@@ -127,7 +127,7 @@ def test_quick_reading_is_that_of_toml() -> None:
 
 def test_english_texts_hold_names_alone_in_braces() -> None:
     for text in WORDS.values():
-        placeholders(text)
+        slots(text)
 
 
 def test_saying_is_said_in_the_words_in_force(tmp_path: Path) -> None:
