@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import hashlib
 import os
+import stat
 from collections.abc import Mapping
-from functools import cache
+from functools import cache, lru_cache
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -89,11 +90,18 @@ def built_in(name: str) -> str | None:
 def file_digest(path: Path) -> str | None:
     """Digest of a file; None where it is no regular file that can be read, or is absurdly large."""
     try:
-        if not path.is_file() or path.stat().st_size > MAX_BYTES:
+        status = os.stat(path)
+        if not stat.S_ISREG(status.st_mode) or status.st_size > MAX_BYTES:
             return None
-        return sha256(path.read_bytes())
+        return _digest(str(path), status.st_mtime_ns, status.st_size, status.st_ino)
     except (OSError, ValueError):
         return None
+
+
+@lru_cache(maxsize=4096)
+def _digest(path: str, *_state: int) -> str:
+    """Digest of a file in one state: a basis that hundreds of cases include is read once."""
+    return sha256(Path(path).read_bytes())
 
 
 def changes(accepted: Mapping[str, Any], stored_software: Mapping[str, str], folder: Path) -> list[str]:
