@@ -8,7 +8,7 @@ from collections.abc import Iterator
 
 SIGNS = {
     "alpha": "α", "beta": "β", "gamma": "γ", "delta": "δ", "epsilon": "ε", "varepsilon": "ε", "zeta": "ζ",
-    "eta": "η", "theta": "θ", "kappa": "κ", "lambda": "λ", "mu": "μ", "nu": "ν", "pi": "π", "rho": "ρ",
+    "eta": "η", "theta": "θ", "kappa": "κ", "lambda": "λ", "mu": "μ", "nu": "ν", "pi": "π", "rho": "ρ", "xi": "ξ",
     "sigma": "σ", "tau": "τ", "phi": "φ", "varphi": "φ", "chi": "χ", "psi": "ψ", "omega": "ω",
     "Delta": "Δ", "Gamma": "Γ", "Sigma": "Σ", "Phi": "Φ", "Psi": "Ψ", "Omega": "Ω",
     "partial": "∂", "infty": "∞", "int": "∫", "oint": "∮", "sum": "Σ", "prod": "Π", "circ": "°", "degree": "°",

@@ -12,9 +12,9 @@ if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
 
 _FORMULAS = {
-    "thermal_efficiency": r"\eta=\frac{-\sum w}{\sum_{q>0} q}",
-    "cop_cooling": r"\varepsilon=\frac{\sum_{q>0} q}{\sum w}",
-    "cop_heating": r"\varepsilon=\frac{-\sum_{q<0} q}{\sum w}",
+    "thermal_efficiency": r"\eta=\frac{-\sum w}{\sum q_\mathrm{in}}",
+    "cop_cooling": r"\varepsilon=\frac{\sum q_\mathrm{in}}{\sum w}",
+    "cop_heating": r"\varepsilon=\frac{-\sum q_\mathrm{out}}{\sum w}",
 }
 
 

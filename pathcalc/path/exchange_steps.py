@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Mapping
 from importlib import import_module
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from pathcalc.path.closed_forms import closed_form_steps
+from pathcalc.path.hand_steps import by_hand
+from pathcalc.path.hand_sums import T_ds, p_dv
 from pathcalc.path.maths import bracketed, number, shown, uncertain, with_unit
 from pathcalc.path.steps import Step
 from pathcalc.path.streams import share_numbers
@@ -66,7 +70,8 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
         steps.append(
             Step(
                 title=say("step.reversible-isothermal"),
-                formula=r"w_\mathrm{rev}=\int v\,\mathrm{d}p=\Delta g",
+                formula=r"w_\mathrm{rev}=\int v\,\mathrm{d}p=\Delta g=\Delta h-T\,\Delta s",
+                numbers=_isothermal(leg, "h", a.T),
                 result=with_unit(ideal, "energy"),
             )
         )
@@ -93,6 +98,20 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
             numbers = rf"-{shown(a.p, 'p')}\times({number(b.v)}-{number(a.v)})"
         elif solved.leg.path == "isochoric" and flow:
             numbers = rf"{number(a.v)}\times({shown(b.p, 'p')}-{shown(a.p, 'p')})"
+        elif solved.leg.path == "isothermal":
+            base, free = ("h", "g") if flow else ("u", "a")
+            formula = rf"{formula}=\Delta {free}=\Delta {base}-T\,\Delta s"
+            numbers = _isothermal(leg, base, a.T)
+        elif solved.leg.path == "polytropic" and abs(b.v / a.v - 1.0) > 1e-12 and abs(b.p / a.p - 1.0) > 1e-12:
+            steps.append(_exponent(a, b))
+            formula, numbers = _polytropic_work(a, b, flow)
+        elif not flow:
+            steps += by_hand(
+                solution.hand_sums[solved.leg.name],
+                lambda T, p, ds, dv: -p_dv(T, p, ds, dv),
+                r"w=-\int p\,\mathrm{d}v=-\sum_k\int p\,v_\xi\,\mathrm{d}\xi",
+                leg.work * 1e-3,
+            )
     poly = getattr(solved.leg, "polytropic_efficiency", None)
     if poly is not None:
         sense = r"\frac{1}{\eta_p}" if b.p >= a.p else r"\eta_p"
@@ -120,6 +139,42 @@ def _work(solution: Solution, solved: SolvedLeg) -> list[Step]:
     return [*steps, *closed_form_steps(solution, solved, "work")]
 
 
+def _isothermal(leg: Mapping[str, Any], base: str, T: float) -> str:
+    """Δh − T Δs, or Δu − T Δs, with numbers."""
+    delta = leg["delta"]
+    return rf"{shown(delta[base], 'energy')}-{number(T)}\times {bracketed(delta['s'], 'entropy')}"
+
+
+def _exponent(a: Mapping[str, Any], b: Mapping[str, Any]) -> Step:
+    """The exponent of a polytropic leg from its ends."""
+    ratios = (a["p"] / b["p"], b["v"] / a["v"])
+    return Step(
+        title=say("step.exponent"),
+        formula=r"n=\frac{\ln(p_1/p_2)}{\ln(v_2/v_1)}",
+        numbers=rf"\frac{{\ln\left({shown(a['p'], 'p')}/{shown(b['p'], 'p')}\right)}}"
+        rf"{{\ln\left({number(b['v'])}/{number(a['v'])}\right)}}",
+        result=number(math.log(ratios[0]) / math.log(ratios[1])),
+    )
+
+
+def _polytropic_work(a: Mapping[str, Any], b: Mapping[str, Any], flow: bool) -> tuple[str, str]:
+    """Formula and numbers of the work of a polytropic leg whose ends differ in p and v; n = 1 is p v constant."""
+    n = math.log(a["p"] / b["p"]) / math.log(b["v"] / a["v"])
+    first = rf"{shown(a['p'], 'p')}\times {number(a['v'])}"
+    if abs(n - 1.0) < 1e-6:
+        return (
+            r"w=-p_1\,v_1\,\ln\frac{v_2}{v_1}",
+            rf"-{first}\times\ln\left({number(b['v'])}/{number(a['v'])}\right)",
+        )
+    top = rf"{shown(b['p'], 'p')}\times {number(b['v'])}-{first}"
+    times, formula = (
+        (rf"{number(n)}\times", r"w=\frac{n\,(p_2\,v_2-p_1\,v_1)}{n-1}")
+        if flow
+        else ("", r"w=\frac{p_2\,v_2-p_1\,v_1}{n-1}")
+    )
+    return formula, rf"\frac{{{times}\left({top}\right)}}{{{number(n)}-1}}"
+
+
 def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
     flow, leg = solution.path.setting.flow, solution.legs[solved.leg.name]
     if solved.leg.path in ("adiabatic", "throttling", "free-expansion", "separation", "mixing"):
@@ -135,13 +190,23 @@ def _heat(solution: Solution, solved: SolvedLeg) -> list[Step]:
     ]
     if solved.outcome.reversible:
         integral = float(solved.integrals["T_ds"][0]) / solution.path.model.M
+        a = solution.states[solved.inlet_name]
+        isothermal = solved.leg.path == "isothermal"
         steps.append(
             Step(
                 title=say("step.heat-integral"),
-                formula=r"q=\int T\,\mathrm{d}s",
+                formula=r"q=\int T\,\mathrm{d}s" + (r"=T\,\Delta s" if isothermal else ""),
+                numbers=rf"{number(a.T)}\times {bracketed(leg['delta']['s'], 'entropy')}" if isothermal else "",
                 result=with_unit(integral, "energy"),
             )
         )
+        if not isothermal:
+            steps += by_hand(
+                solution.hand_sums[solved.leg.name],
+                T_ds,
+                r"q=\int T\,\mathrm{d}s=\sum_k\int T\,s_\xi\,\mathrm{d}\xi",
+                integral * 1e-3,
+            )
     return steps
 
 

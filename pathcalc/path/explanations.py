@@ -7,7 +7,8 @@ from typing import TYPE_CHECKING, Any
 from pathcalc.path.closed_forms import closed_form_steps
 from pathcalc.path.cycle_steps import cycle_steps
 from pathcalc.path.exchange_steps import exchange_steps, formulas_of
-from pathcalc.path.hand_steps import hand_steps
+from pathcalc.path.hand_steps import by_hand, hand_steps
+from pathcalc.path.hand_sums import T_ds, p_dv
 from pathcalc.path.maths import bracketed, number, rough, shown, signed, uncertain, with_unit
 from pathcalc.path.state_steps import exergy_steps, start_steps, state_steps
 from pathcalc.path.steps import Step
@@ -144,6 +145,12 @@ def _entropy(solution: Solution, solved: SolvedLeg) -> list[Step]:
 def _energy(solution: Solution, solved: SolvedLeg, key: str) -> list[Step]:
     if key == "u":
         steps = _route_1(solution, solved, "u", GENERAL_DU, formulas_of(solved).get("du"))
+        steps += by_hand(
+            solution.hand_sums[solved.leg.name],
+            lambda T, p, ds, dv: T_ds(T, p, ds, dv) - p_dv(T, p, ds, dv),
+            r"\Delta u=\sum_k\int\left(T\,s_\xi-p\,v_\xi\right)\mathrm{d}\xi",
+            solution.legs[solved.leg.name]["delta"]["u"] * 1e-3,
+        )
         steps += closed_form_steps(solution, solved, "u")
         return [*steps, _route_2(solution, solved, "u")]
     leg = solution.legs[solved.leg.name]

@@ -7,6 +7,7 @@ in the dome at constant temperature is Clapeyron's product.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
@@ -54,9 +55,10 @@ def hand_sums(path: SolvedPath, solved: SolvedLeg) -> tuple[HandSum, ...]:
 def _clapeyron(path: SolvedPath, solved: SolvedLeg, number: int, T: float, v_a: float, v_b: float) -> HandSum:
     """From one volume to another at constant temperature inside the dome or at its edge."""
     M = path.model.M
-    slope = float(saturation_at_T(path.model, np.array([T])).dp_dT[0]) * 1e-3
+    sat = saturation_at_T(path.model, np.array([T]))
+    slope, p = float(sat.dp_dT[0]) * 1e-3, float(sat.p[0]) * 1e-3
     product = slope * (v_b - v_a) / M
-    return HandSum(solved.leg.name, number, "two-phase", (), product, product, (T, slope, v_a / M, v_b / M))
+    return HandSum(solved.leg.name, number, "two-phase", (), product, product, (T, slope, v_a / M, v_b / M, p))
 
 
 def _sloping(path: SolvedPath, solved: SolvedLeg, piece: Piece, k: int, ds: float, number: int) -> list[HandSum]:
@@ -112,6 +114,33 @@ def _in_one_phase(path: SolvedPath, solved: SolvedLeg, piece: Piece, k: int, ds:
             break
     assert best is not None
     return best
+
+
+Integrand = Callable[[float, float, float, float], float]
+"""From T (K), p (kPa), ds/dξ (kJ/(kg K)) and dv/dξ (m3/kg) to an energy over dξ (kJ/kg)."""
+
+
+def T_ds(T: float, p: float, ds: float, dv: float) -> float:
+    """T ds."""
+    return T * ds
+
+
+def p_dv(T: float, p: float, ds: float, dv: float) -> float:
+    """p dv."""
+    return p * dv
+
+
+def values_of(item: HandSum, integrand: Integrand) -> list[float]:
+    """The integrand at the points of a stretch; of a two-phase one the product itself, alone."""
+    if item.clapeyron is not None:
+        T, slope, v_a, v_b, p = item.clapeyron
+        return [integrand(T, p, slope * (v_b - v_a), v_b - v_a)]
+    return [integrand(row[1], row[2], row[-1], row[7]) for row in item.rows]
+
+
+def total_of(values: list[float]) -> float:
+    """Simpson's rule over the values of a stretch; a value alone is the total."""
+    return values[0] if len(values) == 1 else simpson(values)
 
 
 def simpson(values: list[float]) -> float:

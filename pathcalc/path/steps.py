@@ -68,7 +68,7 @@ class StateParts:
 class HandSum:
     """A stretch of a leg as a sum that a person can do, K, kPa, m3/kg, kJ/kg, kJ/(kg K).
 
-    In one phase: an odd number of points at equal steps of the coordinate x from 0 to 1, with the integrand ds/dx,
+    In one phase: an odd number of points at equal steps of the coordinate ξ from 0 to 1, with the integrand ds/dξ,
     for Simpson's rule. In the dome at constant temperature: no points, but the Clapeyron product.
     ``simpson`` and ``quadrature`` are the change of entropy both ways, kJ/(kg K).
     """
@@ -77,11 +77,11 @@ class HandSum:
     number: int
     phase: str
     rows: tuple[tuple[float, ...], ...]
-    """x, T, p, v, c_v, (dp/dT)_v, dT/dx, dv/dx, ds/dx at each point."""
+    """ξ, T, p, v, c_v, (dp/dT)_v, dT/dξ, dv/dξ, ds/dξ at each point."""
     simpson: float
     quadrature: float
-    clapeyron: tuple[float, float, float, float] | None = None
-    """T, dp_sat/dT, v at the beginning and at the end."""
+    clapeyron: tuple[float, float, float, float, float] | None = None
+    """T, dp_sat/dT, v at the beginning and at the end, p_sat."""
 
 
 @dataclass(frozen=True, eq=False)
