@@ -89,10 +89,17 @@ def changes_since(earlier: str, solution: Solution, root: str | None) -> dict[st
         if old.place.is_dir():
             raise UsageError(f"{earlier} is a folder; name one case or results file")
         try:
-            before = _snapshot(old.shown(old.place), _load(old, old.place, root))
+            before = _snapshot(old.shown(old.place), _load(old, old.place, _root_for(old.place, root)))
         except ResultsError as error:
             raise UsageError(f"{earlier}: {error}") from error
         return compare_snapshots(before, snapshot_of_solution(solution)).to_dict()
+
+
+def _root_for(place: Path, root: str | None) -> str | None:
+    """The root given, where the file lies under it; else the file's own."""
+    if root is None or place.resolve().is_relative_to(Path(root).resolve()):
+        return root
+    return None
 
 
 def compared(old: Side, new: Side, root: str | None, exact: bool, done: Callable[[int, int], None]) -> list[Pair]:

@@ -5,6 +5,7 @@ Equations of two or three terms are shown whole; an equation of many terms by th
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -78,7 +79,44 @@ def _cubic(equation: TwoConstantCubic, M: float, R: float, T: float, v: float, r
             note=note,
         )
     )
-    return steps
+    return [*steps, _residual_of_cubic(equation, R, T, a, b, v, shift)]
+
+
+def _residual_of_cubic(
+    equation: TwoConstantCubic, R: float, T: float, a: float, b: float, v: float, shift: float
+) -> Step:
+    """α^r of a cubic equation in closed form (module :mod:`pathcalc.equations.cubic`)."""
+    x, symbol = (v + shift, r"(v+c)") if shift else (v, "v")
+    d1, d2 = equation.form.delta1, equation.form.delta2
+    inner = rf"1-\frac{{{number(b)}}}{{{number(x)}}}"
+    first, first_numbers = rf"-\ln\left(1-\frac{{b}}{{{symbol}}}\right)", rf"-\ln\left({inner}\right)"
+    above = rf"{number(a)}"
+    if d1 == d2:
+        second = rf"-\frac{{a}}{{R\,T\,{symbol}}}"
+        numbers = rf"-\frac{{{above}}}{{{number(R)}\times {number(T)}\times {number(x)}}}"
+        value = -math.log(1.0 - b / x) - a / (R * T * x)
+    else:
+        upper, lower = rf"1+\delta_1\,b/{symbol}", rf"1+\delta_2\,b/{symbol}"
+        second = rf"-\frac{{a}}{{(\delta_1-\delta_2)\,b\,R\,T}}\ln\frac{{{upper}}}{{{lower}}}"
+        ratio = (1.0 + d1 * b / x) / (1.0 + d2 * b / x)
+        numbers = (
+            rf"-\frac{{{above}}}{{{number(d1 - d2)}\times {number(b)}\times {number(R)}\times {number(T)}}}"
+            rf"\times\ln\frac{{1+{signed(d1)}\times {number(b)}/{number(x)}}}"
+            rf"{{1+{signed(d2)}\times {number(b)}/{number(x)}}}"
+        )
+        value = -math.log(1.0 - b / x) - a / ((d1 - d2) * b * R * T) * math.log(ratio)
+    if shift:
+        first += r"-\ln\frac{v+c}{v}"
+        first_numbers += rf"-\ln\frac{{{number(x)}}}{{{number(v)}}}"
+        value -= math.log(x / v)
+    note = "" if d1 == d2 else say("note.deltas", first=f"{d1:.7g}", second=f"{d2:.7g}")
+    return Step(
+        say("step.residual"),
+        rf"\alpha^\mathrm{{r}}={first}{second}",
+        first_numbers + numbers,
+        number(value),
+        note=note,
+    )
 
 
 def _virial(equation: VirialGas, M: float, R: float, T: float, v: float, result: str) -> list[Step]:

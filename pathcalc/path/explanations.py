@@ -160,15 +160,22 @@ def _energy(solution: Solution, solved: SolvedLeg, key: str) -> list[Step]:
         formula=r"\Delta h=\Delta u+p_2\,v_2-p_1\,v_1",
         numbers=rf"{shown(leg['delta']['u'], 'energy')}+{shown(b.p, 'p')}\times {number(b.v)}"
         rf"-{shown(a.p, 'p')}\times {number(a.v)}",
-        result=with_unit(leg["delta"]["u"] + b.p * b.v - a.p * a.v, "energy"),
+        result=with_unit(_settled(leg["delta"]["u"] + b.p * b.v - a.p * a.v, b.h, a.h), "energy"),
     )
     first = _route_1(solution, solved, "h", r"\Delta h=\int\left(T\,\mathrm{d}s+v\,\mathrm{d}p\right)", None)
     return [*first, step, _route_2(solution, solved, "h")]
 
 
+def _settled(change: float, end: float, inlet: float) -> float:
+    """A change of state; zero where it is the rounding of the values it is the difference of."""
+    return 0.0 if abs(change) <= 1e-12 * (abs(end) + abs(inlet)) else change
+
+
 def _free_energy(solution: Solution, solved: SolvedLeg, key: str, base: str) -> list[Step]:
-    delta = solution.legs[solved.leg.name]["delta"]
+    delta = dict(solution.legs[solved.leg.name]["delta"])
     a, b = solution.states[solved.inlet_name], solution.states[solved.leg.name]
+    for item in (base, "s"):
+        delta[item] = _settled(delta[item], b[item], a[item])
     isothermal = abs(b.T / a.T - 1.0) < 1e-12
     energy = say("step.helmholtz" if key == "a" else "step.gibbs")
     if isothermal:

@@ -20,14 +20,19 @@ if TYPE_CHECKING:
     from pathcalc.path.solution import Solution
 
 KPA = 1e-3
+DEAD = "surroundings"
+"""The fluid at the temperature and pressure of the surroundings: the dead state of exergy."""
 ENERGY, ENTROPY = r"\mathrm{kJ/kg}", r"\mathrm{kJ/(kg\,K)}"
 
 
 def parts_of(solution: Solution) -> tuple[StateParts, ...]:
-    """The parts of every state of an ordinary solve, in the order of the path."""
+    """The parts of every state of an ordinary solve in the order of the path, last those of the dead state."""
     path = solution.path
     places = {"start": path.start, **{leg.leg.name: leg.end for leg in path.legs}}
-    return tuple(parts_of_state(path.model, name, place) for name, place in places.items())
+    found = [parts_of_state(path.model, name, place) for name, place in places.items()]
+    if np.isfinite(solution.dead.h[0]):
+        found.append(parts_of_state(path.model, DEAD, solution.dead))
+    return tuple(found)
 
 
 def parts_of_state(model: Model, name: str, place: Place) -> StateParts:
@@ -36,7 +41,7 @@ def parts_of_state(model: Model, name: str, place: Place) -> StateParts:
     with np.errstate(all="ignore"):
         wet = 0.0 < x < 1.0
         rows = _of_two_phases(model, place) if wet else _of_one_phase(model, place)
-    return StateParts(name, wet, rows)
+    return StateParts(name, wet, rows, (model.h_offset / model.M * 1e-3, model.s_offset / model.M * 1e-3))
 
 
 def _of_one_phase(model: Model, place: Place) -> tuple[Part, ...]:

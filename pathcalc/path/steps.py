@@ -55,6 +55,8 @@ class StateParts:
     state: str
     wet: bool
     parts: tuple[Part, ...]
+    datum: tuple[float, float] = (0.0, 0.0)
+    """Constants in h° (kJ/kg) and s° (kJ/(kg K)) that the datum fixes, from the ideal gas at 298.15 K and 1 bar."""
 
     def __getitem__(self, key: str) -> float:
         """The value of a part by its key. KeyError if there is none."""

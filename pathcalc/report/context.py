@@ -6,7 +6,7 @@ from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from typing import Any
 
-from pathcalc.path.warnings import merged
+from pathcalc.path.warnings import NOTES, merged
 from pathcalc.report import numbers, units
 from pathcalc.report.derivations import Derivations
 from pathcalc.report.view import Cell, Column, SolutionLike, Table
@@ -154,8 +154,12 @@ class Context:
 
     def mark(self, name: str) -> str:
         """The remark beside a state or leg that warnings are about."""
-        found = [str(i) for i, w in enumerate(self.warnings, 1) if _about(w.get("at"), name)]
-        return say("results.mark", n=", ".join(found)) if found else ""
+        about = [(i, w) for i, w in enumerate(self.warnings, 1) if _about(w.get("at"), name)]
+        warned = [str(i) for i, w in about if w["code"] not in NOTES]
+        noted = [str(i) for i, w in about if w["code"] in NOTES]
+        parts = [say("results.mark", n=", ".join(warned))] if warned else []
+        parts += [say("results.mark.note", n=", ".join(noted))] if noted else []
+        return "; ".join(parts)
 
     def value(self, address: str) -> float | None:
         """The SI value of an addressed quantity of the results, None where there is none."""

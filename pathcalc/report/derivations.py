@@ -58,7 +58,9 @@ class Derivations:
 
     def state_anchor(self, name: str) -> str:
         """Where the parts of a state stand; empty where they are not shown."""
-        return f"why-state-{self._places[name] + 1}" if any(p.state == name for p in self.parts) else ""
+        if name not in self._places or not any(p.state == name for p in self.parts):
+            return ""
+        return f"why-state-{self._places[name] + 1}"
 
     def anchor(self, address: str) -> str:
         """The anchor that shows how the value of an address came about; empty where the report has none."""
@@ -69,7 +71,7 @@ class Derivations:
 
     def _state_in_full(self) -> str:
         """The state that is worked out in full: the first of one phase after the start, else the start."""
-        single = [p.state for p in self.parts if not p.wet]
+        single = [p.state for p in self.parts if not p.wet and p.state in self._places]
         later = [name for name in single if name != "start"]
         return next(iter(later or single), "")
 

@@ -5,13 +5,14 @@ Addresses are relative to the page, so a folder of reports can be moved or serve
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import PurePath
 from typing import TYPE_CHECKING, Any, Literal
 from urllib.parse import quote
 
 from pathcalc.errors import InvalidCaseError, NoSolutionError, UsageError
+from pathcalc.path.warnings import NOTES, merged
 from pathcalc.report.view import Document, Outcome
 from pathcalc.report.words import say
 
@@ -92,7 +93,7 @@ def solved(
         title=document.title,
         number=str(getattr(record, "number", None) or ""),
         revision=str(getattr(record, "revision", None) or ""),
-        outcomes=(*_of_report(document), _warnings(len(result["warnings"]))),
+        outcomes=(*_of_report(document), _warnings(_to_act_on(result["warnings"]))),
         messages=(say("index.message.unwritten"),) if unwritten else (),
         files=tuple(files),
     )
@@ -101,6 +102,11 @@ def solved(
 def _of_report(document: Document) -> list[Outcome]:
     labels = (say("verdict.limits"), say("verdict.checks"))
     return [next(o for o in document.outcomes if o.label == label) for label in labels]
+
+
+def _to_act_on(warnings: Sequence[Mapping[str, Any]]) -> int:
+    """How many warnings there are, notes not counted."""
+    return sum(1 for row in merged(warnings) if row["code"] not in NOTES)
 
 
 def _warnings(n: int) -> Outcome:
@@ -112,7 +118,7 @@ def _status(result: dict[str, Any]) -> Status:
         return "failed"
     if not all(limit["passed"] for limit in result["limits"]):
         return "missed"
-    if result["warnings"]:
+    if _to_act_on(result["warnings"]):
         return "warned"
     return "met" if result["limits"] else "unlimited"
 

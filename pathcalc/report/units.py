@@ -78,7 +78,7 @@ class Units:
             "rho": Scale(pretty(f"{mass}/{volume}"), per_m / per_v),
             "e": Scale(f"{energy}/{mass}", per_e / per_m, steady=True),
             "s": Scale(f"{energy}/({mass} {t_unit})", per_e / per_m / t_factor, steady=True),
-            "w_sound": Scale("m/s"),
+            "w_sound": Scale("ft/s", _factor("ft/s")) if volume.startswith("ft") else Scale("m/s"),
             "one": Scale(""),
             "expansivity": Scale(f"1/{t_unit}", 1 / t_factor),
             "compressibility": Scale(f"1/{pretty(base_p)}", 1 / p_factor),

@@ -71,7 +71,7 @@ def _results(ctx: Context, changes: Sequence[Mapping[str, Any]]) -> list[Block]:
                 Cell(ctx.units[kind].unit),
                 _value(ctx, kind, row["old"]),
                 _value(ctx, kind, row["new"]),
-                _share(row["relative"]),
+                _share(ctx, kind, row),
             )
         )
     blocks: list[Block] = [Heading(say("changes.results")), ctx.table(say("changes.caption.results"), columns, rows)]
@@ -93,7 +93,11 @@ def _value(ctx: Context, kind: str, value: Any) -> Cell:
     return ctx.cell(kind, value)
 
 
-def _share(relative: float | None) -> Cell:
+def _share(ctx: Context, kind: str, row: Mapping[str, Any]) -> Cell:
+    """The relative change; of a temperature, which has no natural zero in the case's unit, the difference."""
+    relative = row["relative"]
+    if kind == "T" and isinstance(row["old"], float) and isinstance(row["new"], float):
+        return Cell(ctx.measure("dT", row["new"] - row["old"]), "number")
     if relative is None:
         return Cell(numbers.ABSENT, "absent")
     text = numbers.significant(100.0 * relative, 3) if abs(relative) >= 1e-6 else numbers.scientific(100.0 * relative)

@@ -59,6 +59,8 @@ def limits_outcome(ctx: Context) -> Outcome:
     ranked = [x for x in limits if x["margin"] is not None]
     if ranked:
         text += " " + _tightest(ctx, min(ranked, key=_share))
+    if any(i.uncertainty for i in inputs(ctx)):
+        text += " " + say("verdict.limits.spread")
     return Outcome(label, text, "good")
 
 
@@ -126,7 +128,8 @@ def _result(ctx: Context) -> tuple[Outcome, ...]:
         if value is not None
     ]
     totals = ctx.result["totals"] or {}
-    for key in ("heat", "work", "exergy_destroyed"):
+    idle = not any(totals.get(key) for key in ("heat", "work"))
+    for key in () if idle else ("heat", "work", "exergy_destroyed"):
         if totals.get(key) is not None:
             found.append(f"{say(f'col.{key}').lower()} {ctx.measure('total', totals[key])}")
     if not found:
@@ -176,6 +179,8 @@ def purpose(ctx: Context) -> Section:
         Paragraph(scope),
         Paragraph(say("purpose.sign") + " " + say(f"purpose.work.{mode}")),
     )
+    if pick(pick(ctx.case, "record"), "revision") and not pick(pick(ctx.case, "record"), "revisions"):
+        blocks = (*blocks, Paragraph(say("purpose.revisions"), blank=True))
     if notes:
         blocks = (*blocks, Heading(say("purpose.notes")), Bullets(tuple(str(n) for n in notes)))
     return Section("purpose", say("purpose.title"), blocks)

@@ -164,7 +164,9 @@ def _totals(ctx: Context) -> list[Block]:
     if keys:
         columns = [Column(say("col.leg"))]
         columns += [ctx.column(f"d.{k}", "Δ" + SYMBOLS[k].upper(), TOTAL_KINDS[k]) for k in keys]
-        row = [Cell(say("results.whole")), *(ctx.cell(TOTAL_KINDS[k], delta[k]) for k in keys)]
+        size = {k: sum(abs((leg["delta"].get(k) or 0.0) * (leg["amount"] or 0.0)) for leg in ctx.legs) for k in keys}
+        settled = {k: 0.0 if abs(delta[k]) <= 1e-12 * size[k] else delta[k] for k in keys}
+        row = [Cell(say("results.whole")), *(ctx.cell(TOTAL_KINDS[k], settled[k]) for k in keys)]
         blocks.append(ctx.table(say("results.caption.sum"), columns, [row]))
     return blocks
 

@@ -21,6 +21,11 @@ _ONE_PHASE = (
         r"\quad p^\circ=100\ \mathrm{kPa}",
         "s",
     ),
+    (
+        r"h^\circ=h_c+\int_{298.15\ \mathrm{K}}^{T}c_p^\circ\,\mathrm{d}T,\quad "
+        r"s^\circ=s_c+\int_{298.15\ \mathrm{K}}^{T}\frac{c_p^\circ}{T}\,\mathrm{d}T",
+        "ideal",
+    ),
     (r"u=h-p\,v,\quad a=u-T\,s,\quad g=h-T\,s,\quad Z=\frac{p\,v}{R\,T}", "rest"),
     (r"c_v=c_p^\circ-R-R\,\tau^2\alpha^\mathrm{r}_{\tau\tau},\quad c_p=c_v-T\,\frac{p_T^2}{p_v}", "heat"),
     (
@@ -48,6 +53,9 @@ def section(ctx: Context) -> Section:
     if not known.groups:
         return Section("worked", say("worked.title"), (Paragraph(say("worked.none"), blank=True),))
     blocks: list[Block] = [Paragraph(say("worked.lead"))]
+    factors = _factors(ctx)
+    if factors:
+        blocks.append(Paragraph(say("worked.lead.factors", factors="; ".join(factors))))
     if known.parts:
         blocks += _states(ctx)
     for name, groups in known.groups.items():
@@ -78,6 +86,8 @@ def _states(ctx: Context) -> list[Block]:
     blocks: list[Block] = [Heading(say("worked.states")), Paragraph(say("worked.states.lead"))]
     if single:
         blocks.append(Formulas(tuple((latex, say(f"worked.states.{key}")) for latex, key in _ONE_PHASE)))
+        h_c, s_c = (numbers.short(value, 8) for value in single[0].datum)
+        blocks.append(Paragraph(say("worked.states.datum", h=h_c, s=s_c)))
         blocks += _tables(ctx, "worked.states.caption", single)
     if wet:
         blocks.append(Formulas(tuple((latex, say(f"worked.states.{key}")) for latex, key in _TWO_PHASES)))
@@ -103,7 +113,7 @@ def _tables(ctx: Context, caption: str, states: list[StateParts]) -> list[Block]
     for i in range(0, len(states), _ABREAST):
         some = states[i : i + _ABREAST]
         heads = [say("col.symbol"), say("col.meaning"), say("col.unit")]
-        heads += [say("worked.state", n=ctx.state_number(s.state), name=s.state) for s in some]
+        heads += [_head(ctx, s.state) for s in some]
         rows = []
         for j, part in enumerate(some[0].parts):
             values = [_shown(s.parts[j].value) for s in some]
@@ -111,6 +121,24 @@ def _tables(ctx: Context, caption: str, states: list[StateParts]) -> list[Block]
         anchors = ("", "", "", *(ctx.derivations.state_anchor(s.state) for s in some))
         blocks.append(Symbols(say(caption), tuple(heads), tuple(rows), ctx.number_table(), 3, anchors))
     return blocks
+
+
+def _factors(ctx: Context) -> list[str]:
+    """Conversions from the units of the formulas to those of the tables, where they differ."""
+    pairs = [("e", "kJ/kg", 1e3), ("s", "kJ/(kg K)", 1e3), ("dp", "kPa", 1e3), ("v", "m³/kg", 1.0)]
+    pairs += [("total", "kW" if ctx.flow else "kJ", 1e3), ("amount", "kg/s" if ctx.flow else "kg", 1.0)]
+    found = []
+    for kind, unit, si in pairs:
+        scale = ctx.units[kind]
+        if scale.unit != unit:
+            found.append(f"1\u00a0{unit} = {numbers.short(scale.factor * si, 8)}\u00a0{scale.unit}")
+    return found
+
+
+def _head(ctx: Context, name: str) -> str:
+    if any(state["name"] == name for state in ctx.states):
+        return say("worked.state", n=ctx.state_number(name), name=name)
+    return say("worked.dead")
 
 
 def _shown(value: float) -> str:
