@@ -88,23 +88,18 @@ def _residual_of_cubic(
     """α^r of a cubic equation in closed form (module :mod:`pathcalc.equations.cubic`)."""
     x, symbol = (v + shift, r"(v+c)") if shift else (v, "v")
     d1, d2 = equation.form.delta1, equation.form.delta2
-    inner = rf"1-\frac{{{number(b)}}}{{{number(x)}}}"
-    first, first_numbers = rf"-\ln\left(1-\frac{{b}}{{{symbol}}}\right)", rf"-\ln\left({inner}\right)"
-    above = rf"{number(a)}"
+    eta = b / x
+    first, first_numbers = r"-\ln(1-\eta)", rf"-\ln\left(1-{number(eta)}\right)"
     if d1 == d2:
         second = rf"-\frac{{a}}{{R\,T\,{symbol}}}"
-        numbers = rf"-\frac{{{above}}}{{{number(R)}\times {number(T)}\times {number(x)}}}"
-        value = -math.log(1.0 - b / x) - a / (R * T * x)
+        numbers = rf"-\frac{{{number(a)}}}{{{number(R)}\times {number(T)}\times {number(x)}}}"
+        value = -math.log(1.0 - eta) - a / (R * T * x)
     else:
-        upper, lower = rf"1+\delta_1\,b/{symbol}", rf"1+\delta_2\,b/{symbol}"
-        second = rf"-\frac{{a}}{{(\delta_1-\delta_2)\,b\,R\,T}}\ln\frac{{{upper}}}{{{lower}}}"
-        ratio = (1.0 + d1 * b / x) / (1.0 + d2 * b / x)
-        numbers = (
-            rf"-\frac{{{above}}}{{{number(d1 - d2)}\times {number(b)}\times {number(R)}\times {number(T)}}}"
-            rf"\times\ln\frac{{1+{signed(d1)}\times {number(b)}/{number(x)}}}"
-            rf"{{1+{signed(d2)}\times {number(b)}/{number(x)}}}"
-        )
-        value = -math.log(1.0 - b / x) - a / ((d1 - d2) * b * R * T) * math.log(ratio)
+        upper, lower = 1.0 + d1 * eta, 1.0 + d2 * eta
+        second = r"-\frac{a}{(\delta_1-\delta_2)\,b\,R\,T}\,\ln\frac{1+\delta_1\,\eta}{1+\delta_2\,\eta}"
+        below = (d1 - d2) * b * R * T
+        numbers = rf"-\frac{{{number(a)}}}{{{number(below)}}}\times\ln\frac{{{number(upper)}}}{{{number(lower)}}}"
+        value = -math.log(1.0 - eta) - a / below * math.log(upper / lower)
     if shift:
         first += r"-\ln\frac{v+c}{v}"
         first_numbers += rf"-\ln\frac{{{number(x)}}}{{{number(v)}}}"
@@ -112,7 +107,7 @@ def _residual_of_cubic(
     note = "" if d1 == d2 else say("note.deltas", first=f"{d1:.7g}", second=f"{d2:.7g}")
     return Step(
         say("step.residual"),
-        rf"\alpha^\mathrm{{r}}={first}{second}",
+        rf"\alpha^\mathrm{{r}}={first}{second},\quad \eta=b/{symbol}",
         first_numbers + numbers,
         number(value),
         note=note,

@@ -187,3 +187,4 @@ class Basis:
     ideal_gas_parameters: tuple[Constant, ...] = ()
     remarks: tuple[str, ...] = ()
     uncertainty: tuple[str, ...] = ()
+    equation_note: str = ""

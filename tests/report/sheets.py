@@ -70,5 +70,11 @@ def headless(tables: list[dict[str, Any]], found: list[str]) -> list[str]:
 
 
 def orphans(heads: list[str], found: list[str]) -> list[str]:
-    """The headings and captions that a sheet ends with."""
-    return [head for head in heads if any(sheet.endswith(squeezed(head)) for sheet in found if squeezed(head))]
+    """The headings and captions that a sheet ends with; not in the appendix, whose text is the case's own."""
+    listing = next(
+        (n for n, sheet in enumerate(found) if n and squeezed("Appendix: the case as written") in sheet), None
+    )
+    own = found if listing is None else found[: listing + 1]
+    if listing is not None and squeezed("pathcalc: 1 title") in own[-1]:
+        own = own[:-1]
+    return [head for head in heads if any(sheet.endswith(squeezed(head)) for sheet in own if squeezed(head))]

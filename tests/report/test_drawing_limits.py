@@ -41,8 +41,9 @@ def report(folder: Path, **environment: str) -> dict[str, bytes]:
     (folder / "six.yaml").write_text(SIX_LEGS, encoding="utf-8")
     command = [sys.executable, "-m", "pathcalc", "solve", "six.yaml", "--report", "html,md", "-o", "out"]
     path = os.pathsep.join([str(ROOT), os.environ.get("PYTHONPATH", "")])
+    kept = {key: value for key, value in os.environ.items() if key != "PYTHONDONTWRITEBYTECODE"}  # as users run it
     subprocess.run(
-        command, cwd=folder, check=True, capture_output=True, env={**os.environ, "PYTHONPATH": path, **environment}
+        command, cwd=folder, check=True, capture_output=True, env={**kept, "PYTHONPATH": path, **environment}
     )
     return {p.name: p.read_bytes() for p in sorted((folder / "out").rglob("*")) if p.is_file()}
 

@@ -197,7 +197,7 @@ def test_page_says_what_a_reviewer_needs() -> None:
         "Prepared by",
         "Checked by",
         "Approved by",
-        "12 of 13 inputs name no source",
+        "12 of 13 inputs without a source",
         "heat and work are positive into the fluid",
         "evidence for a reviewer",
         "SHA-256",

@@ -62,6 +62,8 @@ def section(ctx: Context) -> Section:
     ]
     if basis.equation_formula:
         blocks.append(Formulas(((basis.equation_formula, ""),)))
+    if basis.equation_note:
+        blocks.append(Paragraph(basis.equation_note))
     columns = [Column(say(f"col.{c}")) for c in ("item", "model", "range", "source")]
     models = (
         ("fluid.equation", basis.equation_title, basis.range_text, basis.equation_source),
