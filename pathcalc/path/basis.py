@@ -88,15 +88,12 @@ def basis_of(solution: Solution) -> Basis:
 
 def _coefficients(card: Card) -> str:
     """Where the coefficients of an equation of many terms stand."""
-    from hashlib import sha256
-
-    from pathcalc.substances.reference_reader import read_reference, reference_path
+    from pathcalc.substances.reference_reader import read_reference
 
     found = read_reference(card)
     count = sum(len(table.rows) for table in found.terms)
-    digest = sha256(reference_path(card).read_bytes()).hexdigest()
     place = f"{found.citation(found.source)}{'; ' + found.table if found.table else ''}"
-    return say("note.coefficients", n=count, place=place, file=reference_path(card).name, digest=digest[:16])
+    return say("note.coefficients", n=count, place=place)
 
 
 def _ideal_gas(card: Card, ideal: Any) -> tuple[str, tuple[Constant, ...]]:

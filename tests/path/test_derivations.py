@@ -160,7 +160,13 @@ def test_sums_of_a_leg_add_up_to_its_change_of_entropy(solution: Any) -> None:
 
 def test_parts_give_the_properties(solution: Any) -> None:
     """u, h, s, c_v, c_p, Z from the parts alone, by the formulas of the report."""
+    M = solution.path.model.M
     for parts in solution.state_parts:
+        if parts.state == "surroundings":
+            assert not parts.wet
+            h = parts["h0"] + parts["R"] * parts["T"] * (parts["a_t"] + parts["a_d"])
+            assert h == pytest.approx(float(solution.dead.h[0]) / M / 1e3, rel=1e-9, abs=1e-7)
+            continue
         state = solution.states[parts.state]
         if parts.wet:
             x = parts["x"]
