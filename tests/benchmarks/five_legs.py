@@ -1,4 +1,4 @@
-"""The case that the timings are of: five legs of a cubic equation, into the dome and out of it."""
+"""The cases that the timings are of: five legs of a cubic equation into the dome and out of it; a steam cycle of six."""
 
 FIVE_LEGS = """pathcalc: 1
 title: Five legs for the timings
@@ -12,4 +12,23 @@ legs:
   - {name: condenser, path: workless, to: {subcooling: 3 K}, pressure_drop: 0.1 bar}
   - {name: valve, path: throttling, to: {p: {same_as: start}}}
   - {name: evaporator, path: isobaric, to: {T: {same_as: start}}}
+"""
+
+SIX_LEGS = """\
+pathcalc: 1
+title: Steam plant with reheat
+fluid: {substance: water, equation: reference, datum: triple-liquid}
+boundary: flow
+amount: 10 kg/s
+start: {p: 0.1 bar, phase: saturated-liquid}
+cycle: true
+legs:
+  - {name: feed pump, path: adiabatic, to: {p: 80 bar}, efficiency: 0.7}
+  - {name: boiler, path: isobaric, to: {T: 480 degC}}
+  - {name: high turbine, path: adiabatic, to: {p: 10 bar}, efficiency: 0.85}
+  - {name: reheater, path: isobaric, to: {T: 450 degC}}
+  - {name: low turbine, path: adiabatic, to: {p: 0.1 bar}, efficiency: 0.85}
+  - {name: condenser, path: isobaric, to: {x: 0}}
+units: {T: degC}
+report: {diagrams: [T-s, p-h, h-s]}
 """

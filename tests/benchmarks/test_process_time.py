@@ -5,7 +5,7 @@ import sys
 import time
 
 import pytest
-from five_legs import FIVE_LEGS
+from five_legs import FIVE_LEGS, SIX_LEGS
 
 
 def process(*arguments):
@@ -28,6 +28,15 @@ def test_commands(command, tmp_path):
     path = [] if command == "schema" else [str(file)]
     took, code = process("-m", "pathcalc", *command.split(), *path)
     print(f"\n{command}: {took:.3f} s, {took / floor:.2f} times the imports ({floor:.3f} s; bare Python {empty:.3f} s)")
+    assert code == 0
+
+
+def test_report(tmp_path):
+    """The reports of a six-leg reference case with three diagrams and two bar charts, as a whole process."""
+    file = tmp_path / "six-legs.yaml"
+    file.write_text(SIX_LEGS, encoding="utf-8")
+    took, code = process("-m", "pathcalc", "solve", str(file), "--report", "html,md", "-o", str(tmp_path / "out"))
+    print(f"\nsix legs with reports: {took:.2f} s")
     assert code == 0
 
 

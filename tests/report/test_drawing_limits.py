@@ -1,10 +1,9 @@
-"""Size, time, sameness and legibility of reports with all their figures."""
+"""Size, sameness and legibility of reports with all their figures."""
 
 from __future__ import annotations
 
 import os
 import re
-import resource
 import subprocess
 import sys
 from pathlib import Path
@@ -48,22 +47,18 @@ def report(folder: Path, **environment: str) -> dict[str, bytes]:
     return {p.name: p.read_bytes() for p in sorted((folder / "out").rglob("*")) if p.is_file()}
 
 
-def test_six_legs_are_small_quick_and_the_same_everywhere(tmp_path: Path) -> None:
-    """Under 600 kB; 2.5 s of processor for the whole process; the same bytes with other hashes, locale, folder."""
+def test_six_legs_are_small_and_the_same_everywhere(tmp_path: Path) -> None:
+    """Under 600 kB; the same bytes with other hashes, locale, folder. Its time is among the benchmarks."""
     first, second = tmp_path / "one", tmp_path / "zwei ü" / "deeper"
     for folder in (first, second):
         folder.mkdir(parents=True)
     other = report(second, PYTHONHASHSEED="4242", LC_ALL="de_DE.UTF-8", TZ="Asia/Tokyo")
-    before = resource.getrusage(resource.RUSAGE_CHILDREN)
     files = report(first, PYTHONHASHSEED="1", LC_ALL="C.UTF-8")
-    after = resource.getrusage(resource.RUSAGE_CHILDREN)
-    used = after.ru_utime + after.ru_stime - before.ru_utime - before.ru_stime
     assert other == files
     assert len(files["six.html"]) < 600_000
     figures = {name: len(data) for name, data in files.items() if name.endswith(".svg")}
     assert sorted(figures) == ["six-T-s.svg", "six-exergy.svg", "six-h-s.svg", "six-heat-work.svg", "six-p-h.svg"]
     assert max(figures.values()) < 20_000
-    assert used < 2.5
 
 
 TEXTS = """
