@@ -1,4 +1,4 @@
-"""The cases that the timings are of: five legs of a cubic equation into the dome and out of it; a steam cycle of six."""
+"""The cases of the timings: five legs of a cubic equation into the dome and out of it; a steam cycle of six."""
 
 FIVE_LEGS = """pathcalc: 1
 title: Five legs for the timings
