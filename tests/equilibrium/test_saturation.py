@@ -9,6 +9,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from CoolProp import CoolProp
 
 from pathcalc.equations.alpha import SoaveAlpha, peng_robinson_m, soave_m
 from pathcalc.equations.build import build_model
@@ -56,7 +57,6 @@ def test_octane_vapour_pressure_is_near_the_boiling_state_of_the_worked_example(
 )
 def test_against_an_independent_library(backend: str, form: Form, m_of: Callable[[float], float]) -> None:
     """CoolProp's cubic equations with its own Tc, pc, ω, R: saturation and single-phase states at random points."""
-    CoolProp = pytest.importorskip("CoolProp.CoolProp")
     other = CoolProp.AbstractState(backend, "Propane")
     T_c, p_c, R, w = other.T_critical(), other.p_critical(), other.gas_constant(), other.acentric_factor()
     eos = TwoConstantCubic(form, SoaveAlpha(T_c, m_of(w)), T_c, p_c, R=R)

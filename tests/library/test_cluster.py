@@ -19,8 +19,6 @@ from pathcalc.library.cluster import pack, run_on_cluster, solve_parcel
 from pathcalc.library.job import Job
 from pathcalc.library.workers import Watch
 
-pytest.importorskip("distributed", reason="the extra dask is not installed")
-
 
 def dask(*arguments: str, folder: Path) -> subprocess.Popen[bytes]:
     settings = {"DASK_DISTRIBUTED__LOGGING__DISTRIBUTED": "critical"}

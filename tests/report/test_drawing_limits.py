@@ -15,24 +15,7 @@ import pathcalc
 from pathcalc.report import render_html
 
 ROOT = Path(__file__).resolve().parents[2]
-SIX_LEGS = """\
-pathcalc: 1
-title: Steam plant with reheat
-fluid: {substance: water, equation: reference, datum: triple-liquid}
-boundary: flow
-amount: 10 kg/s
-start: {p: 0.1 bar, phase: saturated-liquid}
-cycle: true
-legs:
-  - {name: feed pump, path: adiabatic, to: {p: 80 bar}, efficiency: 0.7}
-  - {name: boiler, path: isobaric, to: {T: 480 degC}}
-  - {name: high turbine, path: adiabatic, to: {p: 10 bar}, efficiency: 0.85}
-  - {name: reheater, path: isobaric, to: {T: 450 degC}}
-  - {name: low turbine, path: adiabatic, to: {p: 0.1 bar}, efficiency: 0.85}
-  - {name: condenser, path: isobaric, to: {x: 0}}
-units: {T: degC}
-report: {diagrams: [T-s, p-h, h-s]}
-"""
+SIX_LEGS = (ROOT / "tests" / "benchmarks" / "six-legs.txt").read_text(encoding="utf-8")
 
 
 def report(folder: Path, **environment: str) -> dict[str, bytes]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from substances import SHARED, model, rows
+from substances import model, rows
 
 from pathcalc.equations.properties import full
 from pathcalc.equilibrium import reasons
@@ -88,12 +88,13 @@ def test_latent_heats(name: str, latent: float, source: str) -> None:
     assert (h[1] - h[0]) / m.M / 1e3 == pytest.approx(latent, rel=1e-3), source
 
 
-@pytest.mark.parametrize("pressure", ["0.5", "1", "1.5"])
+HYDROGEN = rows("webbook_hydrogen_saturation.csv")
+
+
+@pytest.mark.parametrize("pressure", sorted({row["p"] for row in HYDROGEN}))
 def test_saturated_hydrogen(pressure: str) -> None:
     """NIST Chemistry WebBook, equation of Leachman et al. (2009): five digits printed."""
-    table = [r for r in rows("webbook_hydrogen_saturation.csv") if float(r["p"]) == float(pressure)]
-    if not table:
-        pytest.skip(f"no row at {pressure} atm in {SHARED.name}")
+    table = [row for row in HYDROGEN if row["p"] == pressure]
     m = with_datum(model("hydrogen"), "boiling-liquid")
     for row in table:
         x = 0.0 if row["phase"] == "liquid" else 1.0
@@ -110,13 +111,23 @@ GASES = {"N2": "nitrogen", "Ar": "argon", "O2": "oxygen", "CH4": "methane", "CO2
          "He": "helium", "Ne": "neon", "CO": "carbon-monoxide"}  # fmt: skip
 
 
-@pytest.mark.parametrize("row", rows("inversion_temperatures.csv"), ids=lambda row: row["gas"])
+INVERSIONS = rows("inversion_temperatures.csv")
+
+
+def within(row: dict[str, str]) -> bool:
+    """Whether the equation is used up to a little above the inversion temperature."""
+    return float(row["T_inv_max_K"]) * 1.002 <= model(GASES[row["gas"]]).T_limits[1]
+
+
+def test_inversion_temperatures_are_within_most_equations() -> None:
+    assert sum(map(within, INVERSIONS)) >= len(INVERSIONS) - 1
+
+
+@pytest.mark.parametrize("row", [row for row in INVERSIONS if within(row)], ids=lambda row: row["gas"])
 def test_inversion_temperatures(row: dict[str, str]) -> None:
     """The Joule–Thomson coefficient of the thin gas changes sign there (recomputed values, see the file)."""
     m = model(GASES[row["gas"]])
     T = float(row["T_inv_max_K"])
-    if m.T_limits[1] < T * 1.002:
-        pytest.skip("beyond the temperatures at which this equation is used")
     step = max(0.002 * T, 0.15)
     got = state_properties(m, flash(m, {"T": [T - step, T + step], "p": 100.0}))
     assert got.joule_thomson[0] > 0.0 > got.joule_thomson[1]
